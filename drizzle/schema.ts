@@ -1,0 +1,480 @@
+import { sql } from 'drizzle-orm';
+import { check, index, integer, real, sqliteTable, text, uniqueIndex } from 'drizzle-orm/sqlite-core';
+import type { AnswerDigest, CheckResult } from '@shared/checks';
+import type { MarkedCriterion } from '@shared/marking';
+import type { ProblemContent } from '@shared/problems';
+import { setStageNames } from '@shared/primitives';
+import type { GivenValue } from '@shared/variants';
+
+/*
+ * Every table of the installation, in the order of the work: people, courses, problems, sets, scripts, marks, record.
+ *
+ * Identifiers are random (UUIDv4), so that none tells time or order. Times are UTC milliseconds, except the expiry of
+ * sessions, which the session library counts in seconds. No foreign key cascades: a rebuilt table would fire it.
+ */
+
+const id = () => text().primaryKey();
+const time = () => integer();
+const version = () => integer().notNull().default(1);
+
+// ---------------------------------------------------------------------------------------------- people and accounts
+
+export const users = sqliteTable(
+  'users',
+  {
+    id: id(),
+    /** Lower case, as it is compared. */
+    email: text().notNull(),
+    name: text().notNull(),
+    /** Argon2id in its own notation; null until an invitation is accepted. */
+    passwordHash: text(),
+    isAdministrator: integer({ mode: 'boolean' }).notNull().default(false),
+    createdAt: time().notNull(),
+  },
+  (table) => [uniqueIndex('users_email').on(table.email)],
+);
+
+/** Sign-ins. The id is the SHA-256 of the token in the cookie. */
+export const sessions = sqliteTable(
+  'sessions',
+  {
+    id: id(),
+    userId: text()
+      .notNull()
+      .references(() => users.id),
+    /** Seconds since 1970, as the session library wants it. */
+    expiresAt: integer().notNull(),
+  },
+  (table) => [index('sessions_user').on(table.userId)],
+);
+
+/** Single-use secrets sent by mail, stored as SHA-256. */
+export const tokens = sqliteTable(
+  'tokens',
+  {
+    id: id(),
+    kind: text({ enum: ['invitation', 'password reset', 'first administrator'] }).notNull(),
+    hash: text().notNull(),
+    /** Null for the link that makes the first administrator. */
+    userId: text().references(() => users.id),
+    createdAt: time().notNull(),
+    expiresAt: time().notNull(),
+    usedAt: time(),
+  },
+  (table) => [uniqueIndex('tokens_hash').on(table.hash), index('tokens_user').on(table.userId)],
+);
+
+/** Failed guesses, counted by account and by address; the subject is hashed, so that no address is kept. */
+export const guesses = sqliteTable('guesses', {
+  /** SHA-256 of `account:…` or `address:…`. */
+  subject: text().primaryKey(),
+  failures: integer().notNull(),
+  since: time().notNull(),
+  lockedUntil: time(),
+});
+
+// ----------------------------------------------------------------------------------------------------------- courses
+
+export const courses = sqliteTable('courses', {
+  id: id(),
+  title: text().notNull(),
+  term: text().notNull(),
+  /** IANA name, for example Europe/Vienna. */
+  timeZone: text().notNull(),
+  vacuumVariance: real().notNull().default(0.5),
+  squeezingSign: integer().notNull().default(1),
+  splitterPhase: real().notNull().default(Math.PI / 2),
+  createdAt: time().notNull(),
+  version: version(),
+});
+
+/** Who has which role in a course. A person has one role a course. */
+export const memberships = sqliteTable(
+  'memberships',
+  {
+    id: id(),
+    courseId: text()
+      .notNull()
+      .references(() => courses.id),
+    userId: text()
+      .notNull()
+      .references(() => users.id),
+    role: text({ enum: ['lead', 'marker', 'student'] }).notNull(),
+    /** A marker's or lead's initials and hue (1 to 8) on the bench; null for students. */
+    initials: text(),
+    hue: integer(),
+    createdAt: time().notNull(),
+    removedAt: time(),
+  },
+  (table) => [
+    uniqueIndex('memberships_person').on(table.courseId, table.userId),
+    index('memberships_user').on(table.userId),
+  ],
+);
+
+// ---------------------------------------------------------------------------------------------------------- problems
+
+export const problems = sqliteTable('problems', {
+  id: id(),
+  authorId: text()
+    .notNull()
+    .references(() => users.id),
+  status: text({ enum: ['draft', 'in review', 'ready', 'retired'] })
+    .notNull()
+    .default('draft'),
+  /** What is being written. A revision is a frozen copy of it. */
+  draft: text({ mode: 'json' }).$type<ProblemContent>().notNull(),
+  draftSavedAt: time().notNull(),
+  createdAt: time().notNull(),
+  version: version(),
+});
+
+/** Immutable states of a problem. */
+export const revisions = sqliteTable(
+  'revisions',
+  {
+    id: id(),
+    problemId: text()
+      .notNull()
+      .references(() => problems.id),
+    number: integer().notNull(),
+    content: text({ mode: 'json' }).$type<ProblemContent>().notNull(),
+    authorId: text()
+      .notNull()
+      .references(() => users.id),
+    reason: text().notNull(),
+    createdAt: time().notNull(),
+  },
+  (table) => [uniqueIndex('revisions_number').on(table.problemId, table.number)],
+);
+
+// -------------------------------------------------------------------------------------------------------------- sets
+
+export const sets = sqliteTable(
+  'sets',
+  {
+    id: id(),
+    courseId: text()
+      .notNull()
+      .references(() => courses.id),
+    /** "Set 4". */
+    number: integer().notNull(),
+    title: text().notNull(),
+    coverText: text().notNull().default(''),
+    stage: text({ enum: setStageNames }).notNull().default('draft'),
+    opensAt: time(),
+    closesAt: time(),
+    individualVariants: integer({ mode: 'boolean' }).notNull().default(true),
+    /** Whether students see the key of their variant with their feedback. */
+    showKeys: integer({ mode: 'boolean' }).notNull().default(true),
+    /** Random; every variant of the set is drawn from it. */
+    seed: text().notNull(),
+    createdAt: time().notNull(),
+    version: version(),
+  },
+  (table) => [uniqueIndex('sets_number').on(table.courseId, table.number)],
+);
+
+/** When a set entered each stage, and by whom (null: by the clock). Append-only. */
+export const setStages = sqliteTable(
+  'set_stages',
+  {
+    id: id(),
+    setId: text()
+      .notNull()
+      .references(() => sets.id),
+    stage: text({ enum: setStageNames }).notNull(),
+    at: time().notNull(),
+    byId: text().references(() => users.id),
+  },
+  (table) => [index('set_stages_set').on(table.setId, table.at)],
+);
+
+/** The problems of a set in their order, each pinned to a revision. */
+export const setProblems = sqliteTable(
+  'set_problems',
+  {
+    id: id(),
+    setId: text()
+      .notNull()
+      .references(() => sets.id),
+    /** From 1. */
+    position: integer().notNull(),
+    problemId: text()
+      .notNull()
+      .references(() => problems.id),
+    revisionId: text()
+      .notNull()
+      .references(() => revisions.id),
+  },
+  (table) => [index('set_problems_set').on(table.setId, table.position), index('set_problems_problem').on(table.problemId)],
+);
+
+/** One draw of a problem's givens, for one student or (membership null) for all. */
+export const variants = sqliteTable(
+  'variants',
+  {
+    id: id(),
+    setProblemId: text()
+      .notNull()
+      .references(() => setProblems.id),
+    membershipId: text().references(() => memberships.id),
+    givens: text({ mode: 'json' }).$type<Readonly<Record<string, GivenValue>>>().notNull(),
+  },
+  (table) => [
+    uniqueIndex('variants_student').on(table.setProblemId, table.membershipId),
+    uniqueIndex('variants_shared')
+      .on(table.setProblemId)
+      .where(sql`membership_id is null`),
+  ],
+);
+
+/** All answers to one part of a set. Made when the set opens; `sequence` numbers its live events. */
+export const piles = sqliteTable(
+  'piles',
+  {
+    id: id(),
+    setId: text()
+      .notNull()
+      .references(() => sets.id),
+    setProblemId: text()
+      .notNull()
+      .references(() => setProblems.id),
+    partId: text().notNull(),
+    sequence: integer().notNull().default(0),
+  },
+  (table) => [uniqueIndex('piles_part').on(table.setProblemId, table.partId), index('piles_set').on(table.setId)],
+);
+
+// ----------------------------------------------------------------------------------------------------------- scripts
+
+/** What one student hands in for one set. Made when the sheet is first opened, or at closing. */
+export const scripts = sqliteTable(
+  'scripts',
+  {
+    id: id(),
+    setId: text()
+      .notNull()
+      .references(() => sets.id),
+    membershipId: text()
+      .notNull()
+      .references(() => memberships.id),
+    /** Four characters, drawn at random, unique in the set. */
+    code: text().notNull(),
+    createdAt: time().notNull(),
+  },
+  (table) => [
+    uniqueIndex('scripts_student').on(table.setId, table.membershipId),
+    uniqueIndex('scripts_code').on(table.setId, table.code),
+  ],
+);
+
+/** A script's content for one part, and where its marking stands. `version` counts every change of its marking. */
+export const answers = sqliteTable(
+  'answers',
+  {
+    id: id(),
+    scriptId: text()
+      .notNull()
+      .references(() => scripts.id),
+    pileId: text()
+      .notNull()
+      .references(() => piles.id),
+    /** Null until the script is handed in. `waits`: on the pile. */
+    state: text({ enum: ['waits', 'marked', 'set aside'] }),
+    /** The check of what was handed in last. */
+    checkId: text(),
+    standingMarkId: text(),
+    setAsideReason: text(),
+    setAsideById: text().references(() => memberships.id),
+    version: version(),
+  },
+  (table) => [
+    uniqueIndex('answers_part').on(table.scriptId, table.pileId),
+    index('answers_pile').on(table.pileId, table.state),
+    check('answers_marked', sql`${table.state} is not 'marked' or ${table.standingMarkId} is not null`),
+  ],
+);
+
+/** Every saved text of an answer. Append-only. */
+export const answerVersions = sqliteTable(
+  'answer_versions',
+  {
+    id: id(),
+    answerId: text()
+      .notNull()
+      .references(() => answers.id),
+    /** From 1. */
+    number: integer().notNull(),
+    text: text().notNull(),
+    savedAt: time().notNull(),
+    /** Given by the client: the same save twice is one version. */
+    idempotencyKey: text().notNull(),
+  },
+  (table) => [
+    uniqueIndex('answer_versions_number').on(table.answerId, table.number),
+    uniqueIndex('answer_versions_key').on(table.answerId, table.idempotencyKey),
+  ],
+);
+
+/** Worked pages. A replaced page keeps its row: what a submission names must stay readable. */
+export const pages = sqliteTable(
+  'pages',
+  {
+    id: id(),
+    answerId: text()
+      .notNull()
+      .references(() => answers.id),
+    /** Where the file store keeps it. */
+    storageKey: text().notNull(),
+    sha256: text().notNull(),
+    mediaType: text({ enum: ['application/pdf', 'image/jpeg', 'image/png', 'image/webp'] }).notNull(),
+    bytes: integer().notNull(),
+    pageCount: integer().notNull(),
+    addedAt: time().notNull(),
+    removedAt: time(),
+    idempotencyKey: text().notNull(),
+  },
+  (table) => [
+    index('pages_answer').on(table.answerId),
+    uniqueIndex('pages_key').on(table.answerId, table.idempotencyKey),
+  ],
+);
+
+/** What was handed in, by the student or at closing by the server. Append-only. */
+export const submissions = sqliteTable(
+  'submissions',
+  {
+    id: id(),
+    scriptId: text()
+      .notNull()
+      .references(() => scripts.id),
+    /** From 1; the last one counts. */
+    number: integer().notNull(),
+    at: time().notNull(),
+    by: text({ enum: ['student', 'closing'] }).notNull(),
+    /** The texts and files that were handed in, in a canonical order. */
+    content: text({ mode: 'json' }).$type<readonly AnswerDigest[]>().notNull(),
+    /** SHA-256 over the canonical form of `content`, as the receipt shows it. */
+    digest: text().notNull(),
+    idempotencyKey: text().notNull(),
+  },
+  (table) => [
+    uniqueIndex('submissions_number').on(table.scriptId, table.number),
+    uniqueIndex('submissions_key').on(table.scriptId, table.idempotencyKey),
+  ],
+);
+
+/** How the server judged one answer of one submission. Append-only: a new check supersedes, it does not replace. */
+export const checks = sqliteTable(
+  'checks',
+  {
+    id: id(),
+    answerId: text()
+      .notNull()
+      .references(() => answers.id),
+    submissionId: text()
+      .notNull()
+      .references(() => submissions.id),
+    result: text({ mode: 'json' }).$type<CheckResult>().notNull(),
+    at: time().notNull(),
+  },
+  (table) => [index('checks_answer').on(table.answerId)],
+);
+
+// ----------------------------------------------------------------------------------------------------------- marking
+
+/** Append-only. Which mark stands is named by `answers.standing_mark_id`, never "the latest". */
+export const marks = sqliteTable(
+  'marks',
+  {
+    id: id(),
+    answerId: text()
+      .notNull()
+      .references(() => answers.id),
+    kind: text({ enum: ['first', 'second', 'settled'] }).notNull(),
+    /** Null: the check stands without a person. */
+    markerId: text().references(() => memberships.id),
+    criteria: text({ mode: 'json' }).$type<readonly MarkedCriterion[]>().notNull(),
+    total: real().notNull(),
+    remark: text().notNull().default(''),
+    at: time().notNull(),
+    /** The mark that this one takes the place of. */
+    replacesId: text(),
+    reason: text(),
+    idempotencyKey: text().notNull(),
+  },
+  (table) => [
+    index('marks_answer').on(table.answerId, table.at),
+    uniqueIndex('marks_key').on(table.answerId, table.idempotencyKey),
+  ],
+);
+
+/** A marker's short claim on one answer; at most one an answer, gone when it expires. */
+export const holds = sqliteTable(
+  'holds',
+  {
+    answerId: text()
+      .primaryKey()
+      .references(() => answers.id),
+    membershipId: text()
+      .notNull()
+      .references(() => memberships.id),
+    /** The open bench that holds it: one person may have two. */
+    benchId: text().notNull(),
+    /** In hand, or one of the next two kept ready. */
+    kind: text({ enum: ['in hand', 'reserved'] }).notNull(),
+    takenAt: time().notNull(),
+    expiresAt: time().notNull(),
+  },
+  (table) => [index('holds_holder').on(table.membershipId, table.benchId)],
+);
+
+// ---------------------------------------------------------------------------------------------------- mail and record
+
+/** Letters to be sent, or kept for the administrator to read. Never holds the secret part of a link. */
+export const letters = sqliteTable(
+  'letters',
+  {
+    id: id(),
+    kind: text().notNull(),
+    userId: text()
+      .notNull()
+      .references(() => users.id),
+    subject: text().notNull(),
+    /** Plain text; `{link}` stands where a secret link is filled in when the letter leaves. */
+    text: text().notNull(),
+    createdAt: time().notNull(),
+    /** Not before. */
+    dueAt: time().notNull(),
+    /** Null while it waits. */
+    sentAt: time(),
+    attempts: integer().notNull().default(0),
+    lastError: text(),
+    cancelledAt: time(),
+  },
+  (table) => [index('letters_waiting').on(table.sentAt, table.dueAt)],
+);
+
+/** Who did what, when, to what, from what, to what. Append-only (a trigger refuses update and delete). */
+export const record = sqliteTable(
+  'record',
+  {
+    id: id(),
+    at: time().notNull(),
+    /** Null: the server itself. */
+    actorId: text().references(() => users.id),
+    courseId: text().references(() => courses.id),
+    /** A past-tense fact, for example `mark changed`. */
+    action: text().notNull(),
+    /** What it was done to: a table's word and an id. */
+    thing: text().notNull(),
+    thingId: text().notNull(),
+    /** One sentence in words, without personal data beyond names of colleagues. */
+    sentence: text().notNull(),
+    before: text({ mode: 'json' }),
+    after: text({ mode: 'json' }),
+    reason: text(),
+  },
+  (table) => [index('record_course').on(table.courseId, table.at), index('record_thing').on(table.thing, table.thingId)],
+);

@@ -1,0 +1,107 @@
+import { mkdirSync } from 'node:fs';
+import { createServer } from 'node:http';
+import { join } from 'node:path';
+import { pino } from 'pino';
+import { openDatabase } from '@drizzle/client';
+import { users } from '@drizzle/schema';
+import { firstAdministratorLink } from './accounts/accounts-routes';
+import { dropOldGuesses } from './accounts/guesses';
+import { linkWith, makeToken, type TokenKind } from './accounts/tokens';
+import { createApp } from './app';
+import { readConfig, type Config } from './config';
+import { systemClock, type Context } from './context';
+import { createFileStore } from './files/file-store';
+import { createKeyPool } from './keys';
+import { createLive } from './live/live';
+import { sendDueLetters, smtpTransport } from './mail/post-office';
+
+/** How often the clock's own work is looked at, in milliseconds. */
+const heartbeat = 2_000;
+
+async function main(): Promise<void> {
+  const config = readConfig(process.env);
+  mkdirSync(config.dataDir, { recursive: true });
+  const log = pino({ level: config.logLevel, base: null });
+  const database = openDatabase(join(config.dataDir, 'halfsilver.db'), 'migrations');
+  const keys = createKeyPool({});
+  const live = createLive();
+  const files = createFileStore(join(config.dataDir, 'files'));
+  const context: Context = { config, db: database.db, clock: systemClock, keys, files, live, log };
+
+  const { app, sessions } = createApp(context, 'dist/client/browser');
+  const server = createServer(app);
+  live.attach(server, context, async (cookie) => (await sessions.read(cookie)).person);
+
+  if (isEmpty(context) && config.demo) {
+    const { loadDemonstration } = await import('../demo/load-demonstration');
+    await loadDemonstration(context, (line) => process.stdout.write(`\r${line}\u001b[K`));
+    process.stdout.write('\n');
+  }
+
+  await new Promise<void>((resolve) => server.listen(config.port, config.host, resolve));
+  await announce(context, config);
+
+  const transport = config.smtpUrl ? smtpTransport(config.smtpUrl, config.mailFrom) : null;
+  let busy = false;
+  const beat = setInterval(() => {
+    if (busy) return;
+    busy = true;
+    void onBeat(context, transport)
+      .catch((error: unknown) => {
+        log.error({ error: String(error) }, 'regular work failed');
+      })
+      .finally(() => {
+        busy = false;
+      });
+  }, heartbeat);
+
+  let stopping = false;
+  const stop = (): void => {
+    if (stopping) return;
+    stopping = true;
+    clearInterval(beat);
+    live.close();
+    server.closeIdleConnections();
+    server.close(() => {
+      void keys.close().finally(() => {
+        database.close();
+        process.exit(0);
+      });
+    });
+    // Requests under way are waited for, but not for ever.
+    setTimeout(() => {
+      process.exit(0);
+    }, 8_000).unref();
+  };
+  process.on('SIGINT', stop);
+  process.on('SIGTERM', stop);
+}
+
+async function onBeat(context: Context, transport: ReturnType<typeof smtpTransport> | null): Promise<void> {
+  dropOldGuesses(context.db, context.clock.now());
+  await sendDueLetters(context, transport, (kind, userId) =>
+    linkWith(context.config.origin, makeToken(context.db, kind as TokenKind, userId, context.clock.now()).secret),
+  );
+}
+
+function isEmpty(context: Context): boolean {
+  return context.db.select({ id: users.id }).from(users).limit(1).get() === undefined;
+}
+
+async function announce(context: Context, config: Config): Promise<void> {
+  const lines = [`Halfsilver is at ${config.origin}`];
+  const link = firstAdministratorLink(context);
+  if (link) lines.push('', 'There is no administrator yet. This link makes one; it works once and lasts a day:', link);
+  if (config.demo) {
+    const { demonstrationAccounts } = await import('../demo/accounts');
+    lines.push('', 'The demonstration’s accounts:');
+    lines.push(...demonstrationAccounts.map(({ email, password, role }) => `  ${role.padEnd(14)} ${email.padEnd(34)} ${password}`));
+  }
+  lines.push('', 'Ctrl-C stops it.');
+  process.stdout.write(`${lines.join('\n')}\n`);
+}
+
+main().catch((error: unknown) => {
+  process.stderr.write(`${error instanceof Error ? error.message : String(error)}\n`);
+  process.exit(1);
+});
