@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import type { AnswerField, FieldVariable } from './reading/reading';
 
 /** The forms an answer can take; all but `choice` and `worked` are compared with a computed key. */
 export const AnswerForm = {
@@ -231,3 +232,32 @@ export function isComputed(specification: AnswerSpecification): specification is
 
 /** The fraction of the marks for a right value without its unit, where a part names none. */
 export const defaultUnitFraction = 0.5;
+
+/**
+ * What is printed beside the answer field of a part, and with it all that the reader may know: no key, tolerance or
+ * slip. Symbols and spellings of a formula's variables come from the problem's givens, where it has some of that name.
+ */
+export function answerField(
+  specification: AnswerSpecification,
+  variables: ReadonlyMap<string, Omit<FieldVariable, 'name'>> = new Map(),
+): AnswerField {
+  switch (specification.form) {
+    case 'number':
+      return specification.unit === undefined
+        ? { form: 'number', hint: 'pure number' }
+        : { form: 'number', hint: 'with a unit', unit: specification.unit };
+    case 'formula':
+      return {
+        form: 'formula',
+        variables: Object.keys(specification.variables).map((name) => ({ name, ...variables.get(name) })),
+      };
+    case 'choice':
+      return {
+        form: 'choice',
+        labels: specification.options.map(optionLabel),
+        several: specification.several ?? false,
+      };
+    default:
+      return { form: specification.form };
+  }
+}

@@ -1,0 +1,36 @@
+import { parseExpression, type Grammar } from './parser';
+import { AmbiguousComma, ReadingProblem } from './problem';
+
+const nameLike = /^[\p{L}\\⟨<〈|∣(][\p{L}\p{M}\p{Nd}ℏ∆_{}()[\]\\^,|∣⟩>⟨<〉〈'′*²³⁽⁾⁰¹⁻⁺ \u00a0&₀-₉ₐ-ₜ]{0,59}$/u;
+const relation = /[=≈≃≅≡∼~]|:=/u;
+
+/** A text whose leading `name =` is set apart, with blanks in its place so that positions stay. */
+export interface Undressed {
+  readonly text: string;
+  readonly dropped?: string;
+}
+
+/** Whether the text can be worked out as it stands, and so is a value rather than a name. */
+function isArithmetic(text: string, grammar: Grammar): boolean {
+  try {
+    const node = parseExpression(text, { ...grammar, units: false, kets: false, variables: new Map() });
+    return node.type !== 'constant';
+  } catch (error) {
+    if (error instanceof ReadingProblem || error instanceof AmbiguousComma) return false;
+    throw error;
+  }
+}
+
+/**
+ * Sets a leading `name =` (or `≈`) apart: `P = 0.35` is read as 0.35. What stands before the sign must look like a
+ * name, not like something to work out: `sqrt(2)/2 = 0.7071` holds two values and is left as it is.
+ */
+export function dropLeadingName(text: string, grammar: Grammar): Undressed {
+  const found = relation.exec(text);
+  if (!found) return { text };
+  const before = text.slice(0, found.index).trim();
+  const end = found.index + found[0].length;
+  if (before !== '' && (!nameLike.test(before) || isArithmetic(before, grammar))) return { text };
+  const dropped = text.slice(0, end).trim();
+  return { text: ' '.repeat(end) + text.slice(end), dropped };
+}

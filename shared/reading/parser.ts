@@ -1,0 +1,488 @@
+import { answerFunctions } from './complex-functions';
+import { binary, contains, type ConstantName, type Expression } from './expression';
+import { lex, type Token, type TokenKind } from './lexer';
+import type { CommaRole } from './lex-number';
+import { canonicalName } from './names';
+import { quote, ReadingProblem } from './problem';
+import { nearestUnit, unitByName } from './units';
+
+/** What an expression may be made of. */
+export interface Grammar {
+  readonly comma: CommaRole;
+  readonly units: boolean;
+  readonly kets: boolean;
+  /** Variables by canonical spelling, with the name that each stands for. */
+  readonly variables: ReadonlyMap<string, string>;
+}
+
+/** The states that may be written by name in place of a ket, with how many arguments they take. */
+export const namedStates: Readonly<Record<string, readonly [number, number]>> = {
+  vacuum: [0, 0],
+  fock: [1, 1],
+  ket: [1, 2],
+  coherent: [1, 1],
+  cat: [1, 2],
+};
+
+const deepest = 60;
+const mostNodes = 600;
+const constants: ReadonlySet<string> = new Set(['pi', 'e', 'i']);
+
+/** Whether a name, as typed, has a meaning under the grammar. */
+export function isKnown(grammar: Grammar, name: string): boolean {
+  const canonical = canonicalName(name);
+  if (grammar.variables.has(canonical) || constants.has(canonical) || answerFunctions.has(canonical)) return true;
+  if (grammar.kets && Object.hasOwn(namedStates, canonical)) return true;
+  return grammar.units && unitByName(name) !== undefined;
+}
+
+/** A recursive-descent parser with the precedences of `mathjs`: an implicit product binds tighter than a quotient. */
+export class Parser {
+  private at = 0;
+  private depth = 0;
+  private nodes = 0;
+  private bars = 0;
+  /** The node that was last written as a number, and the one last closed by a bracket: they decide what may follow. */
+  private literal: Expression | undefined;
+  private bracketed: Expression | undefined;
+
+  constructor(
+    private readonly tokens: readonly Token[],
+    private readonly text: string,
+    private readonly grammar: Grammar,
+  ) {}
+
+  get token(): Token {
+    return this.peek(0);
+  }
+
+  peek(ahead: number): Token {
+    const last = this.tokens[this.tokens.length - 1];
+    const token = this.tokens[Math.min(this.at + ahead, this.tokens.length - 1)] ?? last;
+    if (!token) throw new ReadingProblem('There is nothing to read.');
+    return token;
+  }
+
+  is(kind: TokenKind, text?: string): boolean {
+    return this.token.kind === kind && (text === undefined || this.token.text === text);
+  }
+
+  take(): Token {
+    const token = this.token;
+    this.at += 1;
+    return token;
+  }
+
+  /** Reads a sum; what follows it is left to the caller. */
+  sum(): Expression {
+    this.depth += 1;
+    if (this.depth > deepest)
+      throw new ReadingProblem('The answer has too many brackets inside each other.', this.token.start);
+    let node = this.product();
+    while (this.is('operator', '+') || this.is('operator', '-')) {
+      const operator = this.take().text === '+' ? '+' : '-';
+      node = this.made(binary(operator, node, this.product()));
+    }
+    this.depth -= 1;
+    return node;
+  }
+
+  /** Reads a whole text as one expression. */
+  whole(): Expression {
+    const node = this.sum();
+    if (!this.is('end')) throw this.unexpected();
+    return node;
+  }
+
+  /** Why the present sign cannot stand where it does. */
+  unexpected(): ReadingProblem {
+    const { kind, text, start, end } = this.token;
+    const typed = quote(this.text.slice(start, end) || text);
+    if (kind === 'end') return new ReadingProblem('The answer ends too early; something is missing at its end.', start);
+    if (kind === 'number')
+      return new ReadingProblem('Two numbers stand side by side; write × between them, or only one number.', start);
+    if (kind === 'comma' || kind === 'semicolon')
+      return new ReadingProblem('There are several values; this field takes one.', start);
+    if (kind === 'close') return new ReadingProblem(`The bracket ${typed} closes nothing.`, start);
+    if (text === '=') return new ReadingProblem('Write one value, without a second “=”.', start);
+    if (text === '±') return new ReadingProblem('“±” gives two values; write one.', start);
+    if (kind === 'bar' || kind === 'rangle' || kind === 'langle') {
+      return new ReadingProblem(`${typed} belongs to a state, and this field does not take one here.`, start);
+    }
+    return new ReadingProblem(`${typed} cannot stand here.`, start);
+  }
+
+  private made<Node extends Expression>(node: Node): Node {
+    this.nodes += 1;
+    if (this.nodes > mostNodes) throw new ReadingProblem('The answer is too long to be read.', this.token.start);
+    return node;
+  }
+
+  private product(): Expression {
+    let node = this.implicitProduct();
+    for (;;) {
+      if (this.is('operator', '*') || this.is('operator', '/')) {
+        const operator = this.take().text === '*' ? '*' : '/';
+        node = this.made(binary(operator, node, this.implicitProduct()));
+      } else if (this.startsReciprocalUnit()) {
+        this.take();
+        this.take();
+        node = this.made(binary('/', node, this.implicitProduct()));
+      } else if (this.grammar.kets && this.startsFactor(node)) {
+        node = this.made(binary('*', node, this.quotient(), true));
+      } else return node;
+    }
+  }
+
+  /** `7.65e6 1/s`: a one over a unit behind a number belongs to the unit. */
+  private startsReciprocalUnit(): boolean {
+    const [first, slash, name] = [this.token, this.peek(1), this.peek(2)];
+    if (!this.grammar.units || first.digits !== '1' || first.exponent !== undefined || slash.text !== '/') return false;
+    return name.kind === 'open' || (name.kind === 'name' && unitByName(name.text) !== undefined);
+  }
+
+  private implicitProduct(): Expression {
+    let node = this.quotient();
+    // Beside kets a product without sign binds no tighter than a quotient: 1/√2 (|0⟩ + |1⟩).
+    if (this.grammar.kets) return node;
+    while (this.startsFactor(node)) node = this.made(binary('*', node, this.quotient(), true));
+    return node;
+  }
+
+  /** As in mathjs, `1/2 pi` is a half of π: a number over a number before a name or bracket is taken first. */
+  private quotient(): Expression {
+    let node = this.signed();
+    const number = (token: Token) => token.kind === 'number';
+    while (this.literal === node && this.is('operator', '/') && number(this.peek(1))) {
+      const after = this.peek(2);
+      if (this.grammar.kets || (after.kind !== 'name' && !(after.kind === 'open' && after.text === '('))) break;
+      this.take();
+      node = this.made(binary('/', node, this.signed()));
+      this.literal = node;
+    }
+    return node;
+  }
+
+  private startsFactor(before: Expression): boolean {
+    const { kind, text } = this.token;
+    if (kind === 'name' || kind === 'open' || kind === 'command') return true;
+    if (kind === 'operator') return text === '√';
+    if (kind === 'bar') return this.grammar.kets || this.bars === 0;
+    if (kind === 'number') {
+      return (
+        before === this.bracketed ||
+        before.type === 'constant' ||
+        before.type === 'variable' ||
+        before.type === 'factorial'
+      );
+    }
+    return false;
+  }
+
+  private signed(): Expression {
+    if (this.is('operator', '-')) {
+      const { start } = this.take();
+      return this.made({ type: 'negative', argument: this.nested(() => this.signed()), at: start });
+    }
+    if (this.is('operator', '+')) {
+      this.take();
+      return this.nested(() => this.signed());
+    }
+    return this.powered();
+  }
+
+  private nested<T>(read: () => T): T {
+    this.depth += 1;
+    if (this.depth > deepest * 2)
+      throw new ReadingProblem('The answer is too deeply nested to be read.', this.token.start);
+    const result = read();
+    this.depth -= 1;
+    return result;
+  }
+
+  private powered(): Expression {
+    const base = this.postfixed();
+    if (!this.is('operator', '^')) return base;
+    this.take();
+    if (this.is('operator', '°')) {
+      // LaTeX writes a degree as ^\circ.
+      return this.degrees(base);
+    }
+    return this.made(
+      binary(
+        '^',
+        base,
+        this.nested(() => this.signed()),
+      ),
+    );
+  }
+
+  private degrees(base: Expression): Expression {
+    const { start } = this.take();
+    const unit = this.grammar.units ? unitByName('°') : undefined;
+    if (!unit) throw new ReadingProblem('A degree sign has no meaning here.', start);
+    return this.made(binary('*', base, { type: 'unit', unit, at: start }, true));
+  }
+
+  private postfixed(): Expression {
+    let node = this.primary();
+    for (;;) {
+      if (this.is('operator', '!')) node = this.made({ type: 'factorial', argument: node, at: this.take().start });
+      else if (this.is('operator', '%')) node = this.made({ type: 'percent', argument: node, at: this.take().start });
+      else if (this.is('operator', '°')) node = this.degrees(node);
+      else return node;
+    }
+  }
+
+  private primary(): Expression {
+    const token = this.token;
+    switch (token.kind) {
+      case 'number':
+        this.take();
+        this.literal = this.made({
+          type: 'number',
+          value: token.value ?? NaN,
+          digits: token.digits ?? token.text,
+          ...(token.exponent === undefined ? {} : { exponent: token.exponent }),
+          at: token.start,
+        });
+        return this.literal;
+      case 'name':
+        return this.named();
+      case 'open':
+        return this.bracket();
+      case 'command':
+        return this.command();
+      case 'bar':
+        return this.grammar.kets ? this.ket() : this.absolute();
+      case 'operator':
+        if (token.text === '√') {
+          this.take();
+          return this.made({
+            type: 'call',
+            name: 'sqrt',
+            argument: this.nested(() => this.primary()),
+            at: token.start,
+          });
+        }
+        throw this.unexpected();
+      default:
+        throw this.unexpected();
+    }
+  }
+
+  /** A bracket of any kind and what it holds. */
+  private bracket(): Expression {
+    const open = this.take();
+    const saved = this.bars;
+    this.bars = 0;
+    const node = this.sum();
+    this.bars = saved;
+    this.close(open);
+    this.bracketed = node;
+    this.literal = undefined;
+    return node;
+  }
+
+  private close(open: Token): void {
+    const wanted = open.text === '(' ? ')' : open.text === '[' ? ']' : '}';
+    if (this.is('end')) throw new ReadingProblem(`The bracket ${quote(open.text)} is never closed.`, open.start);
+    if (!this.is('close')) throw this.unexpected();
+    if (this.token.text !== wanted) {
+      throw new ReadingProblem(
+        `The bracket ${quote(open.text)} is closed by ${quote(this.token.text)}.`,
+        this.token.start,
+      );
+    }
+    this.take();
+  }
+
+  private absolute(): Expression {
+    const { start } = this.take();
+    this.bars += 1;
+    const argument = this.sum();
+    this.bars -= 1;
+    if (!this.is('bar')) throw new ReadingProblem('The bar “|” is never closed.', start);
+    this.take();
+    return this.made({ type: 'call', name: 'abs', argument, at: start });
+  }
+
+  private command(): Expression {
+    const { text, start } = this.take();
+    if (text === 'ket') return this.ketInBraces(start);
+    if (text === 'frac') {
+      const [above, below] = [this.braced('\\frac{…}{…}'), this.braced('\\frac{…}{…}')];
+      const node = this.made(binary('/', above, below));
+      this.bracketed = node;
+      return node;
+    }
+    if (this.is('open', '[')) {
+      const order = this.bracket();
+      const radicand = this.braced('\\sqrt[3]{…}');
+      const exponent = binary('/', { type: 'number', value: 1, digits: '1', at: start }, order);
+      return this.made(binary('^', radicand, exponent));
+    }
+    const argument = this.is('open') ? this.bracket() : this.nested(() => this.primary());
+    return this.made({ type: 'call', name: 'sqrt', argument, at: start });
+  }
+
+  private braced(example: string): Expression {
+    if (!this.is('open', '{')) throw new ReadingProblem(`Write braces, as in ${example}.`, this.token.start);
+    return this.bracket();
+  }
+
+  private named(): Expression {
+    const token = this.take();
+    const name = canonicalName(token.text);
+    const at = token.start;
+    const variable = this.grammar.variables.get(name);
+    if (variable !== undefined) return this.made({ type: 'variable', name: variable, at });
+    if (constants.has(name)) return this.made({ type: 'constant', name: name as ConstantName, at });
+    if (this.grammar.kets && Object.hasOwn(namedStates, name)) return this.namedState(name, at);
+    const unit = this.grammar.units ? unitByName(token.text) : undefined;
+    if (answerFunctions.has(name) && (unit === undefined || this.is('open'))) return this.call(name, token);
+    if (unit) return this.made({ type: 'unit', unit, at });
+    throw this.unknown(token);
+  }
+
+  private call(name: string, token: Token): Expression {
+    let exponent: Expression | undefined;
+    if (this.is('operator', '^')) {
+      // sin²(x) is the square of the sine.
+      this.take();
+      exponent = this.is('open') ? this.bracket() : this.primary();
+      if (exponent.type !== 'number' || !Number.isInteger(exponent.value) || exponent.value < 1) {
+        throw new ReadingProblem(`Write the power of ${quote(token.text)} behind its bracket.`, token.start);
+      }
+    }
+    if (!this.is('open')) {
+      throw new ReadingProblem(`Write ${quote(token.text)} with brackets, as in ${name}(2).`, token.start);
+    }
+    const argument = this.bracket();
+    const node = this.made({ type: 'call', name, argument, at: token.start } as const);
+    return exponent ? this.made(binary('^', node, exponent)) : node;
+  }
+
+  private unknown(token: Token): ReadingProblem {
+    const typed = quote(token.text);
+    if (token.text === '∞' || canonicalName(token.text).toLowerCase() === 'infinity') {
+      return new ReadingProblem('The answer is not finite.', token.start);
+    }
+    if (token.text === 'j')
+      return new ReadingProblem('“j” is not known here; write i for the imaginary unit.', token.start);
+    const near = this.grammar.units ? nearestUnit(token.text) : undefined;
+    if (near !== undefined)
+      return new ReadingProblem(`The unit ${typed} is not known; did you mean ${quote(near)}?`, token.start);
+    const apart = this.splitIntoNames(token.text);
+    if (apart) {
+      return new ReadingProblem(
+        `The name ${typed} is not known here; for a product write ${quote(apart.join(' '))}.`,
+        token.start,
+      );
+    }
+    const what = this.grammar.units
+      ? 'is neither a unit nor a name that is known here'
+      : 'is not a name that is known here';
+    return new ReadingProblem(`${typed} ${what}.`, token.start);
+  }
+
+  /** Known variables that the letters of a name are made of, for the hint. */
+  private splitIntoNames(text: string): readonly string[] | undefined {
+    const names = [...this.grammar.variables.keys(), ...constants];
+    const split = (rest: string, most: number): readonly string[] | undefined => {
+      if (rest === '') return [];
+      if (most === 0) return undefined;
+      for (const name of names) {
+        const tail = rest.startsWith(name) ? split(rest.slice(name.length), most - 1) : undefined;
+        if (tail) return [name, ...tail];
+      }
+      return undefined;
+    };
+    const found = this.grammar.variables.size > 0 ? split(canonicalName(text).slice(0, 40), 4) : undefined;
+    return found && found.length > 1 ? found : undefined;
+  }
+
+  private namedState(name: string, at: number): Expression {
+    if (!this.is('open', '(')) throw new ReadingProblem(`Write ${quote(name)} with brackets, as in coherent(2).`, at);
+    const open = this.take();
+    const list: Expression[] = [];
+    while (!this.is('close') && !this.is('end')) {
+      list.push(this.sum());
+      if (!this.is('comma')) break;
+      this.take();
+    }
+    this.close(open);
+    const [fewest, most] = namedStates[name] ?? [0, 0];
+    if (list.length < fewest || list.length > most) {
+      throw new ReadingProblem(
+        `${quote(name)} takes ${most === fewest ? most : `${fewest} or ${most}`} values in its brackets.`,
+        at,
+      );
+    }
+    if (list.some((each) => contains(each, 'ket', 'state')))
+      throw new ReadingProblem(`${quote(name)} takes numbers.`, at);
+    return this.made({ type: 'state', name, arguments: list, at });
+  }
+
+  private ketInBraces(start: number): Expression {
+    if (!this.is('open', '{')) throw new ReadingProblem('Write braces, as in \\ket{0}.', start);
+    this.take();
+    return this.photons(start, () => this.is('close', '}'));
+  }
+
+  private ket(): Expression {
+    const { start } = this.take();
+    return this.photons(start, () => this.is('rangle'));
+  }
+
+  /** The photon numbers of a ket and its closing sign. */
+  private photons(start: number, closes: () => boolean): Expression {
+    const numbers: number[] = [];
+    for (;;) {
+      const token = this.token;
+      if (token.kind === 'end') throw new ReadingProblem('The ket is never closed; write it as |0⟩ or |0>.', start);
+      if (token.kind !== 'number') {
+        throw new ReadingProblem('A ket holds photon numbers, such as |2⟩ or |1,0⟩.', token.start);
+      }
+      if (!/^\d+$/.test(token.digits ?? '') || token.exponent !== undefined) {
+        throw new ReadingProblem('A photon number is a whole number, such as 0, 1 or 2.', token.start);
+      }
+      if (/^0\d/.test(token.digits ?? '')) {
+        throw new ReadingProblem(
+          `Separate the modes by commas: |${[...(token.digits ?? '')].join(',')}⟩.`,
+          token.start,
+        );
+      }
+      numbers.push(token.value ?? 0);
+      this.take();
+      if (closes()) break;
+      if (!this.is('comma')) {
+        if (this.is('end')) throw new ReadingProblem('The ket is never closed; write it as |0⟩ or |0>.', start);
+        throw new ReadingProblem('Separate the modes of a ket by commas, and close it: |1,0⟩.', this.token.start);
+      }
+      this.take();
+    }
+    this.take();
+    return this.made({ type: 'ket', photons: numbers, at: start });
+  }
+}
+
+/** `4.98 x 10^3`: an x between two numbers is a times sign, where no variable is called so. */
+function letterTimes(tokens: readonly Token[], grammar: Grammar): readonly Token[] {
+  return tokens.map((token, index) => {
+    if (token.kind !== 'name' || !/^[xX]$/.test(token.text) || isKnown(grammar, token.text)) return token;
+    const between = tokens[index - 1]?.kind === 'number' && tokens[index + 1]?.kind === 'number';
+    return between ? { ...token, kind: 'operator', text: '*' } : token;
+  });
+}
+
+/** A parser over a text. Throws a ReadingProblem or AmbiguousComma where the text holds signs without meaning. */
+export function parserFor(text: string, grammar: Grammar): Parser {
+  const tokens = lex(text, { comma: grammar.comma, known: (name) => isKnown(grammar, name), kets: grammar.kets });
+  return new Parser(letterTimes(tokens, grammar), text, grammar);
+}
+
+/** Reads a text as one expression. */
+export function parseExpression(text: string, grammar: Grammar): Expression {
+  return parserFor(text, grammar).whole();
+}

@@ -1,0 +1,32 @@
+import { askAboutComma } from './ask-comma';
+import { AmbiguousComma, ReadingProblem } from './problem';
+import { readComplex, readNumber } from './read-number';
+import type { AnswerField, Reading } from './reading';
+
+const blank = /^[\s\u200b-\u200f\u2060\ufeff]*$/u;
+
+function read(text: string, field: AnswerField): Reading {
+  switch (field.form) {
+    case 'number':
+      return readNumber(text, field);
+    case 'complex':
+      return readComplex(text);
+    default:
+      return { kind: 'worked', text, readAs: text.trim() };
+  }
+}
+
+/**
+ * Reads an answer under what is printed beside its field, the same way in browser and server. It never throws: what
+ * cannot be read comes back with a sentence and the place; what can be read in two ways comes back as a question.
+ */
+export function readAnswer(text: string, field: AnswerField): Reading {
+  if (blank.test(text)) return { kind: 'empty' };
+  try {
+    return read(text, field);
+  } catch (error) {
+    if (error instanceof AmbiguousComma) return askAboutComma(text, error);
+    if (!(error instanceof ReadingProblem)) throw error;
+    return { kind: 'unreadable', problem: error.message, ...(error.at === undefined ? {} : { at: error.at + 1 }) };
+  }
+}
