@@ -83,7 +83,9 @@ export const courses = sqliteTable('courses', {
   timeZone: text().notNull(),
   vacuumVariance: real().notNull().default(0.5),
   squeezingSign: integer().notNull().default(1),
-  splitterPhase: real().notNull().default(Math.PI / 2),
+  splitterPhase: real()
+    .notNull()
+    .default(Math.PI / 2),
   createdAt: time().notNull(),
   version: version(),
 });
@@ -207,7 +209,10 @@ export const setProblems = sqliteTable(
       .notNull()
       .references(() => revisions.id),
   },
-  (table) => [index('set_problems_set').on(table.setId, table.position), index('set_problems_problem').on(table.problemId)],
+  (table) => [
+    index('set_problems_set').on(table.setId, table.position),
+    index('set_problems_problem').on(table.problemId),
+  ],
 );
 
 /** One draw of a problem's givens, for one student or (membership null) for all. */
@@ -407,6 +412,9 @@ export const marks = sqliteTable(
   (table) => [
     index('marks_answer').on(table.answerId, table.at),
     uniqueIndex('marks_key').on(table.answerId, table.idempotencyKey),
+    // However two markers race: an answer has one first mark of each kind, and a mark is replaced once.
+    uniqueIndex('marks_once').on(table.answerId, table.kind).where(sql`replaces_id is null`),
+    uniqueIndex('marks_replaced_once').on(table.replacesId),
   ],
 );
 
@@ -476,5 +484,8 @@ export const record = sqliteTable(
     after: text({ mode: 'json' }),
     reason: text(),
   },
-  (table) => [index('record_course').on(table.courseId, table.at), index('record_thing').on(table.thing, table.thingId)],
+  (table) => [
+    index('record_course').on(table.courseId, table.at),
+    index('record_thing').on(table.thing, table.thingId),
+  ],
 );
