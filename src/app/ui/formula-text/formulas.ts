@@ -1,0 +1,64 @@
+import katex, { ParseError } from 'katex';
+
+/** A formula set once, kept to be copied. */
+interface SetFormula {
+  readonly node: HTMLElement;
+  /** What is wrong with it, in KaTeX's words. */
+  readonly problem?: string;
+}
+
+/** Formulas kept, most recently used last. */
+const kept = new Map<string, SetFormula>();
+const keptAtMost = 2000;
+const longestFormula = 4000;
+
+/**
+ * Typesets a formula into an element of its own. Formulas are kept, so that a statement that changes by a letter sets only
+ * the formula with that letter anew. Links, classes and styles inside formulas are refused, expansion and sizes are bounded.
+ */
+export function setFormula(
+  source: string,
+  display: boolean,
+): { readonly element: HTMLElement; readonly problem?: string } {
+  const key = `${display ? 'd' : 'i'}${source}`;
+  let found = kept.get(key);
+  if (found) {
+    kept.delete(key);
+  } else {
+    found = typeset(source, display);
+    if (kept.size >= keptAtMost) {
+      const oldest = kept.keys().next().value;
+      if (oldest !== undefined) kept.delete(oldest);
+    }
+  }
+  kept.set(key, found);
+  const element = found.node.cloneNode(true) as HTMLElement;
+  return found.problem === undefined ? { element } : { element, problem: found.problem };
+}
+
+function typeset(source: string, display: boolean): SetFormula {
+  const node = document.createElement('span');
+  node.className = display ? 'formula display' : 'formula';
+  if (source.length > longestFormula) {
+    node.textContent = source.slice(0, 80) + '…';
+    node.classList.add('formula-wrong');
+    return { node, problem: `The formula is longer than ${longestFormula} characters.` };
+  }
+  const options = {
+    displayMode: display,
+    trust: false,
+    strict: 'ignore',
+    maxExpand: 300,
+    maxSize: 12,
+    errorColor: 'var(--wrong)',
+  } as const;
+  try {
+    katex.render(source, node, { ...options, throwOnError: true });
+    return { node };
+  } catch (error) {
+    if (!(error instanceof ParseError)) throw error;
+    katex.render(source, node, { ...options, throwOnError: false });
+    node.classList.add('formula-wrong');
+    return { node, problem: error.rawMessage };
+  }
+}
