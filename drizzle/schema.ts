@@ -2,6 +2,7 @@ import { sql } from 'drizzle-orm';
 import { check, index, integer, real, sqliteTable, text, uniqueIndex } from 'drizzle-orm/sqlite-core';
 import type { AnswerDigest, CheckResult } from '@shared/checks';
 import type { MarkedCriterion } from '@shared/marking';
+import type { ProblemDraft } from '@shared/problem-draft';
 import type { ProblemContent } from '@shared/problems';
 import { setStageNames } from '@shared/primitives';
 import type { GivenValue } from '@shared/variants';
@@ -124,8 +125,8 @@ export const problems = sqliteTable('problems', {
   status: text({ enum: ['draft', 'in review', 'ready', 'retired'] })
     .notNull()
     .default('draft'),
-  /** What is being written. A revision is a frozen copy of it. */
-  draft: text({ mode: 'json' }).$type<ProblemContent>().notNull(),
+  /** What is being written, as it is typed. A revision is frozen content made of it. */
+  draft: text({ mode: 'json' }).$type<ProblemDraft>().notNull(),
   draftSavedAt: time().notNull(),
   createdAt: time().notNull(),
   version: version(),
