@@ -5,6 +5,7 @@ import { addAccountRoutes } from './accounts/accounts-routes';
 import { createSessions, type Sessions } from './accounts/sessions';
 import type { Context } from './context';
 import { addCourseRoutes } from './courses/courses-routes';
+import { addRecordRoutes } from './record/record-routes';
 import { contentPolicy } from './http/content-policy';
 import { notFound } from './http/errors';
 import { openApiDocument } from './http/openapi';
@@ -47,7 +48,10 @@ export function createApp(context: Context, clientFolder?: string): Application 
       logger: log,
       // Neither addresses, nor cookies, nor query texts: what is logged names no person.
       serializers: {
-        req: (request: { method: string; url: string }) => ({ method: request.method, path: request.url.split('?')[0] }),
+        req: (request: { method: string; url: string }) => ({
+          method: request.method,
+          path: request.url.split('?')[0],
+        }),
         res: (response: { statusCode: number }) => ({ status: response.statusCode }),
       },
       customProps: (_request, response) => ({ requestId: response.getHeader('X-Request-Id') }),
@@ -77,6 +81,7 @@ export function createApp(context: Context, clientFolder?: string): Application 
   app.use('/api', (request, response, next) => sessions.middleware(request, response, next));
   addAccountRoutes(serve, context, sessions);
   addCourseRoutes(serve, context);
+  addRecordRoutes(serve, context);
   app.use('/api', router);
   app.use('/api', () => {
     throw notFound('address');

@@ -4,6 +4,7 @@ import { provideRouter, TitleStrategy, withComponentInputBinding, withInMemorySc
 import { routes } from './app.routes';
 import { PageTitle } from './core/page-title';
 import { problemDetailsInterceptor } from './core/problem-details-interceptor';
+import { provideLook } from './ui/look';
 
 /** What the application is made of: router, HTTP, titles. */
 export const appConfig: ApplicationConfig = {
@@ -15,6 +16,7 @@ export const appConfig: ApplicationConfig = {
       withInMemoryScrolling({ scrollPositionRestoration: 'enabled', anchorScrolling: 'enabled' }),
     ),
     provideHttpClient(withFetch(), withInterceptors([problemDetailsInterceptor])),
+    provideLook(),
     { provide: TitleStrategy, useExisting: PageTitle },
   ],
 };

@@ -1,5 +1,6 @@
-import { ChangeDetectionStrategy, Component } from '@angular/core';
+import { ChangeDetectionStrategy, Component, inject } from '@angular/core';
 import { RouterOutlet } from '@angular/router';
+import { ColourScheme } from './core/colour-scheme';
 
 /** The root: whatever page the address names. */
 @Component({
@@ -8,4 +9,7 @@ import { RouterOutlet } from '@angular/router';
   template: '<router-outlet />',
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
-export class App {}
+export class App {
+  // Made at once, so that no page flashes in the other scheme.
+  protected readonly scheme = inject(ColourScheme);
+}
