@@ -95,7 +95,11 @@ async function announce(context: Context, config: Config): Promise<void> {
   if (config.demo) {
     const { demonstrationAccounts } = await import('../demo/accounts');
     lines.push('', 'The demonstration’s accounts:');
-    lines.push(...demonstrationAccounts.map(({ email, password, role }) => `  ${role.padEnd(14)} ${email.padEnd(34)} ${password}`));
+    lines.push(
+      ...demonstrationAccounts.map(
+        ({ email, password, role }) => `  ${role.padEnd(14)} ${email.padEnd(34)} ${password}`,
+      ),
+    );
   }
   lines.push('', 'Ctrl-C stops it.');
   process.stdout.write(`${lines.join('\n')}\n`);

@@ -184,7 +184,14 @@ export function addAccountRoutes(serve: Serve, context: Context, sessions: Sessi
 
   serve(accountRoutes.letters, ({ user, query }) => {
     demand(user, 'read the outbox');
-    enterAccount(db, context, user, 'outbox read', user.id, `${user.name} read the outbox, page ${String(query.page)}.`);
+    enterAccount(
+      db,
+      context,
+      user,
+      'outbox read',
+      user.id,
+      `${user.name} read the outbox, page ${String(query.page)}.`,
+    );
     const total = db.select({ n: count() }).from(letters).get()?.n ?? 0;
     const rows = db
       .select({ letter: letters, to: users.email })
@@ -226,11 +233,7 @@ function presentAccount(row: typeof users.$inferSelect) {
 /** Makes the one-time link by which an empty installation gets its first administrator; null where it has one. */
 export function firstAdministratorLink(context: Context): string | null {
   const { db, clock, config } = context;
-  const any = db
-    .select({ id: users.id })
-    .from(users)
-    .where(eq(users.isAdministrator, true))
-    .get();
+  const any = db.select({ id: users.id }).from(users).where(eq(users.isAdministrator, true)).get();
   if (any) return null;
   return linkWith(config.origin, makeToken(db, 'first administrator', null, clock.now()).secret);
 }

@@ -89,7 +89,15 @@ export function createSessions(db: Database, config: Pick<Config, 'secureCookies
     next();
   }
 
-  return { lucia, begin, read, end, endAll, middleware, blankCookie: () => lucia.createBlankSessionCookie().serialize() };
+  return {
+    lucia,
+    begin,
+    read,
+    end,
+    endAll,
+    middleware,
+    blankCookie: () => lucia.createBlankSessionCookie().serialize(),
+  };
 }
 
 function membershipsOf(db: Database, userId: string): ReadonlyMap<string, Membership> {

@@ -27,7 +27,9 @@ export function makeToken(tx: Queryable, kind: TokenKind, userId: string | null,
   tx.update(tokens).set({ usedAt: now }).where(earlier).run();
   const secret = newSecret();
   const expiresAt = now + lifetimes[kind];
-  tx.insert(tokens).values({ id: newId(), kind, hash: hashSecret(secret), userId, createdAt: now, expiresAt }).run();
+  tx.insert(tokens)
+    .values({ id: newId(), kind, hash: hashSecret(secret), userId, createdAt: now, expiresAt })
+    .run();
   return { secret, expiresAt };
 }
 

@@ -87,8 +87,7 @@ export function addCourseRoutes(serve: Serve, context: Context): void {
       (tx) => {
         const course = findCourse(tx, params.courseId);
         const joined = joinCourse(tx, course.id, body, clock.now());
-        if (joined.needsInvitation)
-          invite(tx, { id: joined.userId, name: body.name }, course.title, clock.now());
+        if (joined.needsInvitation) invite(tx, { id: joined.userId, name: body.name }, course.title, clock.now());
         const member = presentMember(findMember(tx, course.id, joined.membershipId));
         enterCourse(tx, user, course.id, 'person added', joined.membershipId, `${user.name} added a ${body.role}.`);
         return member;
@@ -103,7 +102,10 @@ export function addCourseRoutes(serve: Serve, context: Context): void {
       (tx) => {
         const before = findMember(tx, params.courseId, params.membershipId);
         if (before.membership.role === 'lead' && body.role !== 'lead') refuseLastLead(tx, params.courseId);
-        const tokens = benchTokens(tx, params.courseId, params.membershipId, { name: before.user.name, role: body.role });
+        const tokens = benchTokens(tx, params.courseId, params.membershipId, {
+          name: before.user.name,
+          role: body.role,
+        });
         const keep = before.membership.hue !== null && body.role !== 'student';
         tx.update(memberships)
           .set({ role: body.role, ...(keep ? {} : tokens) })
@@ -130,7 +132,14 @@ export function addCourseRoutes(serve: Serve, context: Context): void {
         const row = findMember(tx, params.courseId, params.membershipId);
         if (row.membership.role === 'lead') refuseLastLead(tx, params.courseId);
         tx.update(memberships).set({ removedAt: clock.now() }).where(eq(memberships.id, row.membership.id)).run();
-        enterCourse(tx, user, params.courseId, 'person removed', row.membership.id, `${user.name} took a ${row.membership.role} out of the course.`);
+        enterCourse(
+          tx,
+          user,
+          params.courseId,
+          'person removed',
+          row.membership.id,
+          `${user.name} took a ${row.membership.role} out of the course.`,
+        );
       },
       { behavior: 'immediate' },
     );
@@ -143,7 +152,14 @@ export function addCourseRoutes(serve: Serve, context: Context): void {
       (tx) => {
         const row = findMember(tx, params.courseId, params.membershipId);
         tx.update(memberships).set({ removedAt: null }).where(eq(memberships.id, row.membership.id)).run();
-        enterCourse(tx, user, params.courseId, 'person returned', row.membership.id, `${user.name} took back the removal of a ${row.membership.role}.`);
+        enterCourse(
+          tx,
+          user,
+          params.courseId,
+          'person returned',
+          row.membership.id,
+          `${user.name} took back the removal of a ${row.membership.role}.`,
+        );
         return presentMember(findMember(tx, params.courseId, params.membershipId));
       },
       { behavior: 'immediate' },
@@ -157,7 +173,14 @@ export function addCourseRoutes(serve: Serve, context: Context): void {
       throw conflict(`${row.user.name} has a password already and can set a new one from the sign-in page.`);
     const course = findCourse(db, params.courseId);
     const byMail = config.smtpUrl !== undefined;
-    enterCourse(db, user, course.id, 'invited again', row.membership.id, `${user.name} invited a ${row.membership.role} again.`);
+    enterCourse(
+      db,
+      user,
+      course.id,
+      'invited again',
+      row.membership.id,
+      `${user.name} invited a ${row.membership.role} again.`,
+    );
     const { secret, expiresAt } = makeToken(db, 'invitation', row.user.id, clock.now());
     if (byMail) invite(db, row.user, course.title, clock.now());
     return { link: byMail ? null : linkWith(config.origin, secret), expiresAt };
@@ -179,7 +202,10 @@ export function addCourseRoutes(serve: Serve, context: Context): void {
         const wrong = rows.filter((row) => row.outcome === 'wrong');
         if (wrong.length > 0)
           throw invalidInput(
-            wrong.map((row) => ({ path: ['csv', row.line], message: `Line ${String(row.line)}: ${row.problems.join(' ')}` })),
+            wrong.map((row) => ({
+              path: ['csv', row.line],
+              message: `Line ${String(row.line)}: ${row.problems.join(' ')}`,
+            })),
             `${String(wrong.length)} lines are wrong, so nobody was added.`,
           );
         const coming = rows.filter((row) => row.outcome !== 'already here');
@@ -191,7 +217,14 @@ export function addCourseRoutes(serve: Serve, context: Context): void {
           invite(tx, { id: joined.userId, name: row.name }, course.title, clock.now());
           invited += 1;
         }
-        enterCourse(tx, user, course.id, 'roster imported', course.id, `${user.name} added ${String(coming.length)} people from a file.`);
+        enterCourse(
+          tx,
+          user,
+          course.id,
+          'roster imported',
+          course.id,
+          `${user.name} added ${String(coming.length)} people from a file.`,
+        );
         return { added: coming.length, invited, unchanged: rows.length - coming.length };
       },
       { behavior: 'immediate' },

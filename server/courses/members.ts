@@ -30,12 +30,8 @@ export function listMembers(
   if (filter.search) conditions.push(or(like(users.name, term), like(users.email, term)));
   const where = and(...conditions);
   const total =
-    tx
-      .select({ n: count() })
-      .from(memberships)
-      .innerJoin(users, eq(users.id, memberships.userId))
-      .where(where)
-      .get()?.n ?? 0;
+    tx.select({ n: count() }).from(memberships).innerJoin(users, eq(users.id, memberships.userId)).where(where).get()
+      ?.n ?? 0;
   const rows = selectMembers(tx)
     .where(where)
     .orderBy(users.name)
@@ -77,12 +73,20 @@ export function joinCourse(
   const membershipId = here?.id ?? newId();
   const place = { role: person.role, removedAt: null, ...benchTokens(tx, courseId, membershipId, person) };
   if (here) tx.update(memberships).set(place).where(eq(memberships.id, membershipId)).run();
-  else tx.insert(memberships).values({ id: membershipId, courseId, userId, createdAt: now, ...place }).run();
+  else
+    tx.insert(memberships)
+      .values({ id: membershipId, courseId, userId, createdAt: now, ...place })
+      .run();
   return { membershipId, userId, needsInvitation: !found?.passwordHash };
 }
 
 /** Initials and hue for the bench, for those who mark; the least used hue of the course. */
-export function benchTokens(tx: Queryable, courseId: string, membershipId: string, person: { name: string; role: Role }) {
+export function benchTokens(
+  tx: Queryable,
+  courseId: string,
+  membershipId: string,
+  person: { name: string; role: Role },
+) {
   if (person.role === 'student') return { initials: null, hue: null };
   const team = tx
     .select({ id: memberships.id, initials: memberships.initials, hue: memberships.hue })
@@ -101,7 +105,8 @@ function freeInitials(name: string, taken: ReadonlySet<string | null>): string {
   const first = (words[0]?.[0] ?? '?').toUpperCase();
   const last = words.length > 1 ? (words.at(-1) ?? '') : '';
   const candidates = [first + last.slice(0, 1).toUpperCase(), first + last.slice(0, 2)];
-  for (let number = 2; number < 100; number += 1) candidates.push(`${first}${last.slice(0, 1).toUpperCase()}${String(number)}`);
+  for (let number = 2; number < 100; number += 1)
+    candidates.push(`${first}${last.slice(0, 1).toUpperCase()}${String(number)}`);
   return candidates.find((each) => !taken.has(each)) ?? first;
 }
 

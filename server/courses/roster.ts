@@ -35,12 +35,20 @@ export function readRoster(tx: Queryable, courseId: string, csv: string): Roster
 
   return lines.map(({ record, info }) => {
     const cell = (column: number) => (column < 0 ? '' : (record[column] ?? '').trim());
-    const raw = { name: cell(columns.name), email: cell(columns.email), role: cell(columns.role).toLowerCase() || 'student' };
+    const raw = {
+      name: cell(columns.name),
+      email: cell(columns.email),
+      role: cell(columns.role).toLowerCase() || 'student',
+    };
     const row = { line: info.lines, ...raw };
     const parsed = newMember.safeParse(raw);
-    const problems = parsed.success ? [] : parsed.error.issues.map((issue) => roleOr(issue.path[0], raw.role, issue.message));
+    const problems = parsed.success
+      ? []
+      : parsed.error.issues.map((issue) => roleOr(issue.path[0], raw.role, issue.message));
     if (record.length > heading.record.length)
-      problems.push(`The line has ${String(record.length)} cells, the heading ${String(heading.record.length)}; put a name with a comma in quotes.`);
+      problems.push(
+        `The line has ${String(record.length)} cells, the heading ${String(heading.record.length)}; put a name with a comma in quotes.`,
+      );
     const address = parsed.data?.email ?? raw.email.toLowerCase();
     const before = seen.get(address);
     if (address && before !== undefined) problems.push(`The address stands on line ${String(before)} already.`);
@@ -48,7 +56,12 @@ export function readRoster(tx: Queryable, courseId: string, csv: string): Roster
     if (problems.length > 0) return { ...row, outcome: 'wrong' as const, problems };
     const person = known.get(address);
     if (person?.here && person.role !== raw.role)
-      return { ...row, email: address, outcome: 'wrong' as const, problems: [`Is in this course already, as ${person.role}; change the role on the page.`] };
+      return {
+        ...row,
+        email: address,
+        outcome: 'wrong' as const,
+        problems: [`Is in this course already, as ${person.role}; change the role on the page.`],
+      };
     const outcome = person?.here ? 'already here' : person ? 'joins with their account' : 'new person';
     return { ...row, email: address, outcome, problems: [] } as RosterRow;
   });
@@ -65,7 +78,12 @@ function parseCsv(csv: string): ParsedLine[] {
     firstLine.split(each).length > firstLine.split(best).length ? each : best,
   );
   try {
-    return parse(text, { delimiter, info: true, relax_column_count: true, skip_empty_lines: true }) as unknown as ParsedLine[];
+    return parse(text, {
+      delimiter,
+      info: true,
+      relax_column_count: true,
+      skip_empty_lines: true,
+    }) as unknown as ParsedLine[];
   } catch (error) {
     // The parser refuses quotes that do not close, and says on which line.
     if (error instanceof CsvError) throw invalidField(['csv'], `The file cannot be read as CSV: ${error.message}.`);

@@ -40,7 +40,9 @@ function operation(route: Route) {
     ...(route.open ? {} : { security: [{ session: [] }] }),
     parameters: parametersOf(route),
     ...(hasProperties(route.body)
-      ? { requestBody: { required: true, content: { 'application/json': { schema: jsonSchema(route.body, 'input') } } } }
+      ? {
+          requestBody: { required: true, content: { 'application/json': { schema: jsonSchema(route.body, 'input') } } },
+        }
       : {}),
     responses: { [String(route.status)]: ok, default: failure },
   };
@@ -70,7 +72,10 @@ function hasProperties(schema: z.ZodType): boolean {
 }
 
 function operationId(route: Route): string {
-  const words = route.path.split('/').filter(Boolean).map((word) => word.replace(/[^A-Za-z]/g, ''));
+  const words = route.path
+    .split('/')
+    .filter(Boolean)
+    .map((word) => word.replace(/[^A-Za-z]/g, ''));
   return route.method.toLowerCase() + words.map((word) => word.charAt(0).toUpperCase() + word.slice(1)).join('');
 }
 

@@ -78,7 +78,10 @@ function parseWith(schema: z.ZodType, value: unknown, where: 'address' | 'query'
   if (parsed.success) return parsed.data;
   throw invalidInput(
     parsed.error.issues.map((issue) => ({
-      path: [...(where === 'body' ? [] : [where]), ...issue.path.map((step) => (typeof step === 'symbol' ? String(step) : step))],
+      path: [
+        ...(where === 'body' ? [] : [where]),
+        ...issue.path.map((step) => (typeof step === 'symbol' ? String(step) : step)),
+      ],
       message: issue.message,
     })),
   );

@@ -42,7 +42,8 @@ function asRequestError(error: unknown): RequestError {
       'The server’s disk is full',
       'The server’s disk is full, so nothing was saved there. What you typed is kept in this browser; tell an administrator.',
     );
-  if (error instanceof URIError) return new RequestError('/errors/invalid-input', 'Not readable', 'The address cannot be read.');
+  if (error instanceof URIError)
+    return new RequestError('/errors/invalid-input', 'Not readable', 'The address cannot be read.');
   return new RequestError(
     '/errors/unexpected',
     'Something went wrong here',

@@ -37,10 +37,15 @@ export function queueLetter(tx: Queryable, letter: Letter): string {
 
 /** A letter as HTML: its paragraphs, escaped, with addresses as links. */
 export function letterAsHtml(text: string): string {
-  const escaped = text.replace(/[&<>"]/g, (sign) => ({ '&': '&amp;', '<': '&lt;', '>': '&gt;', '"': '&quot;' })[sign] ?? sign);
+  const escaped = text.replace(
+    /[&<>"]/g,
+    (sign) => ({ '&': '&amp;', '<': '&lt;', '>': '&gt;', '"': '&quot;' })[sign] ?? sign,
+  );
   return escaped
     .split(/\n{2,}/)
-    .map((paragraph) => paragraph.replace(/\n/g, '<br>').replace(/https?:\/\/[^\s<]+/g, (link) => `<a href="${link}">${link}</a>`))
+    .map((paragraph) =>
+      paragraph.replace(/\n/g, '<br>').replace(/https?:\/\/[^\s<]+/g, (link) => `<a href="${link}">${link}</a>`),
+    )
     .map((paragraph) => `<p>${paragraph}</p>`)
     .join('\n');
 }
