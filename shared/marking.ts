@@ -262,7 +262,8 @@ export const markingRoutes = {
   take: defineRoute({
     method: 'POST',
     path: '/piles/:pileId/holds',
-    summary: 'Take an answer in hand (a named one, the next after one, or the next of a pattern), and keep two more ready',
+    summary:
+      'Take an answer in hand (a named one, the next after one, or the next of a pattern), and keep two more ready',
     params: pileParams,
     body: z.object({
       ...bench,
@@ -308,7 +309,6 @@ export const markingRoutes = {
     response: benchOutcome,
     status: 200,
     versioned: true,
-    idempotent: true,
   }),
   setAside: defineRoute({
     method: 'POST',
