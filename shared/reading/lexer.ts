@@ -43,7 +43,7 @@ export interface LexerOptions {
 export const longestAnswer = 2000;
 
 const minus = /[-\u2212\u2013\u2010\u2011\ufe63\uff0d]/;
-const times = /[*×✕⨯·⋅∙•∗⸱・]/;
+const times = /[*×✕⨯·⋅∙•∗⸱・⊗]/;
 const divided = /[/÷∕⁄]/;
 const space = /[\s\u200b-\u200f\u2060\ufeff$]/u;
 const letter = /[\p{L}\p{M}ℏ∆]/u;
@@ -73,6 +73,7 @@ const signs: Readonly<Record<string, readonly [TokenKind, string]>> = {
   cdot: ['operator', '*'],
   times: ['operator', '*'],
   ast: ['operator', '*'],
+  otimes: ['operator', '*'],
   div: ['operator', '/'],
   pm: ['operator', '±'],
   langle: ['langle', '⟨'],

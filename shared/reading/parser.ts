@@ -106,6 +106,9 @@ export class Parser {
     if (kind === 'close') return new ReadingProblem(`The bracket ${typed} closes nothing.`, start);
     if (text === '=') return new ReadingProblem('Write one value, without a second “=”.', start);
     if (text === '±') return new ReadingProblem('“±” gives two values; write one.', start);
+    if (kind === 'langle' && this.grammar.kets) {
+      return new ReadingProblem('A bra has no place here; write kets such as |0⟩.', start);
+    }
     if (kind === 'bar' || kind === 'rangle' || kind === 'langle') {
       return new ReadingProblem(`${typed} belongs to a state, and this field does not take one here.`, start);
     }
@@ -286,7 +289,10 @@ export class Parser {
 
   private close(open: Token): void {
     const wanted = open.text === '(' ? ')' : open.text === '[' ? ']' : '}';
-    if (this.is('end')) throw new ReadingProblem(`The bracket ${quote(open.text)} is never closed.`, open.start);
+    const rest = this.tokens.slice(this.at);
+    if (!rest.some(({ kind }) => kind === 'close')) {
+      throw new ReadingProblem(`The bracket ${quote(open.text)} is never closed.`, open.start);
+    }
     if (!this.is('close')) throw this.unexpected();
     if (this.token.text !== wanted) {
       throw new ReadingProblem(
@@ -302,6 +308,7 @@ export class Parser {
     this.bars += 1;
     const argument = this.sum();
     this.bars -= 1;
+    if (this.is('rangle')) throw this.unexpected();
     if (!this.is('bar')) throw new ReadingProblem('The bar “|” is never closed.', start);
     this.take();
     return this.made({ type: 'call', name: 'abs', argument, at: start });

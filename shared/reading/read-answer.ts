@@ -1,5 +1,10 @@
 import { askAboutComma } from './ask-comma';
 import { AmbiguousComma, ReadingProblem } from './problem';
+import { readChoice } from './read-choice';
+import { readFormula } from './read-formula';
+import { readList } from './read-list';
+import { readMatrix } from './read-matrix';
+import { readState } from './read-state';
 import { readComplex, readNumber } from './read-number';
 import type { AnswerField, Reading } from './reading';
 
@@ -11,7 +16,18 @@ function read(text: string, field: AnswerField): Reading {
       return readNumber(text, field);
     case 'complex':
       return readComplex(text);
-    default:
+    case 'list':
+    case 'distribution':
+      return readList(text, field.form);
+    case 'matrix':
+      return readMatrix(text);
+    case 'state':
+      return readState(text);
+    case 'formula':
+      return readFormula(text, field.variables);
+    case 'choice':
+      return readChoice(text, field.labels);
+    case 'worked':
       return { kind: 'worked', text, readAs: text.trim() };
   }
 }

@@ -1,0 +1,50 @@
+import type { AnswerSpecification } from '@shared/answer-forms';
+import { add, conjugate, modulus, multiply, zero } from '@shared/reading/complex';
+import type { ReadingOf } from '@shared/reading/reading';
+import { amplitudesOf } from '@shared/reading/superposition';
+import { asState, KeyProblem, type ComputedKey, type StateKey } from './key-value';
+import { matched, type Match } from './match';
+
+const modes = (count: number): string => (count === 1 ? 'one mode' : `${count} modes`);
+
+/**
+ * Fidelity of the written state with the key, both normalised: |⟨k|a⟩|² for a pure key, ⟨a|ρ|a⟩ for a mixed one.
+ */
+export function fidelityWithKey(reading: ReadingOf<'state'>, key: StateKey): number {
+  const amplitude = amplitudesOf(reading);
+  const norm = reading.norm ** 2;
+  if ('amplitudes' in key) {
+    let overlap = zero;
+    let weight = 0;
+    for (const { photons, re, im } of key.amplitudes) {
+      overlap = add(overlap, multiply({ re, im: -im }, amplitude(photons)));
+      weight += re * re + im * im;
+    }
+    if (!(weight > 0)) throw new KeyProblem('The key is the zero vector.');
+    return modulus(overlap) ** 2 / (norm * weight);
+  }
+  let sum = 0;
+  let trace = 0;
+  for (const { row, column, re, im } of key.elements) {
+    const part = multiply(multiply(conjugate(amplitude(row)), { re, im }), amplitude(column));
+    sum += part.re;
+    if (row.join() === column.join()) trace += re;
+  }
+  if (!(trace > 0)) throw new KeyProblem('The key is no state: its trace is not positive.');
+  return sum / (norm * trace);
+}
+
+/** Compares a state by fidelity, up to global phase and normalisation. */
+export function compareState(
+  reading: ReadingOf<'state'>,
+  key: ComputedKey,
+  part: Extract<AnswerSpecification, { form: 'state' }>,
+): Match {
+  const state = asState(key.value);
+  if (reading.modes !== state.modes) {
+    return matched(false, {
+      reason: `The answer is a state of ${modes(reading.modes)}, the key one of ${modes(state.modes)}.`,
+    });
+  }
+  return matched(fidelityWithKey(reading, state) >= part.minimumFidelity - 1e-12);
+}

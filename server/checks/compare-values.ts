@@ -1,0 +1,88 @@
+import type { AnswerSpecification } from '@shared/answer-forms';
+import { modulus, real, type Complex } from '@shared/reading/complex';
+import type { ReadingOf } from '@shared/reading/reading';
+import { asComplex, asList, asMatrix, KeyProblem, type ComputedKey } from './key-value';
+import { matched, type Match } from './match';
+import { within } from './tolerance';
+
+type PartOf<Form extends AnswerSpecification['form']> = Extract<AnswerSpecification, { form: Form }>;
+
+const unitReason = (unit: { readonly text: string }): string =>
+  `Pure numbers are asked for, and the answer has the unit ${unit.text}.`;
+
+function withoutUnit(key: ComputedKey): void {
+  if (key.unit) throw new KeyProblem(`The key has the unit ${key.unit}, and the part asks for pure numbers.`);
+}
+
+/** Compares a complex number; up to a phase only the moduli count. */
+export function compareComplex(reading: ReadingOf<'complex'>, key: ComputedKey, part: PartOf<'complex'>): Match {
+  withoutUnit(key);
+  const value = asComplex(key.value);
+  if (reading.unit) return matched(false, { reason: unitReason(reading.unit), key: value });
+  const same = part.upToPhase
+    ? within(real(modulus(reading.value)), real(modulus(value)), part.tolerance)
+    : within(reading.value, value, part.tolerance);
+  return matched(same, { answer: reading.value, key: value });
+}
+
+/** Compares a list entry by entry; lists of another length are wrong. */
+export function compareList(reading: ReadingOf<'list'>, key: ComputedKey, part: PartOf<'list'>): Match {
+  withoutUnit(key);
+  const entries = asList(key.value);
+  const compared = { answer: reading.entries, key: entries };
+  if (reading.unit) return matched(false, { ...compared, reason: unitReason(reading.unit) });
+  if (reading.entries.length !== entries.length) {
+    return matched(false, {
+      ...compared,
+      reason: `The list has ${reading.entries.length} entries where the key has ${entries.length}.`,
+    });
+  }
+  return matched(
+    reading.entries.every((entry, index) => within(entry, entries[index] ?? real(NaN), part.tolerance)),
+    compared,
+  );
+}
+
+/** How far the sum of a distribution may lie above one. */
+const excess = 1e-6;
+
+/** Compares a distribution by its total variation distance ½Σ|p − q|; it must be one as far as it goes. */
+export function compareDistribution(reading: ReadingOf<'list'>, key: ComputedKey, part: PartOf<'distribution'>): Match {
+  withoutUnit(key);
+  const entries = asList(key.value);
+  const compared = { answer: reading.entries, key: entries };
+  if (reading.unit) return matched(false, { ...compared, reason: unitReason(reading.unit) });
+  const negative = reading.entries.findIndex(({ re }) => re < 0);
+  if (negative >= 0) return matched(false, { ...compared, reason: `Entry ${negative + 1} is a negative probability.` });
+  const sum = reading.entries.reduce((total, { re }) => total + re, 0);
+  if (sum > 1 + excess) return matched(false, { ...compared, reason: 'The probabilities add to more than 1.' });
+  if (reading.entries.length !== entries.length) {
+    return matched(false, {
+      ...compared,
+      reason: `The distribution has ${reading.entries.length} entries where the key has ${entries.length}.`,
+    });
+  }
+  const distance =
+    entries.reduce((total, { re }, index) => total + Math.abs((reading.entries[index]?.re ?? NaN) - re), 0) / 2;
+  return matched(distance <= part.tolerance.totalVariation + 1e-14, compared);
+}
+
+/** Compares a matrix entry by entry; one of another shape is wrong. */
+export function compareMatrix(reading: ReadingOf<'matrix'>, key: ComputedKey, part: PartOf<'matrix'>): Match {
+  withoutUnit(key);
+  const rows = asMatrix(key.value);
+  const compared: { answer: readonly Complex[]; key: readonly Complex[] } = {
+    answer: reading.rows.flat(),
+    key: rows.flat(),
+  };
+  if (reading.unit) return matched(false, { ...compared, reason: unitReason(reading.unit) });
+  const [height, width] = [rows.length, rows[0]?.length ?? 0];
+  if (reading.rows.length !== height || (reading.rows[0]?.length ?? 0) !== width) {
+    return matched(false, {
+      ...compared,
+      reason: `The matrix is ${reading.rows.length} × ${reading.rows[0]?.length ?? 0} where the key is ${height} × ${width}.`,
+    });
+  }
+  const same = compared.answer.every((entry, index) => within(entry, compared.key[index] ?? real(NaN), part.tolerance));
+  return matched(same, compared);
+}
