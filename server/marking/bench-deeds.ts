@@ -1,6 +1,6 @@
 import { and, desc, eq, notInArray } from 'drizzle-orm';
 import type { Queryable } from '@drizzle/client';
-import { answers, holds, marks } from '@drizzle/schema';
+import { answers, holds, marks, record } from '@drizzle/schema';
 import type { z } from 'zod';
 import type { BenchOutcome, CurrentAnswer, MarkedCriterion, newMark } from '@shared/marking';
 import type { Criterion } from '@shared/problems';
@@ -100,7 +100,11 @@ export function undoMark(tx: Queryable, doer: Doer, write: Write, markId: string
   if (!doer.seesAllMarks && undone.markerId !== doer.membershipId)
     throw notAllowed('This mark is not yours; only a lead can take it back.');
 
-  const earlier = undone.replacesId === null ? null : markOf(tx, undone.replacesId);
+  const back = takenBack(tx, write.answerId);
+  if (back.some((each) => each.restored === markId))
+    throw conflict('This mark stands again because another was taken back; change it instead.');
+  const replaced = undone.replacesId === null ? null : markOf(tx, undone.replacesId);
+  const earlier = replaced && back.some((each) => each.taken === replaced.id) ? null : replaced;
   const { markerId, criteria, total, remark } = earlier ?? undone;
   const again =
     earlier &&
@@ -229,6 +233,20 @@ function markOf(tx: Queryable, markId: string): MarkRow {
   const row = tx.select().from(marks).where(eq(marks.id, markId)).get();
   if (!row) throw new Error('A mark that is named does not exist.');
   return row;
+}
+
+/** The marks of an answer that were taken back, each with the one that stood again for it, from the record. */
+function takenBack(tx: Queryable, answerId: string) {
+  return tx
+    .select({ before: record.before, after: record.after })
+    .from(record)
+    .where(and(eq(record.thing, 'answer'), eq(record.thingId, answerId), eq(record.action, 'mark taken back')))
+    .all()
+    .map(({ before, after }) => ({ taken: idIn(before), restored: idIn(after) }));
+}
+
+function idIn(value: unknown): string | null {
+  return (value as { markId?: string } | null)?.markId ?? null;
 }
 
 function markOfKey(tx: Queryable, write: KeyedWrite): MarkRow | undefined {
