@@ -4,18 +4,15 @@ import {
   type AnswerSpecification,
   type ComputedSpecification,
 } from '@shared/answer-forms';
-import type { Complex } from '@shared/reading/complex';
 import { readAnswer } from '@shared/reading/read-answer';
 import type { AnswerField, Reading } from '@shared/reading/reading';
+import type { Check } from './check';
 import { checkChoice } from './check-choice';
 import { compareWithKey, compareWithSlip } from './compare';
 import { KeyProblem, type ComputedKey } from './key-value';
-import { matched, type DifferingPoint, type Match } from './match';
+import { matched, type Match } from './match';
 import { relationOf, type OtherKey } from './relation-of';
-import { equalRelation, noRelation, type Relation } from './relation';
-
-/** How an answer stands to its key. */
-export type Verdict = 'right' | 'unit' | 'follow-through' | 'slip' | 'wrong' | 'unreadable' | 'unanswered';
+import { equalRelation, noRelation, throughRelation, type Relation } from './relation';
 
 /** The key of a part and what belongs to it, computed for one variant. */
 export interface PartKeys {
@@ -40,26 +37,6 @@ export interface CheckInput<Part extends AnswerSpecification = Exclude<AnswerSpe
   readonly text: string;
   /** The printed hint, where it is more than the specification says (symbols of a formula's variables). */
   readonly field?: AnswerField;
-}
-
-/** How the server judged an answer: a proposal, with what a marker needs to see why. */
-export interface Check {
-  readonly verdict: Verdict;
-  /** Fraction of the part's marks. */
-  readonly fraction: number;
-  readonly readAs: string;
-  /** Why it could not be read, or why it is wrong where that is more than a value. */
-  readonly problem?: string;
-  /** Index of the slip that it equals. */
-  readonly slip?: number;
-  readonly relation: Relation;
-  /** The answer's value as compared, in the part's unit; null where there is none. */
-  readonly value: Complex | readonly Complex[] | null;
-  /** The key's value as compared. */
-  readonly keyValue: Complex | readonly Complex[] | null;
-  /** Where a formula differs from its key. */
-  readonly point?: DifferingPoint;
-  readonly reading: Reading;
 }
 
 type Ruling = Pick<Check, 'verdict' | 'fraction'> & { readonly slip?: number; readonly relation?: Relation };
@@ -100,7 +77,7 @@ function rule(reading: Reading, part: ComputedSpecification, keys: PartKeys, mat
   const own = keys.own;
   const ownKey = own?.key;
   const through = ownKey === undefined ? matched(false) : quietly(() => compareWithKey(reading, ownKey, part));
-  const relation: Relation = { name: 'right from the own earlier answer' };
+  const relation = throughRelation;
   if (through.same && own?.earlierRight) return { ...full(through.missingUnit), relation };
   if (through.same && part.followThrough !== undefined) {
     return { verdict: 'follow-through', fraction: capped(part.followThrough, through.missingUnit), relation };
@@ -141,7 +118,7 @@ export function checkAnswer({ part, keys, text, field = answerField(part) }: Che
     reading,
     value: match.answer ?? null,
     keyValue: match.key ?? null,
-    relation: relation ?? relationOf(reading, part, keys.key, keys.others ?? [], match),
+    relation: relation ?? relationOf(reading, part, keys, match),
     ...(ruling.verdict === 'wrong' && match.reason !== undefined ? { problem: match.reason } : {}),
     ...(ruling.verdict !== 'right' && match.point ? { point: match.point } : {}),
   };

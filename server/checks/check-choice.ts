@@ -1,6 +1,6 @@
 import type { AnswerSpecification } from '@shared/answer-forms';
 import type { Reading } from '@shared/reading/reading';
-import type { Check } from './check-answer';
+import type { Check } from './check';
 import { equalRelation, noRelation } from './relation';
 
 /** Judges a choice: right where exactly the correct options are named. Several on a single choice are wrong. */

@@ -20,6 +20,7 @@ export interface Relation {
 }
 
 export const equalRelation: Relation = { name: 'equal to the key' };
+export const throughRelation: Relation = { name: 'right from the own earlier answer' };
 export const noRelation: Relation = { name: 'no known relation' };
 
 /** A way in which answers go wrong: what the answer would be if it had gone wrong so. */

@@ -455,10 +455,8 @@ export class Parser {
         throw new ReadingProblem('A photon number is a whole number, such as 0, 1 or 2.', token.start);
       }
       if (/^0\d/.test(token.digits ?? '')) {
-        throw new ReadingProblem(
-          `Separate the modes by commas: |${[...(token.digits ?? '')].join(',')}⟩.`,
-          token.start,
-        );
+        const apart = numbers.length === 0 ? `: |${[...(token.digits ?? '')].join(',')}⟩` : ', as in |1,0⟩';
+        throw new ReadingProblem(`Separate the modes by commas${apart}.`, token.start);
       }
       numbers.push(token.value ?? 0);
       this.take();
