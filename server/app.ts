@@ -13,6 +13,8 @@ import { demandSameOrigin } from './http/same-origin';
 import { createServe, type Serve } from './http/serve';
 import { serveClient } from './http/static-client';
 import { translateErrors } from './http/translate-errors';
+import { addMarkingRoutes } from './marking/marking-routes';
+import { addResultsRoutes } from './results/results-routes';
 
 /** The application and what tests and the live connection need of it. */
 export interface Application {
@@ -82,6 +84,8 @@ export function createApp(context: Context, clientFolder?: string): Application 
   addAccountRoutes(serve, context, sessions);
   addCourseRoutes(serve, context);
   addRecordRoutes(serve, context);
+  addMarkingRoutes(serve, context);
+  addResultsRoutes(serve, context);
   app.use('/api', router);
   app.use('/api', () => {
     throw notFound('address');

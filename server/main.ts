@@ -13,6 +13,7 @@ import { systemClock, type Context } from './context';
 import { createFileStore } from './files/file-store';
 import { createKeyPool } from './keys';
 import { createLive } from './live/live';
+import { sweepHolds } from './marking/marking-routes';
 import { sendDueLetters, smtpTransport } from './mail/post-office';
 
 /** How often the clock's own work is looked at, in milliseconds. */
@@ -79,6 +80,7 @@ async function main(): Promise<void> {
 
 async function onBeat(context: Context, transport: ReturnType<typeof smtpTransport> | null): Promise<void> {
   dropOldGuesses(context.db, context.clock.now());
+  sweepHolds(context);
   await sendDueLetters(context, transport, (kind, userId) =>
     linkWith(context.config.origin, makeToken(context.db, kind as TokenKind, userId, context.clock.now()).secret),
   );
