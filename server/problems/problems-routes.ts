@@ -1,0 +1,131 @@
+import { eq } from 'drizzle-orm';
+import type { Queryable } from '@drizzle/client';
+import { courses } from '@drizzle/schema';
+import type { Convention } from '@shared/primitives';
+import { problemRoutes as routes } from '@shared/problem-routes';
+import { readDraft } from '@shared/read-draft';
+import { demand, membershipFor, type SignedIn } from '../access/policy';
+import type { Context } from '../context';
+import { conventionOf } from '../courses/convention';
+import { conflict, invalidField, notFound } from '../http/errors';
+import type { Serve } from '../http/serve';
+import { keySignatures } from '../keys';
+import { ProblemFileError, readProblemFile } from './problem-file';
+import { writeProblemFile } from './write-problem-file';
+import { latestRevision, listProblems, listRevisions, presentRevision } from './problem-queries';
+import {
+  beginProblem,
+  copyProblem,
+  createFromContent,
+  demandProblem,
+  makeRevision,
+  readProblem,
+  saveDraft,
+  setProblemStatus,
+} from './problem-rules';
+import { sampleDraft } from './sample-draft';
+
+/** The bank: problems, their drafts and revisions. */
+export function addProblemRoutes(serve: Serve, context: Context): void {
+  const { db, keys, clock } = context;
+  const deed = (user: { readonly id: string }) => ({ personId: user.id, now: clock.now() });
+
+  serve(routes.problems, ({ user, query }) => {
+    demand(user, 'read problems');
+    const { items, total } = listProblems(db, user.id, query);
+    return { items: [...items], total };
+  });
+
+  serve(routes.beginProblem, ({ user, body }) => {
+    demand(user, 'write problems');
+    const convention = conventionFor(db, user, body.courseId);
+    return beginProblem(db, { title: body.title, convention }, deed(user));
+  });
+
+  serve(routes.importProblem, ({ user, body }) => {
+    demand(user, 'write problems');
+    const convention = conventionFor(db, user, body.courseId);
+    try {
+      return createFromContent(db, readProblemFile(body.text, { convention }), deed(user));
+    } catch (error) {
+      if (error instanceof ProblemFileError) throw invalidField(['text'], error.message);
+      throw error;
+    }
+  });
+
+  serve(routes.sampleProblem, async ({ user, body }) => {
+    demand(user, 'write problems');
+    return sampleDraft(keys, body.draft, body);
+  });
+
+  serve(routes.problem, ({ user, params }) => {
+    demand(user, 'read problems');
+    return readProblem(db, params.problemId, user.id);
+  });
+
+  serve(routes.saveDraft, ({ user, params, body, version }) => {
+    demand(user, 'write problems');
+    return saveDraft(db, params.problemId, body, version, deed(user));
+  });
+
+  serve(routes.makeRevision, ({ user, params, body, version }) => {
+    demand(user, 'write problems');
+    return makeRevision(db, keys, params.problemId, { reason: body.reason, version }, deed(user));
+  });
+
+  serve(routes.revisions, ({ user, params }) => {
+    demand(user, 'read problems');
+    demandProblem(db, params.problemId, user.id);
+    const items = listRevisions(db, params.problemId).map(presentRevision);
+    return { items, total: items.length };
+  });
+
+  serve(routes.revision, ({ user, params }) => {
+    demand(user, 'read problems');
+    demandProblem(db, params.problemId, user.id);
+    const found = listRevisions(db, params.problemId).find((revision) => revision.number === params.number);
+    if (!found) throw notFound('revision');
+    return presentRevision(found);
+  });
+
+  serve(routes.setProblemStatus, ({ user, params, body, version }) => {
+    demand(user, 'write problems');
+    return setProblemStatus(db, keys, params.problemId, { status: body.status, version }, deed(user));
+  });
+
+  serve(routes.copyProblem, ({ user, params }) => {
+    demand(user, 'write problems');
+    return copyProblem(db, params.problemId, deed(user));
+  });
+
+  serve(routes.problemFile, ({ user, params }) => {
+    demand(user, 'read problems');
+    const { draft } = demandProblem(db, params.problemId, user.id);
+    const content = readDraft(draft).content ?? latestRevision(db, params.problemId)?.content;
+    if (!content)
+      throw conflict('Something in the draft is wrong and there is no revision yet, so there is no file to write.');
+    return { name: fileName(content.title), text: writeProblemFile(content) };
+  });
+
+  serve(routes.keyLanguage, ({ user }) => {
+    demand(user, 'write problems');
+    return { signatures: keySignatures.map(({ name, signature, summary }) => ({ name, signature, summary })) };
+  });
+}
+
+/** The convention of a course that the person leads. @throws RequestError 403 where they do not, 404 where it is gone */
+function conventionFor(tx: Queryable, user: SignedIn, courseId: string): Convention {
+  membershipFor(user, 'change sets', courseId);
+  const row = tx.select().from(courses).where(eq(courses.id, courseId)).get();
+  if (!row) throw notFound('course');
+  return conventionOf(row);
+}
+
+function fileName(title: string): string {
+  const plain = title
+    .normalize('NFKD')
+    .toLowerCase()
+    .replace(/[^a-z0-9]+/g, '-')
+    .replace(/^-|-$/g, '');
+  return `${plain || 'problem'}.md`;
+}
