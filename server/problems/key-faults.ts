@@ -1,6 +1,6 @@
 import { partLabel, type ProblemContent } from '@shared/problems';
 import type { FieldProblem } from '@shared/problem-details';
-import { drawNumbers, plainGivensOf } from '../variants/draw-variant';
+import { drawNumbers, plainGivensOf } from '../variants/draw-givens';
 import { deriveGivens } from '../variants/derive-givens';
 import type { Keys } from '../variants/evaluate-outcomes';
 import { evaluateKeys, expressionsOf } from '../variants/evaluate-variant-keys';

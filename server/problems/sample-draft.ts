@@ -2,7 +2,7 @@ import type { FieldProblem } from '@shared/problem-details';
 import type { ProblemDraft } from '@shared/problem-draft';
 import type { ProblemSample, SampledKey } from '@shared/problem-routes';
 import { readDraft } from '@shared/read-draft';
-import { areNumbered, countVariants, drawNumbers, plainGivensOf } from '../variants/draw-variant';
+import { areNumbered, countVariants, drawNumbers, plainGivensOf } from '../variants/draw-givens';
 import { deriveGivens } from '../variants/derive-givens';
 import type { Keys } from '../variants/evaluate-outcomes';
 import { evaluateKeys, type PartExpressions } from '../variants/evaluate-variant-keys';

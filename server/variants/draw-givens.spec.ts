@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { given, type Given } from '@shared/problems';
-import { countVariants, drawNumbers, drawPlainGivens, plainGivensOf } from './draw-variant';
+import { countVariants, drawNumbers, drawPlainGivens, plainGivensOf } from './draw-givens';
 import { printFigures, printGiven } from './print-given';
 
 const build = (overrides: object): Given => given.parse({ name: 'x', symbol: 'x', ...overrides });
