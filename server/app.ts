@@ -5,6 +5,7 @@ import { addAccountRoutes } from './accounts/accounts-routes';
 import { createSessions, type Sessions } from './accounts/sessions';
 import type { Context } from './context';
 import { addCourseRoutes } from './courses/courses-routes';
+import { addDeskRoutes } from './desk/desk-routes';
 import { addRecordRoutes } from './record/record-routes';
 import { contentPolicy } from './http/content-policy';
 import { notFound } from './http/errors';
@@ -83,6 +84,7 @@ export function createApp(context: Context, clientFolder?: string): Application 
   app.use('/api', (request, response, next) => sessions.middleware(request, response, next));
   addAccountRoutes(serve, context, sessions);
   addCourseRoutes(serve, context);
+  addDeskRoutes(serve, context);
   addRecordRoutes(serve, context);
   addMarkingRoutes(serve, context);
   addResultsRoutes(serve, context);

@@ -31,6 +31,7 @@ export const policy = {
   'change accounts': ['administrator'],
   'read the outbox': ['administrator'],
   'create a course': ['administrator', 'lead of any course'],
+  'read a desk': ['lead', 'marker', 'student'],
   'read a course': ['lead', 'marker', 'student', 'administrator'],
   'change a course': ['lead', 'administrator'],
   'read people': ['lead', 'administrator'],
