@@ -16,6 +16,7 @@ import {
 import type { CheckResult } from '@shared/checks';
 import { defaultConvention, type SetStage } from '@shared/primitives';
 import type { ProblemContent } from '@shared/problems';
+import { draftOf } from '@shared/read-draft';
 import { newId } from '../../http/new-id';
 import type { Harness } from '../../testing/harness';
 
@@ -101,7 +102,7 @@ export function buildPile(harness: Harness, wishes: Wishes) {
     .run();
   db.insert(setStages).values({ id: newId(), setId, stage, at: now }).run();
   db.insert(problems)
-    .values({ id: problemId, authorId: author.id, draft: content, draftSavedAt: now, createdAt: now })
+    .values({ id: problemId, authorId: author.id, draft: draftOf(content), draftSavedAt: now, createdAt: now })
     .run();
   db.insert(revisions)
     .values({ id: revisionId, problemId, number: 1, content, authorId: author.id, reason: 'first', createdAt: now })
