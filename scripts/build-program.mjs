@@ -83,5 +83,7 @@ async function makeClient() {
  */
 function firstLines(text, most) {
   const lines = text.split('\n');
-  return lines.length <= most ? text : [...lines.slice(0, most), `… ${String(lines.length - most)} lines more`].join('\n');
+  return lines.length <= most
+    ? text
+    : [...lines.slice(0, most), `… ${String(lines.length - most)} lines more`].join('\n');
 }
