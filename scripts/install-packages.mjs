@@ -49,7 +49,8 @@ export async function installPackages() {
   if (code !== 0) {
     console.error(output.trim().split('\n').slice(-40).join('\n'));
     console.error('\nThe packages could not be installed.');
-    if (missing.length > 0) console.error(`${missing.join(' and ')}: missing. ${howToInstallCompiler(process.platform)}`);
+    if (missing.length > 0)
+      console.error(`${missing.join(' and ')}: missing. ${howToInstallCompiler(process.platform)}`);
     else console.error('Look at the lines above; where the network was at fault, start again.');
     process.exit(1);
   }
