@@ -40,25 +40,27 @@ function typeset(source: string, display: boolean): SetFormula {
   const node = document.createElement('span');
   node.className = display ? 'formula display' : 'formula';
   if (source.length > longestFormula) {
-    node.textContent = source.slice(0, 80) + '…';
-    node.classList.add('formula-wrong');
-    return { node, problem: `The formula is longer than ${longestFormula} characters.` };
+    return { node: asWritten(node, source), problem: `The formula is longer than ${longestFormula} characters.` };
   }
-  const options = {
-    displayMode: display,
-    trust: false,
-    strict: 'ignore',
-    maxExpand: 300,
-    maxSize: 12,
-    errorColor: 'var(--wrong)',
-  } as const;
   try {
-    katex.render(source, node, { ...options, throwOnError: true });
+    katex.render(source, node, {
+      displayMode: display,
+      throwOnError: true,
+      trust: false,
+      strict: 'ignore',
+      maxExpand: 300,
+      maxSize: 12,
+    });
     return { node };
   } catch (error) {
     if (!(error instanceof ParseError)) throw error;
-    katex.render(source, node, { ...options, throwOnError: false });
-    node.classList.add('formula-wrong');
-    return { node, problem: error.rawMessage };
+    return { node: asWritten(node, source), problem: error.rawMessage };
   }
+}
+
+/** A formula that cannot be read stands as it was written. KaTeX's own way to show it sets a style that the page refuses. */
+function asWritten(node: HTMLElement, source: string): HTMLElement {
+  node.className = 'formula-wrong';
+  node.textContent = source.length > 80 ? `${source.slice(0, 80)}…` : source;
+  return node;
 }

@@ -76,7 +76,9 @@ export class FringeStrip {
   });
 
   private readonly sorted = computed(() => sortIntoGroups(this.bars() ?? [], this.groups()));
-  private readonly layout = computed(() => layOutStrip(this.sorted(), this.width(), this.tallyFirst()));
+  private readonly layout = computed(() =>
+    layOutStrip(this.sorted(), this.width(), this.tallyFirst(), this.chosenGroup()),
+  );
   private readonly order = computed<readonly PlacedBar[]>(() => this.layout().groups.flatMap((group) => group.bars));
   protected readonly drawingWidth = this.width;
   protected readonly isEmpty = computed(() => this.bars()?.length === 0);
@@ -122,21 +124,21 @@ export class FringeStrip {
 
   protected readonly brackets = computed(() => {
     const groups = this.layout().groups;
+    const last = groups.at(-1);
+    // The last name may lean to the left, where the strip ends before it does.
+    const lastName = last ? Math.min(textWidth(last.name, 14) + 6, 120) : 0;
+    const lean = last !== undefined && this.width() - last.from < lastName;
+    const lastLeft = lean ? this.width() - lastName : (last?.from ?? 0);
     return groups.map((group, index) => {
-      const next = groups[index + 1];
-      const last = next === undefined;
-      const name = textWidth(group.name, 14) + 4;
-      const room = (next ? next.from - 8 : this.width()) - group.from;
-      // The last pattern may lean to the left, where the strip ends before its name does.
-      const lean = last && room < name;
+      const next = index + 2 === groups.length ? lastLeft : (groups[index + 1]?.from ?? this.width() + 8);
+      const left = group === last ? lastLeft : group.from;
       return {
-        ...this.drawn()[index],
         key: group.key,
         name: group.name,
         tally: `${group.marked} of ${group.bars.length}`,
-        left: lean ? Math.max(0, this.width() - Math.max(name, 56)) : group.from,
-        room: lean ? Math.max(name, 56) : Math.max(24, room),
-        lean,
+        left,
+        room: Math.max(20, next - 8 - left),
+        lean: group === last && lean,
         line: `M${group.from} 2v6H${Math.max(group.to, group.from + 6)}v-6`,
         chosen: group.key === this.chosenGroup(),
       };

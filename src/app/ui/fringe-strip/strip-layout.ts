@@ -1,3 +1,4 @@
+import { textWidth } from '../text-width';
 import type { FringeBar, FringeGroup } from './fringe-bar';
 
 /** Heights of the strip, in pixels. */
@@ -10,6 +11,8 @@ const narrowestPitch = 2;
 const gap = 16;
 const margin = 4;
 const widestBlock = 120;
+/** How much room a pattern's name may claim, in the order of preference. */
+const nameRooms = [132, 92, 0] as const;
 
 /** A bar with its place. */
 export interface PlacedBar {
@@ -57,47 +60,79 @@ export function sortIntoGroups(bars: readonly FringeBar[], groups: readonly Frin
 }
 
 /**
- * Gives every bar its place within a width. Bars stand 12 px apart where there is room and closer where there is not; below
- * 7 px the pattern `tallyFirst`, then the largest others, are drawn as one block each, so that what needs work stays legible.
+ * Gives every bar its place within a width. Bars stand 12 px apart where there is room and closer where there is not, and
+ * patterns leave room for their names. Below 7 px the pattern `tallyFirst`, then the largest others, are drawn as one block
+ * each, so that what needs work stays legible; `keepOpen` is the last to become a block.
  */
-export function layOutStrip(sorted: readonly Sorted[], width: number, tallyFirst: string): StripLayout {
-  const room = width - 2 * margin - gap * Math.max(0, sorted.length - 1);
-  const blockWidth = Math.min(widestBlock, room / Math.max(1, sorted.length));
-  const largestFirst = [...sorted].sort((a, b) => b.bars.length - a.bars.length);
-  const candidates = [
-    ...sorted.filter((group) => group.key === tallyFirst),
-    ...largestFirst.filter((group) => group.key !== tallyFirst),
-  ];
+export function layOutStrip(
+  sorted: readonly Sorted[],
+  width: number,
+  tallyFirst: string,
+  keepOpen: string | null = null,
+): StripLayout {
+  const room = width - 2 * margin;
+  const blockWidth = Math.min(widestBlock, room / Math.max(1, sorted.length) - gap);
   const tallied = new Set<string>();
-  const pitchNow = () => {
-    const free = room - blockWidth * tallied.size;
-    const bars = sorted.filter((group) => !tallied.has(group.key)).reduce((sum, group) => sum + group.bars.length, 0);
-    return bars === 0 ? widestPitch : Math.min(widestPitch, free / bars);
-  };
-  for (const group of candidates) {
-    if (pitchNow() >= legiblePitch) break;
+  const slots = (widest: number) => sorted.map((group) => Math.min(widest, textWidth(group.name, 14) + 12));
+  const pitchWith = (widest: number) => widestFittingPitch(sorted, tallied, slots(widest), blockWidth, room);
+
+  let nameRoom = nameRooms.find((widest) => pitchWith(widest) >= legiblePitch) ?? nameRooms.at(-1) ?? 0;
+  for (const group of tallyOrder(sorted, tallyFirst, keepOpen)) {
+    const pitch = pitchWith(nameRoom);
+    if (pitch >= legiblePitch) break;
     // A block must save room, or it would only hide bars.
-    const pitch = pitchNow();
     if (pitch < narrowestPitch || group.bars.length * pitch > blockWidth || group.key === tallyFirst) {
       tallied.add(group.key);
     }
   }
-  const pitch = Math.max(narrowestPitch, pitchNow());
+  if (pitchWith(nameRoom) < narrowestPitch) nameRoom = 0;
+  const pitch = pitchWith(nameRoom);
+  const reserved = slots(nameRoom);
 
-  let x = margin;
-  const groups = sorted.map((group) => {
+  let x: number = margin;
+  const groups = sorted.map((group, place) => {
     const block = tallied.has(group.key);
     const step = block ? blockWidth / group.bars.length : pitch;
     const barWidth = block ? step : pitch >= 6 ? Math.round((step * 2) / 3) : Math.max(1, step - 1);
-    const from = x;
+    const from = Math.round(x);
     const bars = group.bars.map((bar, index) => ({ bar, x: snap(from + index * step, block), width: barWidth }));
     const last = bars.at(-1);
     const to = block ? from + blockWidth : last ? last.x + last.width : from;
-    x = from + group.bars.length * step + gap;
+    x += Math.max(group.bars.length * step + gap, place < sorted.length - 1 ? (reserved[place] ?? 0) : 0);
     const marked = group.bars.filter((bar) => bar.state === 'marked').length;
     return { key: group.key, name: group.name, from, to, bars, marked, tallied: block };
   });
   return { groups, pitch };
+}
+
+/** Which groups become blocks first. */
+function tallyOrder(sorted: readonly Sorted[], tallyFirst: string, keepOpen: string | null): readonly Sorted[] {
+  const rank = (group: Sorted) => (group.key === keepOpen ? 2 : group.key === tallyFirst ? 0 : 1);
+  return [...sorted].sort((a, b) => rank(a) - rank(b) || b.bars.length - a.bars.length);
+}
+
+/** The widest pitch at which all groups, with the room that each reserves, fit side by side. */
+function widestFittingPitch(
+  sorted: readonly Sorted[],
+  tallied: ReadonlySet<string>,
+  slots: readonly number[],
+  blockWidth: number,
+  room: number,
+): number {
+  const needed = (pitch: number) =>
+    sorted.reduce((sum, group, place) => {
+      const bars = tallied.has(group.key) ? blockWidth : group.bars.length * pitch;
+      const last = place === sorted.length - 1;
+      return sum + (last ? bars : Math.max(bars + gap, slots[place] ?? 0));
+    }, 0);
+  if (needed(widestPitch) <= room) return widestPitch;
+  let [low, high] = [0, widestPitch];
+  for (let round = 0; round < 24; round++) {
+    const middle = (low + high) / 2;
+    if (needed(middle) <= room) low = middle;
+    else high = middle;
+  }
+  return low;
 }
 
 function snap(x: number, free: boolean): number {
