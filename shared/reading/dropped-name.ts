@@ -1,4 +1,5 @@
-import { parseExpression, type Grammar } from './parser';
+import type { Grammar } from './grammar';
+import { parseExpression } from './parser';
 import { AmbiguousComma, ReadingProblem } from './problem';
 
 const nameLike = /^[\p{L}\\⟨<〈|∣(][\p{L}\p{M}\p{Nd}ℏ∆_{}()[\]\\^,|∣⟩>⟨<〉〈'′*²³⁽⁾⁰¹⁻⁺ \u00a0&₀-₉ₐ-ₜ]{0,59}$/u;

@@ -267,16 +267,19 @@ class Lexer {
     return from + (index?.[0].length ?? 0);
   }
 
-  /** A run of letters: one name where it is known, else split where a Greek letter begins or ends. */
+  /** A run of letters, at most 61 at a time: one name where it is known, else split where a Greek letter begins or ends. */
   private names(start: number): void {
-    const run = /^(?:[\p{L}\p{M}ℏ∆℃][\p{L}\p{M}\p{Nd}ℏ∆]*)/u.exec(this.text.slice(start))?.[0] ?? '';
+    const run = /^(?:[\p{L}\p{M}ℏ∆℃][\p{L}\p{M}\p{Nd}ℏ∆]{0,60})/u.exec(this.text.slice(start, start + 130))?.[0] ?? '';
     const clean = [...run].filter((character) => !(character in superscriptLetters));
     const length = clean.length === [...run].length ? run.length : [...run].findIndex((c) => c in superscriptLetters);
     const end = this.subscriptEnd(start + Math.max(length, 1));
     const whole = this.text.slice(start, end);
     if (this.options.known(whole) || ![...whole].some(isGreek)) return this.name(start, end);
-    const piece = this.firstPiece(start, end);
-    this.name(start, piece);
+    for (let from = start; from < end; ) {
+      const to = this.firstPiece(from, end);
+      this.name(from, to);
+      from = to;
+    }
   }
 
   private name(start: number, end: number): void {

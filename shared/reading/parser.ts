@@ -1,41 +1,14 @@
 import { answerFunctions } from './complex-functions';
 import { binary, contains, type ConstantName, type Expression } from './expression';
+import { constants, isKnown, namedStates, type Grammar } from './grammar';
 import { lex, type Token, type TokenKind } from './lexer';
-import type { CommaRole } from './lex-number';
 import { canonicalName } from './names';
 import { quote, ReadingProblem } from './problem';
-import { nearestUnit, unitByName } from './units';
-
-/** What an expression may be made of. */
-export interface Grammar {
-  readonly comma: CommaRole;
-  readonly units: boolean;
-  readonly kets: boolean;
-  /** Variables by canonical spelling, with the name that each stands for. */
-  readonly variables: ReadonlyMap<string, string>;
-}
-
-/** The states that may be written by name in place of a ket, with how many arguments they take. */
-export const namedStates: Readonly<Record<string, readonly [number, number]>> = {
-  vacuum: [0, 0],
-  fock: [1, 1],
-  ket: [1, 2],
-  coherent: [1, 1],
-  cat: [1, 2],
-};
+import { unitByName } from './units';
+import { unknownName } from './unknown-name';
 
 const deepest = 60;
 const mostNodes = 600;
-const constants: ReadonlySet<string> = new Set(['pi', 'e', 'i']);
-
-/** Whether a name, as typed, has a meaning under the grammar. */
-export function isKnown(grammar: Grammar, name: string): boolean {
-  const canonical = canonicalName(name);
-  if (grammar.variables.has(canonical) || constants.has(canonical) || answerFunctions.has(canonical)) return true;
-  if (grammar.kets && Object.hasOwn(namedStates, canonical)) return true;
-  return grammar.units && unitByName(name) !== undefined;
-}
-
 /** A recursive-descent parser with the precedences of `mathjs`: an implicit product binds tighter than a quotient. */
 export class Parser {
   private at = 0;
@@ -289,18 +262,18 @@ export class Parser {
 
   private close(open: Token): void {
     const wanted = open.text === '(' ? ')' : open.text === '[' ? ']' : '}';
-    const rest = this.tokens.slice(this.at);
-    if (!rest.some(({ kind }) => kind === 'close')) {
+    if (this.is('close', wanted)) {
+      this.take();
+      return;
+    }
+    if (!this.tokens.slice(this.at).some(({ kind }) => kind === 'close')) {
       throw new ReadingProblem(`The bracket ${quote(open.text)} is never closed.`, open.start);
     }
     if (!this.is('close')) throw this.unexpected();
-    if (this.token.text !== wanted) {
-      throw new ReadingProblem(
-        `The bracket ${quote(open.text)} is closed by ${quote(this.token.text)}.`,
-        this.token.start,
-      );
-    }
-    this.take();
+    throw new ReadingProblem(
+      `The bracket ${quote(open.text)} is closed by ${quote(this.token.text)}.`,
+      this.token.start,
+    );
   }
 
   private absolute(): Expression {
@@ -316,7 +289,10 @@ export class Parser {
 
   private command(): Expression {
     const { text, start } = this.take();
-    if (text === 'ket') return this.ketInBraces(start);
+    if (text === 'ket') {
+      if (!this.grammar.kets) throw new ReadingProblem('A ket has no place in this field.', start);
+      return this.ketInBraces(start);
+    }
     if (text === 'frac') {
       const [above, below] = [this.braced('\\frac{…}{…}'), this.braced('\\frac{…}{…}')];
       const node = this.made(binary('/', above, below));
@@ -349,7 +325,7 @@ export class Parser {
     const unit = this.grammar.units ? unitByName(token.text) : undefined;
     if (answerFunctions.has(name) && (unit === undefined || this.is('open'))) return this.call(name, token);
     if (unit) return this.made({ type: 'unit', unit, at });
-    throw this.unknown(token);
+    throw unknownName(token, this.grammar);
   }
 
   private call(name: string, token: Token): Expression {
@@ -368,45 +344,6 @@ export class Parser {
     const argument = this.bracket();
     const node = this.made({ type: 'call', name, argument, at: token.start } as const);
     return exponent ? this.made(binary('^', node, exponent)) : node;
-  }
-
-  private unknown(token: Token): ReadingProblem {
-    const typed = quote(token.text);
-    if (token.text === '∞' || canonicalName(token.text).toLowerCase() === 'infinity') {
-      return new ReadingProblem('The answer is not finite.', token.start);
-    }
-    if (token.text === 'j')
-      return new ReadingProblem('“j” is not known here; write i for the imaginary unit.', token.start);
-    const near = this.grammar.units ? nearestUnit(token.text) : undefined;
-    if (near !== undefined)
-      return new ReadingProblem(`The unit ${typed} is not known; did you mean ${quote(near)}?`, token.start);
-    const apart = this.splitIntoNames(token.text);
-    if (apart) {
-      return new ReadingProblem(
-        `The name ${typed} is not known here; for a product write ${quote(apart.join(' '))}.`,
-        token.start,
-      );
-    }
-    const what = this.grammar.units
-      ? 'is neither a unit nor a name that is known here'
-      : 'is not a name that is known here';
-    return new ReadingProblem(`${typed} ${what}.`, token.start);
-  }
-
-  /** Known variables that the letters of a name are made of, for the hint. */
-  private splitIntoNames(text: string): readonly string[] | undefined {
-    const names = [...this.grammar.variables.keys(), ...constants];
-    const split = (rest: string, most: number): readonly string[] | undefined => {
-      if (rest === '') return [];
-      if (most === 0) return undefined;
-      for (const name of names) {
-        const tail = rest.startsWith(name) ? split(rest.slice(name.length), most - 1) : undefined;
-        if (tail) return [name, ...tail];
-      }
-      return undefined;
-    };
-    const found = this.grammar.variables.size > 0 ? split(canonicalName(text).slice(0, 40), 4) : undefined;
-    return found && found.length > 1 ? found : undefined;
   }
 
   private namedState(name: string, at: number): Expression {

@@ -1,7 +1,8 @@
 import { divide, isFiniteComplex, multiply, real, type Complex } from './complex';
 import { contains, type Expression } from './expression';
 import { dropLeadingName } from './dropped-name';
-import { parseExpression, type Grammar } from './parser';
+import type { Grammar } from './grammar';
+import { parseExpression } from './parser';
 import { negligible, printComplex, printNumber, printTyped } from './print';
 import { ReadingProblem } from './problem';
 import { evaluateNumber } from './quantity';

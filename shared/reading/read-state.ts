@@ -1,7 +1,8 @@
 import { divide, isFiniteComplex, modulus, multiply, one, real, zero, type Complex } from './complex';
 import { dropLeadingName } from './dropped-name';
 import { contains, type Expression } from './expression';
-import { parseExpression, type Grammar } from './parser';
+import type { Grammar } from './grammar';
+import { parseExpression } from './parser';
 import { negligible, printComplex, printNumber } from './print';
 import { ReadingProblem } from './problem';
 import { evaluateNumber } from './quantity';
