@@ -173,6 +173,12 @@ class Lexer {
     else throw new ReadingProblem(`The sign ${quote(character)} has no meaning here.`, start);
   }
 
+  /** `4.98x10^-2`: an x right between two numbers is a times sign, where no variable is called so. */
+  private isTimes(character: string, start: number): boolean {
+    if (!/^[xX]$/.test(character) || this.tokens[this.tokens.length - 1]?.kind !== 'number') return false;
+    return /^\s*[\d.½]/.test(this.text.slice(start + 1)) && !this.options.known(character);
+  }
+
   private number(start: number): void {
     const written = lexNumber(this.text, start, this.separates() ? 'separator' : this.options.comma);
     const { value, digits, exponent } = written;
@@ -275,7 +281,7 @@ class Lexer {
     const end = this.subscriptEnd(start + Math.max(length, 1));
     const whole = this.text.slice(start, end);
     if (this.options.known(whole) || ![...whole].some(isGreek)) return this.name(start, end);
-    for (let from = start; from < end; ) {
+    for (let from = start; from < end;) {
       const to = this.firstPiece(from, end);
       this.name(from, to);
       from = to;

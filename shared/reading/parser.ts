@@ -203,11 +203,16 @@ export class Parser {
   private postfixed(): Expression {
     let node = this.primary();
     for (;;) {
-      if (this.is('operator', '!')) node = this.made({ type: 'factorial', argument: node, at: this.take().start });
-      else if (this.is('operator', '%')) node = this.made({ type: 'percent', argument: node, at: this.take().start });
+      if (this.is('operator', '!')) node = this.marked('factorial', node);
+      else if (this.is('operator', '%')) node = this.marked('percent', node);
       else if (this.is('operator', '°')) node = this.degrees(node);
       else return node;
     }
+  }
+
+  private marked(type: 'factorial' | 'percent', argument: Expression): Expression {
+    this.take();
+    return this.made({ type, argument, at: argument.at });
   }
 
   private primary(): Expression {
@@ -409,19 +414,10 @@ export class Parser {
   }
 }
 
-/** `4.98 x 10^3`: an x between two numbers is a times sign, where no variable is called so. */
-function letterTimes(tokens: readonly Token[], grammar: Grammar): readonly Token[] {
-  return tokens.map((token, index) => {
-    if (token.kind !== 'name' || !/^[xX]$/.test(token.text) || isKnown(grammar, token.text)) return token;
-    const between = tokens[index - 1]?.kind === 'number' && tokens[index + 1]?.kind === 'number';
-    return between ? { ...token, kind: 'operator', text: '*' } : token;
-  });
-}
-
 /** A parser over a text. Throws a ReadingProblem or AmbiguousComma where the text holds signs without meaning. */
 export function parserFor(text: string, grammar: Grammar): Parser {
   const tokens = lex(text, { comma: grammar.comma, known: (name) => isKnown(grammar, name), kets: grammar.kets });
-  return new Parser(letterTimes(tokens, grammar), text, grammar);
+  return new Parser(tokens, text, grammar);
 }
 
 /** Reads a text as one expression. */
