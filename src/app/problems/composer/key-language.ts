@@ -1,0 +1,156 @@
+import {
+  autocompletion,
+  completionKeymap,
+  type Completion,
+  type CompletionContext,
+  type CompletionResult,
+} from '@codemirror/autocomplete';
+import { bracketMatching } from '@codemirror/language';
+import { Facet, type EditorState, type Extension, StateField } from '@codemirror/state';
+import {
+  Decoration,
+  EditorView,
+  MatchDecorator,
+  showTooltip,
+  ViewPlugin,
+  keymap,
+  type DecorationSet,
+  type Tooltip,
+  type ViewUpdate,
+} from '@codemirror/view';
+import type { KeySignature } from '@shared/problem-routes';
+
+/** What an expression may name. */
+export interface KeyNames {
+  /** Givens and the values of earlier parts, each with a word about it. */
+  readonly values: readonly { readonly name: string; readonly detail: string }[];
+  readonly functions: readonly KeySignature[];
+}
+
+/** The names in force in an editor. */
+export const keyNames = Facet.define<KeyNames, KeyNames>({
+  combine: (values) => values[0] ?? { values: [], functions: [] },
+});
+
+/** What the editor of a key expression knows of the language: colours, completion, help with a function's arguments. */
+export function keyLanguage(): Extension {
+  return [
+    colours,
+    bracketMatching(),
+    autocompletion({ override: [complete], icons: false, activateOnTyping: true }),
+    keymap.of(completionKeymap),
+    signatureHelp,
+  ];
+}
+
+const given = Decoration.mark({ class: 'cm-given' });
+const number = Decoration.mark({ class: 'cm-number' });
+
+const colourer = new MatchDecorator({
+  regexp: /[A-Za-z_][A-Za-z0-9_]*|\d+(?:\.\d*)?(?:[eE][+-]?\d+)?/g,
+  decoration: ([word], view) => {
+    if (/^\d/.test(word)) return number;
+    return view.state.facet(keyNames).values.some((value) => value.name === word) ? given : null;
+  },
+});
+
+const colours = ViewPlugin.define(
+  (view) => ({
+    marks: colourer.createDeco(view) as DecorationSet,
+    update(update: ViewUpdate) {
+      this.marks =
+        update.startState.facet(keyNames) === update.state.facet(keyNames)
+          ? colourer.updateDeco(update, this.marks)
+          : colourer.createDeco(update.view);
+    },
+  }),
+  { decorations: (plugin) => plugin.marks },
+);
+
+function complete(context: CompletionContext): CompletionResult | null {
+  const word = context.matchBefore(/[A-Za-z_][A-Za-z0-9_]*/);
+  if (!word && !context.explicit) return null;
+  const names = context.state.facet(keyNames);
+  const options: Completion[] = [
+    ...names.values.map(({ name, detail }) => ({ label: name, detail, boost: 2, type: 'variable' })),
+    ...names.functions.map(({ name, signature, summary }) => ({
+      label: name,
+      detail: signature.slice(name.length),
+      info: summary,
+      type: 'function',
+      // The brackets are written too, with the cursor between them where there is something to write.
+      apply: (view: EditorView, _: Completion, from: number, to: number) => {
+        const isCalled = view.state.sliceDoc(to, to + 1) === '(';
+        const isConstant = !signature.includes('(');
+        const insert = isCalled || isConstant ? name : `${name}()`;
+        const inside = !isCalled && !isConstant && !signature.includes('()') ? 1 : 0;
+        view.dispatch({ changes: { from, to, insert }, selection: { anchor: from + insert.length - inside } });
+      },
+    })),
+  ];
+  return { from: word?.from ?? context.pos, options, validFor: /^[A-Za-z0-9_]*$/ };
+}
+
+/** The call around a place in an expression: the function's name, and which argument the place is in, from 0. */
+export function callAround(text: string, place: number): { readonly name: string; readonly argument: number } | null {
+  let depth = 0;
+  let argument = 0;
+  for (let index = place - 1; index >= 0; index--) {
+    const character = text[index];
+    if (character === ')' || character === ']') depth++;
+    else if (character === '[') {
+      if (depth === 0) argument = 0;
+      else depth--;
+    } else if (character === '(') {
+      if (depth > 0) {
+        depth--;
+        continue;
+      }
+      const name = /[A-Za-z_][A-Za-z0-9_]*$/.exec(text.slice(0, index))?.[0];
+      if (name) return { name, argument };
+      argument = 0;
+    } else if (character === ',' && depth === 0) argument++;
+  }
+  return null;
+}
+
+function signatureTooltip(state: EditorState): Tooltip | null {
+  const { head, empty } = state.selection.main;
+  const call = empty ? callAround(state.doc.toString(), head) : null;
+  const found = call && state.facet(keyNames).functions.find((each) => each.name === call.name);
+  if (!call || !found) return null;
+  return {
+    pos: head,
+    above: true,
+    create: () => ({ dom: signatureDom(found, call.argument) }),
+  };
+}
+
+function signatureDom(found: KeySignature, argument: number): HTMLElement {
+  const dom = document.createElement('div');
+  dom.className = 'cm-signature';
+  const [, name = found.name, list = ''] = /^([^(]*)\(([^)]*)\)/.exec(found.signature) ?? [];
+  dom.append(`${name}(`);
+  for (const [index, each] of list.split(',').entries()) {
+    if (index > 0) dom.append(', ');
+    const part = document.createElement(index === argument ? 'b' : 'span');
+    part.textContent = each.trim();
+    dom.append(part);
+  }
+  dom.append(')');
+  const words = document.createElement('p');
+  words.textContent = found.summary;
+  dom.append(words);
+  return dom;
+}
+
+const signatureHelp: Extension = [
+  StateField.define<Tooltip | null>({
+    create: () => null,
+    update: (tooltip, transaction) =>
+      transaction.docChanged || transaction.selection ? signatureTooltip(transaction.state) : tooltip,
+    provide: (field) => showTooltip.from(field),
+  }),
+  // Who leaves the field has no need of help with it.
+  EditorView.theme({ '&:not(.cm-focused) ~ .cm-tooltip, &:not(.cm-focused) .cm-signature': { display: 'none' } }),
+];

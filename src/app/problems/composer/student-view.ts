@@ -1,0 +1,57 @@
+import { ChangeDetectionStrategy, Component, computed, effect, inject, input, signal } from '@angular/core';
+import { MatButtonModule } from '@angular/material/button';
+import { MatIconModule } from '@angular/material/icon';
+import { MatTooltipModule } from '@angular/material/tooltip';
+import { splitStatement } from '@shared/statement';
+import { readTypedNumber, typeNumber } from '@shared/typed-number';
+import type { DraftPart } from '@shared/problem-draft';
+import { FormulaText } from '../../ui/formula-text/formula-text';
+import { SampleVariants } from './sample-variants';
+
+/** How long typing may run ahead of the preview. */
+const previewDelay = 60;
+
+/** The statement as a student sees it, with the values of one sample variant, which can be walked through. */
+@Component({
+  selector: 'app-student-view',
+  imports: [FormulaText, MatButtonModule, MatIconModule, MatTooltipModule],
+  templateUrl: './student-view.html',
+  styleUrl: './student-view.scss',
+  changeDetection: ChangeDetectionStrategy.OnPush,
+})
+export class StudentView {
+  protected readonly samples = inject(SampleVariants);
+
+  readonly statement = input.required<string>();
+  readonly parts = input.required<readonly DraftPart[]>();
+  readonly safety = input('');
+
+  private readonly settled = signal('');
+  protected readonly givens = computed(() => this.samples.shown()?.givens ?? {});
+  protected readonly split = computed(() => splitStatement(this.settled()));
+  protected readonly marks = computed(() =>
+    this.parts().map((part) => {
+      const sum = part.criteria.reduce((total, each) => total + (readTypedNumber(each.marks) ?? 0), 0);
+      return `${typeNumber(sum)} ${sum === 1 ? 'mark' : 'marks'}`;
+    }),
+  );
+  protected readonly where = computed(() => {
+    const count = this.samples.sample()?.count;
+    const number = this.samples.shown()?.number;
+    if (!count || !number) return '';
+    return count === 1 ? 'the same for everyone' : `variant ${String(number)} of ${String(count)}`;
+  });
+
+  constructor() {
+    effect((onCleanup) => {
+      const statement = this.statement();
+      const timer = setTimeout(() => this.settled.set(statement), previewDelay);
+      onCleanup(() => clearTimeout(timer));
+    });
+  }
+
+  protected step(by: number): void {
+    const number = this.samples.shown()?.number;
+    if (number) this.samples.show(number + by);
+  }
+}

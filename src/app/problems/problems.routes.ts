@@ -1,0 +1,13 @@
+import type { Routes } from '@angular/router';
+import { keepBeforeLeaving } from './composer/keep-before-leaving';
+
+const routes: Routes = [
+  { path: '', pathMatch: 'full', title: 'Problems', loadComponent: () => import('./problem-list/problem-list') },
+  {
+    path: ':problemId',
+    title: 'Problem',
+    canDeactivate: [keepBeforeLeaving],
+    loadComponent: () => import('./composer/composer'),
+  },
+];
+export default routes;
