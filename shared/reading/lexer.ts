@@ -169,7 +169,8 @@ class Lexer {
     else if (Object.hasOwn(simple, character)) {
       const [kind, plain] = simple[character] ?? ['end', ''];
       this.push(kind, plain, start, end);
-    } else if (character === '℃' || letter.test(character)) this.names(start);
+    } else if (this.isTimes(character, start)) this.push('operator', '*', start, end);
+    else if (character === '℃' || letter.test(character)) this.names(start);
     else throw new ReadingProblem(`The sign ${quote(character)} has no meaning here.`, start);
   }
 
