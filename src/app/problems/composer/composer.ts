@@ -88,7 +88,7 @@ export default class Composer {
   private readonly pageTitle = inject(PageTitle);
   protected readonly open = inject(OpenProblem);
   protected readonly samples = inject(SampleVariants);
-  private readonly tabList = viewChild<ElementRef<HTMLElement>>('tabs');
+  private readonly tabList = viewChild<ElementRef<HTMLElement>>('tabList');
 
   readonly courseId = input.required<string>();
   readonly problemId = input.required<string>();

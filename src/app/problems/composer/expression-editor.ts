@@ -5,6 +5,7 @@ import {
   DestroyRef,
   ElementRef,
   afterNextRender,
+  booleanAttribute,
   effect,
   inject,
   input,
@@ -53,8 +54,8 @@ export class ExpressionEditor {
   readonly faults = input<readonly ExpressionFault[]>([]);
   readonly hint = input('');
   /** Whether it stands in a table. */
-  readonly small = input(false);
-  readonly disabled = input(false);
+  readonly small = input(false, { transform: booleanAttribute });
+  readonly disabled = input(false, { transform: booleanAttribute });
   readonly valueChange = output<string>();
 
   protected readonly id = `expression-${String(++instances)}`;

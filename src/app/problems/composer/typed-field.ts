@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, input, output } from '@angular/core';
+import { ChangeDetectionStrategy, Component, booleanAttribute, input, output } from '@angular/core';
 
 let instances = 0;
 
@@ -53,12 +53,12 @@ export class TypedField {
   /** What is wrong, in a sentence; empty where nothing is. */
   readonly fault = input('');
   readonly placeholder = input('');
-  readonly hideLabel = input(false);
-  readonly mono = input(false);
-  readonly numeric = input(false);
+  readonly hideLabel = input(false, { transform: booleanAttribute });
+  readonly mono = input(false, { transform: booleanAttribute });
+  readonly numeric = input(false, { transform: booleanAttribute });
   /** More than 0 makes it a field of several lines. */
   readonly rows = input(0);
-  readonly disabled = input(false);
+  readonly disabled = input(false, { transform: booleanAttribute });
   readonly valueChange = output<string>();
 
   protected readonly id = `typed-field-${String(++instances)}`;
