@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { convention, identifier, instant, role } from './primitives';
 import { defineRoute } from './route';
 

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import type { AnswerField, FieldVariable } from './reading/reading';
 
 /** The forms an answer can take; all but `choice` and `worked` are compared with a computed key. */

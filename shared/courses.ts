@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { email, personName } from './accounts';
 import { convention, defaultConvention, identifier, instant, role, versionNumber } from './primitives';
 import { defineRoute } from './route';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { identifier, setStage } from './primitives';
 
 /** Where the live connection is found on the server. */

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { plainValue, relation } from './checks';
 import { colleague, holdKind, presence } from './live';
 import { identifier, instant, setStage, versionNumber } from './primitives';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 
 /** A random identifier (UUIDv4): it tells neither time nor order. */
 export const identifier = z.uuid();

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 
 /** The stable types of error, each with its HTTP status. */
 export const errorTypes = {

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { AnswerForm } from './answer-forms';
 import { convention, identifier, type Convention } from './primitives';
 import { criterionKind, verdict } from './problems';

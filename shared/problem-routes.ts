@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { plainValue } from './checks';
 import { identifier, listOf } from './primitives';
 import { fieldProblem } from './problem-details';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { answerSpecification } from './answer-forms';
 import { convention, identifier, instant, versionNumber } from './primitives';
 

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { plainValue } from './checks';
 import { printedGiven, workedPage } from './marking';
 import { identifier, instant, setStage, versionNumber } from './primitives';

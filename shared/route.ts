@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 
 /** The HTTP methods in use. */
 export type Method = 'GET' | 'POST' | 'PUT' | 'PATCH' | 'DELETE';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 
 /** The value of one given in one variant. */
 export const givenValue = z.object({

@@ -1,5 +1,5 @@
 import type { AbstractControl, FormGroup, ValidatorFn } from '@angular/forms';
-import type { z } from 'zod';
+import type * as z from 'zod';
 import { RequestFailure } from './api/request-failure';
 
 /** A validator that uses the schema which the server uses, with its sentence. */

@@ -6,7 +6,7 @@ import { MatFormFieldModule } from '@angular/material/form-field';
 import { MatIconModule } from '@angular/material/icon';
 import { MatInputModule } from '@angular/material/input';
 import { Router, RouterLink } from '@angular/router';
-import { z } from 'zod';
+import * as z from 'zod';
 import { email } from '@shared/accounts';
 import { fullMomentOf } from '@shared/times';
 import { AccountsApi } from '../../core/api/accounts-api';

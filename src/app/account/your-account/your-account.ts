@@ -6,7 +6,7 @@ import { MatFormFieldModule } from '@angular/material/form-field';
 import { MatInputModule } from '@angular/material/input';
 import { Router } from '@angular/router';
 import { firstValueFrom } from 'rxjs';
-import { z } from 'zod';
+import * as z from 'zod';
 import { newPassword, passwordMinimum } from '@shared/accounts';
 import { AccountsApi } from '../../core/api/accounts-api';
 import { checkedBy, messageOf, showFailure, showWhatIsMissing } from '../../core/field-messages';

@@ -1,7 +1,7 @@
 import { HttpClient } from '@angular/common/http';
 import { Injectable, inject } from '@angular/core';
 import { map, type Observable } from 'rxjs';
-import type { z } from 'zod';
+import type * as z from 'zod';
 import { pathOf, type Route } from '@shared/route';
 
 type Fields<Schema extends z.ZodType> = keyof z.input<Schema> extends never ? object : z.input<Schema>;

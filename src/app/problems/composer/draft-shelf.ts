@@ -1,5 +1,5 @@
 import { Injectable } from '@angular/core';
-import { z } from 'zod';
+import * as z from 'zod';
 import { problemDraft, type ProblemDraft } from '@shared/problem-draft';
 
 const shelved = z.object({ version: z.number().int(), draft: problemDraft });
