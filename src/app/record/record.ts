@@ -56,7 +56,7 @@ import { ErrorState } from '../ui/error-state/error-state';
         </mat-form-field>
       </div>
       @if (problem(); as sentence) {
-        <app-error-state [what]="sentence" (retry)="record.reload()" />
+        <app-error-state [text]="sentence" (retried)="record.reload()" />
       } @else if (record.hasValue()) {
         @if (record.value().items.length === 0) {
           <app-empty-state

@@ -47,7 +47,7 @@ import { ErrorState } from '../../ui/error-state/error-state';
         }
       </div>
       @if (problem(); as sentence) {
-        <app-error-state [what]="sentence" (retry)="accounts.reload()" />
+        <app-error-state [text]="sentence" (retried)="accounts.reload()" />
       } @else if (accounts.hasValue()) {
         @if (accounts.value().items.length === 0) {
           <app-empty-state text="No account fits this search. Take the search away to see all of them." />
@@ -69,7 +69,7 @@ import { ErrorState } from '../../ui/error-state/error-state';
                 </td>
               </ng-container>
               <ng-container matColumnDef="acts">
-                <th mat-header-cell *matHeaderCellDef><span class="visually-hidden">acts</span></th>
+                <th mat-header-cell *matHeaderCellDef><span class="cdk-visually-hidden">acts</span></th>
                 <td mat-cell *matCellDef="let account">
                   <button matIconButton [matMenuTriggerFor]="menu" [attr.aria-label]="'More for ' + account.name">
                     <mat-icon svgIcon="more_vert" />

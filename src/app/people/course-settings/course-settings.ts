@@ -29,7 +29,7 @@ import { CourseFields, courseForm } from '../course-fields';
     <div class="page">
       <h1>The course</h1>
       @if (problem(); as sentence) {
-        <app-error-state [what]="sentence" (retry)="course.reload()" />
+        <app-error-state [text]="sentence" (retried)="course.reload()" />
       } @else if (course.hasValue()) {
         <form [formGroup]="form()" (ngSubmit)="save()" novalidate>
           <app-course-fields [form]="form()" />

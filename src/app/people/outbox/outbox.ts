@@ -19,7 +19,7 @@ import { ErrorState } from '../../ui/error-state/error-state';
         <p class="quiet">Letters without the secret part of their links. That you read them stands in the record.</p>
       </header>
       @if (problem(); as sentence) {
-        <app-error-state [what]="sentence" (retry)="letters.reload()" />
+        <app-error-state [text]="sentence" (retried)="letters.reload()" />
       } @else if (letters.hasValue()) {
         @for (letter of letters.value().items; track letter.id) {
           <article class="letter">
