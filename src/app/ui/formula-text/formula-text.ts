@@ -74,7 +74,28 @@ export class FormulaText {
       inline: this.inline(),
     };
     this.blocks = typesetting.typeset(this.text(), setting, this.blocks);
-    element.replaceChildren(...this.blocks.flatMap((block) => block.nodes));
+    replaceChanged(
+      element,
+      this.blocks.flatMap((block) => block.nodes),
+    );
     this.formulaProblems.emit(this.blocks.flatMap((block) => block.problems));
   }
+}
+
+/** Makes `nodes` the children of an element and leaves those alone that are in place, so that only what changed is laid out. */
+function replaceChanged(element: Element, nodes: readonly Node[]): void {
+  const old = [...element.childNodes];
+  let head = 0;
+  while (head < old.length && head < nodes.length && old[head] === nodes[head]) head++;
+  let tail = 0;
+  while (
+    tail < old.length - head &&
+    tail < nodes.length - head &&
+    old[old.length - 1 - tail] === nodes[nodes.length - 1 - tail]
+  ) {
+    tail++;
+  }
+  const after = old[old.length - tail] ?? null;
+  for (const node of old.slice(head, old.length - tail)) node.remove();
+  for (const node of nodes.slice(head, nodes.length - tail)) element.insertBefore(node, after);
 }

@@ -136,11 +136,11 @@ describe('FringeStrip', () => {
 describe('layOutStrip', () => {
   const many = (group: string, count: number) => Array.from({ length: count }, (_, i) => bar(`${group}${i}`, group));
 
-  it('keeps bars 12 px apart and patterns 16 px further', () => {
+  it('keeps bars 12 px apart, and patterns further apart than that', () => {
     const layout = layOutStrip(sortIntoGroups([...many('right', 46), ...many('x2', 8)], groups), 1552, 'right');
     expect(layout.pitch).toBe(12);
     expect(layout.groups[0]?.bars.slice(0, 2).map((placed) => placed.x)).toEqual([4, 16]);
-    expect(layout.groups[1]?.from).toBe(4 + 46 * 12 + 16);
+    expect(layout.groups[1]?.from).toBe(4 + 46 * 12 + 16 + 24);
   });
 
   it('draws the right ones as one block where bars would be too thin', () => {

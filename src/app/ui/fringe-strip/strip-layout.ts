@@ -5,14 +5,18 @@ import type { FringeBar, FringeGroup } from './fringe-bar';
 export const strip = { height: 124, flagTop: 8, top: 28, field: 88, base: 116 } as const;
 
 const widestPitch = 12;
-/** Below this the group of right answers becomes one block. */
+/** Below this the group of right answers becomes one block … */
 const legiblePitch = 7;
-const narrowestPitch = 2;
+/** … and below this the largest of the others too. */
+const countablePitch = 3.5;
+/** Names may claim their room as long as bars stay this far apart. */
+const comfortablePitch = 5;
+const narrowestPitch = 1;
 const gap = 16;
 const margin = 4;
 const widestBlock = 120;
 /** How much room a pattern's name may claim, in the order of preference. */
-const nameRooms = [132, 92, 0] as const;
+const nameRooms = [132, 92, 56, 0] as const;
 
 /** A bar with its place. */
 export interface PlacedBar {
@@ -61,8 +65,8 @@ export function sortIntoGroups(bars: readonly FringeBar[], groups: readonly Frin
 
 /**
  * Gives every bar its place within a width. Bars stand 12 px apart where there is room and closer where there is not, and
- * patterns leave room for their names. Below 7 px the pattern `tallyFirst`, then the largest others, are drawn as one block
- * each, so that what needs work stays legible; `keepOpen` is the last to become a block.
+ * patterns leave room for their names. Below 7 px the pattern `tallyFirst` is drawn as one block, below 3.5 px the
+ * largest others too, so that what needs work stays legible; `keepOpen` is the last to become a block.
  */
 export function layOutStrip(
   sorted: readonly Sorted[],
@@ -79,15 +83,17 @@ export function layOutStrip(
   let nameRoom = nameRooms.find((widest) => pitchWith(widest) >= legiblePitch) ?? nameRooms.at(-1) ?? 0;
   for (const group of tallyOrder(sorted, tallyFirst, keepOpen)) {
     const pitch = pitchWith(nameRoom);
-    if (pitch >= legiblePitch) break;
-    // A block must save room, or it would only hide bars.
-    if (pitch < narrowestPitch || group.bars.length * pitch > blockWidth || group.key === tallyFirst) {
-      tallied.add(group.key);
-    }
+    if (pitch >= (group.key === tallyFirst ? legiblePitch : countablePitch)) break;
+    tallied.add(group.key);
   }
-  if (pitchWith(nameRoom) < narrowestPitch) nameRoom = 0;
-  const pitch = pitchWith(nameRoom);
+  nameRoom = nameRooms.find((widest) => pitchWith(widest) >= comfortablePitch) ?? 0;
+  // Whole pixels, so that the rhythm is even.
+  const fitting = Math.max(narrowestPitch, pitchWith(nameRoom));
+  const pitch = fitting >= 3 ? Math.floor(fitting) : fitting;
   const reserved = slots(nameRoom);
+  // What rounding leaves over widens the gaps between patterns.
+  const left = room - neededWidth(sorted, tallied, reserved, blockWidth, pitch);
+  const wider = Math.floor(Math.min(24, Math.max(0, left) / Math.max(1, sorted.length - 1)));
 
   let x: number = margin;
   const groups = sorted.map((group, place) => {
@@ -98,7 +104,7 @@ export function layOutStrip(
     const bars = group.bars.map((bar, index) => ({ bar, x: snap(from + index * step, block), width: barWidth }));
     const last = bars.at(-1);
     const to = block ? from + blockWidth : last ? last.x + last.width : from;
-    x += Math.max(group.bars.length * step + gap, place < sorted.length - 1 ? (reserved[place] ?? 0) : 0);
+    x += Math.max(group.bars.length * step + gap, reserved[place] ?? 0) + wider;
     const marked = group.bars.filter((bar) => bar.state === 'marked').length;
     return { key: group.key, name: group.name, from, to, bars, marked, tallied: block };
   });
@@ -111,7 +117,22 @@ function tallyOrder(sorted: readonly Sorted[], tallyFirst: string, keepOpen: str
   return [...sorted].sort((a, b) => rank(a) - rank(b) || b.bars.length - a.bars.length);
 }
 
-/** The widest pitch at which all groups, with the room that each reserves, fit side by side. */
+/** How much width all groups take at a pitch, with the room that each reserves for its name. */
+function neededWidth(
+  sorted: readonly Sorted[],
+  tallied: ReadonlySet<string>,
+  slots: readonly number[],
+  blockWidth: number,
+  pitch: number,
+): number {
+  return sorted.reduce((sum, group, place) => {
+    const bars = tallied.has(group.key) ? blockWidth : group.bars.length * pitch;
+    const last = place === sorted.length - 1;
+    return sum + Math.max(last ? bars : bars + gap, slots[place] ?? 0);
+  }, 0);
+}
+
+/** The widest pitch at which all groups fit side by side. */
 function widestFittingPitch(
   sorted: readonly Sorted[],
   tallied: ReadonlySet<string>,
@@ -119,17 +140,12 @@ function widestFittingPitch(
   blockWidth: number,
   room: number,
 ): number {
-  const needed = (pitch: number) =>
-    sorted.reduce((sum, group, place) => {
-      const bars = tallied.has(group.key) ? blockWidth : group.bars.length * pitch;
-      const last = place === sorted.length - 1;
-      return sum + (last ? bars : Math.max(bars + gap, slots[place] ?? 0));
-    }, 0);
-  if (needed(widestPitch) <= room) return widestPitch;
+  const fits = (pitch: number) => neededWidth(sorted, tallied, slots, blockWidth, pitch) <= room;
+  if (fits(widestPitch)) return widestPitch;
   let [low, high] = [0, widestPitch];
   for (let round = 0; round < 24; round++) {
     const middle = (low + high) / 2;
-    if (needed(middle) <= room) low = middle;
+    if (fits(middle)) low = middle;
     else high = middle;
   }
   return low;
