@@ -11,6 +11,7 @@ const readyLine = 'Ctrl-C stops it.';
  *
  * @typedef {{
  *   readonly printed: () => string,
+ *   readonly ended: Promise<unknown>,
  *   readonly stop: () => Promise<void>,
  *   readonly kill: () => Promise<void>
  * }} RunningServer `stop` lets it finish, `kill` does not
@@ -54,5 +55,5 @@ export async function startServer(env, echo = false) {
     if (child.exitCode === null && child.signalCode === null) child.kill(signal);
     await ended;
   };
-  return { printed: () => printed, stop: () => end('SIGTERM'), kill: () => end('SIGKILL') };
+  return { printed: () => printed, ended, stop: () => end('SIGTERM'), kill: () => end('SIGKILL') };
 }
