@@ -1,13 +1,4 @@
-import {
-  ChangeDetectionStrategy,
-  Component,
-  ElementRef,
-  computed,
-  inject,
-  input,
-  numberAttribute,
-  signal,
-} from '@angular/core';
+import { ChangeDetectionStrategy, Component, ElementRef, computed, inject, input, signal } from '@angular/core';
 import { rxResource } from '@angular/core/rxjs-interop';
 import { FormControl, FormGroup, ReactiveFormsModule } from '@angular/forms';
 import { MatButtonModule } from '@angular/material/button';
@@ -23,6 +14,7 @@ import { firstValueFrom } from 'rxjs';
 import { email, personName } from '@shared/accounts';
 import type { Member } from '@shared/courses';
 import { type Role, roles } from '@shared/primitives';
+import { address } from '../core/address';
 import { CoursesApi } from '../core/api/courses-api';
 import { sentenceOf } from '../core/api/request-failure';
 import { checkedBy, messageOf, showFailure, showWhatIsMissing } from '../core/field-messages';
@@ -59,9 +51,9 @@ export default class People {
 
   /** From the address: course, and the list's filters. */
   readonly courseId = input.required<string>();
-  readonly search = input('');
+  readonly search = input('', { transform: address.text });
   readonly role = input<Role>();
-  readonly page = input(1, { transform: (value: unknown) => numberAttribute(value, 1) });
+  readonly page = input(1, { transform: address.page });
 
   protected readonly roles = roles;
   protected readonly columns = ['name', 'role', 'email', 'state', 'acts'];

@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, computed, inject, input, numberAttribute } from '@angular/core';
+import { ChangeDetectionStrategy, Component, computed, inject, input } from '@angular/core';
 import { rxResource } from '@angular/core/rxjs-interop';
 import { MatFormFieldModule } from '@angular/material/form-field';
 import { MatIconModule } from '@angular/material/icon';
@@ -8,6 +8,7 @@ import { MatSelectModule } from '@angular/material/select';
 import { MatTableModule } from '@angular/material/table';
 import { Router } from '@angular/router';
 import { momentOf } from '@shared/times';
+import { address } from '../core/address';
 import { RecordApi } from '../core/api/record-api';
 import { sentenceOf } from '../core/api/request-failure';
 import { Session } from '../core/session';
@@ -150,9 +151,9 @@ export default class Record {
   private readonly session = inject(Session);
 
   readonly courseId = input.required<string>();
-  readonly search = input('');
-  readonly thing = input('');
-  readonly page = input(1, { transform: (value: unknown) => numberAttribute(value, 1) });
+  readonly search = input('', { transform: address.text });
+  readonly thing = input('', { transform: address.text });
+  readonly page = input(1, { transform: address.page });
 
   protected readonly columns = ['at', 'actor', 'sentence', 'thing'];
   protected readonly record = rxResource({

@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, computed, inject, input, numberAttribute, signal } from '@angular/core';
+import { ChangeDetectionStrategy, Component, computed, inject, input, signal } from '@angular/core';
 import { rxResource } from '@angular/core/rxjs-interop';
 import { MatButtonModule } from '@angular/material/button';
 import { MatFormFieldModule } from '@angular/material/form-field';
@@ -10,6 +10,7 @@ import { MatTableModule } from '@angular/material/table';
 import { Router } from '@angular/router';
 import { firstValueFrom } from 'rxjs';
 import type { Account } from '@shared/accounts';
+import { address } from '../../core/address';
 import { AccountsApi } from '../../core/api/accounts-api';
 import { sentenceOf } from '../../core/api/request-failure';
 import { Session } from '../../core/session';
@@ -110,8 +111,8 @@ export default class Accounts {
   private readonly router = inject(Router);
   protected readonly session = inject(Session);
 
-  readonly search = input('');
-  readonly page = input(1, { transform: (value: unknown) => numberAttribute(value, 1) });
+  readonly search = input('', { transform: address.text });
+  readonly page = input(1, { transform: address.page });
 
   protected readonly columns = ['name', 'email', 'state', 'acts'];
   protected readonly accounts = rxResource({

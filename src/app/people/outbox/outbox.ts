@@ -1,8 +1,9 @@
-import { ChangeDetectionStrategy, Component, computed, inject, input, numberAttribute } from '@angular/core';
+import { ChangeDetectionStrategy, Component, computed, inject, input } from '@angular/core';
 import { rxResource } from '@angular/core/rxjs-interop';
 import { MatPaginatorModule } from '@angular/material/paginator';
 import { Router } from '@angular/router';
 import { fullMomentOf } from '@shared/times';
+import { address } from '../../core/address';
 import { AccountsApi } from '../../core/api/accounts-api';
 import { sentenceOf } from '../../core/api/request-failure';
 import { EmptyState } from '../../ui/empty-state/empty-state';
@@ -67,7 +68,7 @@ export default class Outbox {
   private readonly router = inject(Router);
   private readonly zone = Intl.DateTimeFormat().resolvedOptions().timeZone;
 
-  readonly page = input(1, { transform: (value: unknown) => numberAttribute(value, 1) });
+  readonly page = input(1, { transform: address.page });
 
   protected readonly letters = rxResource({
     params: () => this.page(),
