@@ -12,7 +12,7 @@ const names = `
   add archive arrow_back arrow_downward arrow_forward arrow_upward attach_file autorenew block bookmark calendar_month chat check
   check_circle chevron_left chevron_right close cloud_done cloud_off cloud_upload comment content_copy dark_mode delete
   description download drag_indicator edit error event
-  expand_less=keyboard_arrow_up expand_more=keyboard_arrow_down filter_list flag fullscreen gavel group help
+  expand_less=keyboard_arrow_up expand_more=keyboard_arrow_down keyboard_arrow_down keyboard_arrow_up filter_list flag fullscreen gavel group help
   history hourglass_empty info key keyboard  light_mode link lock logout mail menu more_vert open_in_new person person_add
   photo_camera picture_as_pdf play_arrow print refresh remove replay rotate_right save schedule science search send settings
   stop swap_vert tune undo upload visibility visibility_off warning zoom_in zoom_out

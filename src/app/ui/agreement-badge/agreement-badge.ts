@@ -1,6 +1,6 @@
 import { A11yModule } from '@angular/cdk/a11y';
 import { type ConnectedPosition, OverlayModule } from '@angular/cdk/overlay';
-import { ChangeDetectionStrategy, Component, computed, input, output, signal } from '@angular/core';
+import { ChangeDetectionStrategy, Component, booleanAttribute, computed, input, output, signal } from '@angular/core';
 import { printNumber } from '@shared/reading/print';
 import { type Agreement, agreementInWords } from './agreement';
 
@@ -20,7 +20,7 @@ export class AgreementBadge {
   /** For how long it has been computed, in seconds, while it is. */
   readonly seconds = input<number | null>(null);
   /** Whether the computation can be stopped. */
-  readonly stoppable = input(false);
+  readonly stoppable = input(false, { transform: booleanAttribute });
 
   /** The computation is to be stopped. */
   readonly stopped = output<void>();

@@ -2,6 +2,7 @@ import {
   ChangeDetectionStrategy,
   Component,
   PendingTasks,
+  booleanAttribute,
   computed,
   effect,
   inject,
@@ -59,7 +60,7 @@ export class AnswerField {
   /** The answer as typed. */
   readonly text = model('');
   /** Whether it can be read but not changed. */
-  readonly readonly = input(false);
+  readonly readonly = input(false, { transform: booleanAttribute });
   readonly placeholder = input('your answer');
   /** How the answer is read, whenever that changes. */
   readonly readingChange = output<Reading>();

@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, computed, input, model } from '@angular/core';
+import { ChangeDetectionStrategy, Component, booleanAttribute, computed, input, model } from '@angular/core';
 import { MatIconModule } from '@angular/material/icon';
 
 /**
@@ -20,9 +20,9 @@ export class CriterionToggle {
   /** The key of the keyboard that does the same; empty where single keys are switched off. */
   readonly keyCap = input('');
   /** Whether a ruling has just changed it. */
-  readonly changed = input(false);
+  readonly changed = input(false, { transform: booleanAttribute });
   /** Whether it can only be read. */
-  readonly disabled = input(false);
+  readonly disabled = input(false, { transform: booleanAttribute });
 
   protected readonly worth = computed(() => `${this.marks()} ${this.marks() === 1 ? 'mark' : 'marks'}`);
   protected readonly words = computed(() => (this.awarded() ? 'awarded' : 'not awarded'));

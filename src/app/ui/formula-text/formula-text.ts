@@ -3,6 +3,7 @@ import {
   Component,
   ElementRef,
   ViewEncapsulation,
+  booleanAttribute,
   computed,
   effect,
   inject,
@@ -39,11 +40,11 @@ export class FormulaText {
   /** What `\val{name}` prints. */
   readonly givens = input<PrintedGivens>({});
   /** Whether what is drawn is underlined, for those who write problems. */
-  readonly showGivens = input(false);
+  readonly showGivens = input(false, { transform: booleanAttribute });
   /** Addresses of the pictures, by the name that the text uses. */
   readonly figures = input<Readonly<Record<string, string>>>({});
   /** Whether the text stands within a line. */
-  readonly inline = input(false);
+  readonly inline = input(false, { transform: booleanAttribute });
   /** Formulas that cannot be read, whenever the text has been set. */
   readonly formulaProblems = output<readonly FormulaProblem[]>();
 

@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, computed, input } from '@angular/core';
+import { ChangeDetectionStrategy, Component, booleanAttribute, computed, input } from '@angular/core';
 
 /** One of the eight hues of markers. */
 export type MarkerHue = 1 | 2 | 3 | 4 | 5 | 6 | 7 | 8;
@@ -22,7 +22,7 @@ export class MarkerToken {
   /** 1 to 8. */
   readonly hue = input.required<number>();
   /** Whether it is the reader. */
-  readonly mine = input(false);
+  readonly mine = input(false, { transform: booleanAttribute });
 
   protected readonly colour = computed(() => hueClass(this.hue(), this.mine()));
 }

@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, computed, input } from '@angular/core';
+import { ChangeDetectionStrategy, Component, booleanAttribute, computed, input } from '@angular/core';
 import { injectElementWidth } from '../element-width';
 import { textWidth } from '../text-width';
 
@@ -33,7 +33,7 @@ export class StageLine {
   /** What the line is of, for those who hear it: `Set 4`. */
   readonly label = input('');
   /** Whether the stages' names stand above the line. */
-  readonly names = input(false);
+  readonly names = input(false, { transform: booleanAttribute });
 
   private readonly width = injectElementWidth(left + widestPitch * 8 + 40);
 

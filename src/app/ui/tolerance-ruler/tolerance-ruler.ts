@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, computed, input } from '@angular/core';
+import { ChangeDetectionStrategy, Component, booleanAttribute, computed, input } from '@angular/core';
 import { printNumber } from '@shared/reading/print';
 import { injectElementWidth } from '../element-width';
 import { type LooseLabel, placeLabels, stackDots } from './ruler-labels';
@@ -42,7 +42,7 @@ export class ToleranceRuler {
   /** The answer in hand, in the key's unit. */
   readonly answer = input<number | null>(null);
   /** Whether the axis is answer ÷ key. Value, band, slips and answer stay in the key's unit. */
-  readonly ratio = input(false);
+  readonly ratio = input(false, { transform: booleanAttribute });
   readonly unit = input('');
 
   private readonly relative = computed(() => this.ratio() && this.value() !== 0);
