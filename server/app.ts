@@ -6,6 +6,7 @@ import { createSessions, type Sessions } from './accounts/sessions';
 import type { Context } from './context';
 import { addCourseRoutes } from './courses/courses-routes';
 import { addDeskRoutes } from './desk/desk-routes';
+import { addProblemRoutes } from './problems/problems-routes';
 import { addRecordRoutes } from './record/record-routes';
 import { contentPolicy } from './http/content-policy';
 import { notFound } from './http/errors';
@@ -85,6 +86,7 @@ export function createApp(context: Context, clientFolder?: string): Application 
   addAccountRoutes(serve, context, sessions);
   addCourseRoutes(serve, context);
   addDeskRoutes(serve, context);
+  addProblemRoutes(serve, context);
   addRecordRoutes(serve, context);
   addMarkingRoutes(serve, context);
   addResultsRoutes(serve, context);

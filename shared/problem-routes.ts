@@ -110,7 +110,7 @@ export const problemRoutes = {
     method: 'POST',
     path: '/problems/import',
     summary: 'Begin a problem with the content of a problem file',
-    body: begun.extend({ text: z.string({ error: 'Choose a file.' }).min(1, 'The file is empty.').max(300_000) }),
+    body: z.object({ text: z.string({ error: 'Choose a file.' }).min(1, 'The file is empty.').max(300_000) }),
     response: problemDetail,
   }),
   sampleProblem: defineRoute({

@@ -19,8 +19,6 @@ import { FileFields, ProblemFileError } from './file-fields';
 export { ProblemFileError } from './file-fields';
 
 interface ReadOptions {
-  /** Holds where the file names no convention. */
-  readonly convention?: Convention;
   /** Identifiers of parts and criteria, which the file does not carry. */
   readonly nextId?: () => string;
 }
@@ -104,7 +102,7 @@ function draftOfDocument(
   const fields = new FileFields(document.contents, 'the problem', lineOf);
   const nextId = options.nextId ?? newId;
   const draft: ProblemDraft = {
-    ...emptyDraft(fields.text('title'), readConvention(fields.map('convention'), options.convention)),
+    ...emptyDraft(fields.text('title'), readConvention(fields.map('convention'))),
     statement,
     tags: fields.words('tags'),
     safety: fields.text('safety'),
@@ -119,8 +117,9 @@ function draftOfDocument(
   return draft;
 }
 
-function readConvention(fields: FileFields | undefined, otherwise: Convention = defaultConvention): Convention {
-  if (!fields) return otherwise;
+function readConvention(fields: FileFields | undefined): Convention {
+  // Not that of the course into which the file is read: its keys would change with the place.
+  if (!fields) return defaultConvention;
   const variance = fields.choice('vacuum variance', ['1/4', '1/2', '1'], '1/2');
   const sign = fields.choice('sign of squeezing', ['1', '-1'], '1');
   const phase = fields.choice('splitter phase', ['0', 'pi/2'], 'pi/2');

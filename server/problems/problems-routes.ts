@@ -44,9 +44,8 @@ export function addProblemRoutes(serve: Serve, context: Context): void {
 
   serve(routes.importProblem, ({ user, body }) => {
     demand(user, 'write problems');
-    const convention = conventionFor(db, user, body.courseId);
     try {
-      return createFromContent(db, readProblemFile(body.text, { convention }), deed(user));
+      return createFromContent(db, readProblemFile(body.text), deed(user));
     } catch (error) {
       if (error instanceof ProblemFileError) throw invalidField(['text'], error.message);
       throw error;

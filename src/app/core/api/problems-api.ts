@@ -17,8 +17,8 @@ export class ProblemsApi {
     return this.api.call(problemRoutes.beginProblem, { body: { courseId, title } });
   }
 
-  importProblem(courseId: string, text: string) {
-    return this.api.call(problemRoutes.importProblem, { body: { courseId, text } });
+  importProblem(text: string) {
+    return this.api.call(problemRoutes.importProblem, { body: { text } });
   }
 
   sampleProblem(body: { draft: ProblemDraft; count?: number; shown?: number | undefined; seed?: string }) {

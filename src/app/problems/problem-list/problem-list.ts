@@ -123,7 +123,7 @@ export default class ProblemList {
     box.value = '';
     if (!file) return;
     await this.attempt(async () => {
-      const begun = await firstValueFrom(this.api.importProblem(this.courseId(), await file.text()));
+      const begun = await firstValueFrom(this.api.importProblem(await file.text()));
       await this.router.navigate(['/courses', this.courseId(), 'problems', begun.id]);
     });
   }
