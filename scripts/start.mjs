@@ -1,4 +1,5 @@
-// `npm start`: everything from a fresh clone to a running server.
+// `npm start`: everything from a fresh clone to a running server. package.json says `exec`, so that no shell stands between
+// npm and this program: it would die of Ctrl-C before us, and pass no signal on.
 import { join } from 'node:path';
 import { pathToFileURL } from 'node:url';
 import { buildProgram } from './build-program.mjs';
