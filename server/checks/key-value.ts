@@ -85,3 +85,31 @@ export function asFormula(value: ComputedKey['value']): FormulaKey {
   if (typeof value === 'object' && 'atPoints' in value) return value;
   throw new KeyProblem('The key is not a formula.');
 }
+
+/** A key that comes from where values are kept or computed, as one that can be compared. */
+export function computedKey({
+  value,
+  unit,
+}: {
+  readonly value: unknown;
+  readonly unit?: string | undefined;
+}): ComputedKey {
+  return { value: comparableValue(value), ...(unit ? { unit } : {}) };
+}
+
+function comparableValue(value: unknown): ComputedKey['value'] {
+  if (typeof value === 'object' && value !== null && !Array.isArray(value)) {
+    if ('modes' in value || 'atPoints' in value) return value as StateKey | FormulaKey;
+  }
+  return plainKey(value);
+}
+
+function plainKey(value: unknown): PlainKey {
+  if (typeof value === 'number') return value;
+  if (Array.isArray(value)) return value.map(plainKey);
+  if (typeof value === 'object' && value !== null && 're' in value && 'im' in value) {
+    const { re, im } = value;
+    if (typeof re === 'number' && typeof im === 'number') return { re, im };
+  }
+  throw new KeyProblem('The key is neither a number nor a list of numbers.');
+}

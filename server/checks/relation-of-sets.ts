@@ -10,7 +10,7 @@ import {
   zero,
   type Complex,
 } from '@shared/reading/complex';
-import { numberCandidates, type Candidate, type Relation } from './relation';
+import { numberCandidates, type Candidate, type RelationMatch } from './relation';
 
 /** Several values of an answer beside as many of its key: a list, a matrix, a formula at its points. */
 export interface Sets {
@@ -62,17 +62,18 @@ function arrangements(
 export function relationsBetweenSets(
   sets: Sets,
   candidates: readonly Candidate[] = numberCandidates,
-): readonly Relation[] {
+): readonly RelationMatch[] {
   const { answer, key, width } = sets;
   if (answer.length === 0 || key.length === 0) return [];
-  const found: Relation[] = [];
+  const found: RelationMatch[] = [];
   for (const { relation, of } of candidates) {
     const expected = key.map(of);
     if (!expected.every(isFiniteComplex) || agree(expected, key, width)) continue;
-    if (agree(answer, expected, width)) found.push(relation);
+    if (agree(answer, expected, width)) found.push({ relation, deviation: 0 });
   }
   for (const [name, expected, compared] of arrangements(key, answer)) {
-    if (key.length > 1 && !agree(expected, key, width) && agree(compared, expected, width)) found.push({ name });
+    if (key.length > 1 && !agree(expected, key, width) && agree(compared, expected, width))
+      found.push({ relation: { name }, deviation: 0 });
   }
   if (found.length === 0 && answer.length === key.length && key.length > 1) {
     const factor = factorBetween(sets);
@@ -85,7 +86,7 @@ export function relationsBetweenSets(
         width,
       )
     ) {
-      found.push({ name: 'a constant times the key', factor: factor.re });
+      found.push({ relation: { name: 'a constant times the key', factor: factor.re }, deviation: 0 });
     }
   }
   return found;

@@ -2,7 +2,7 @@ import { modulus, type Complex } from '@shared/reading/complex';
 import type { ReadingOf } from '@shared/reading/reading';
 import { fidelityWithKey } from './compare-state';
 import { asState, type ComputedKey, type StateAmplitude, type StateKey } from './key-value';
-import type { Relation } from './relation';
+import type { RelationMatch } from './relation';
 
 type PureKey = Extract<StateKey, { readonly amplitudes: readonly StateAmplitude[] }>;
 
@@ -35,24 +35,28 @@ const mistakes: readonly { readonly name: string; readonly of: (key: PureKey) =>
   },
 ];
 
+const named = (name: string): RelationMatch => ({ relation: { name }, deviation: 0 });
+
 /** Relations of a state to a pure key, by fidelity with what a mistake would have made of the key. */
 export function relationsBetweenStates(
   reading: ReadingOf<'state'>,
   key: ComputedKey,
   minimumFidelity: number,
-): readonly Relation[] {
+): readonly RelationMatch[] {
   const state = asState(key.value);
   if (!('amplitudes' in state) || state.modes !== reading.modes) {
-    return state.modes === reading.modes ? [] : [{ name: 'a state of another number of modes' }];
+    return state.modes === reading.modes ? [] : [named('a state of another number of modes')];
   }
   const found = mistakes
     .filter(({ of }) => fidelityWithKey(reading, of(state)) >= minimumFidelity)
-    .map(({ name }): Relation => ({ name }));
+    .map(({ name }) => named(name));
   if (found.length > 0) return found;
   const populated = new Set(
     state.amplitudes.filter((entry) => modulus(entry) > 1e-6).map(({ photons }) => photons.join()),
   );
-  const named = reading.kets.filter(({ amplitude }) => modulus(amplitude) > 1e-6).map(({ photons }) => photons.join());
-  const sameKets = named.length === populated.size && named.every((photons) => populated.has(photons));
-  return sameKets && named.length > 1 ? [{ name: 'the kets of the key with other amplitudes' }] : [];
+  const written = reading.kets
+    .filter(({ amplitude }) => modulus(amplitude) > 1e-6)
+    .map(({ photons }) => photons.join());
+  const sameKets = written.length === populated.size && written.every((photons) => populated.has(photons));
+  return sameKets && written.length > 1 ? [named('the kets of the key with other amplitudes')] : [];
 }

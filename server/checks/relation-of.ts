@@ -7,7 +7,7 @@ import { asComplex, KeyProblem, type ComputedKey } from './key-value';
 import type { Match } from './match';
 import { relationsBetweenSets } from './relation-of-sets';
 import { relationsBetweenStates } from './relation-of-states';
-import { noRelation, relationsBetween, relationWidth, type Relation } from './relation';
+import { noRelation, relationsBetween, relationWidth, type Relation, type RelationMatch } from './relation';
 import { allowance } from './tolerance';
 
 /** The key of another part, which an answer may have been put down for. */
@@ -23,10 +23,12 @@ export interface RelatedKeys {
   readonly others?: readonly OtherKey[];
 }
 
+const named = (name: string): RelationMatch => ({ relation: { name }, deviation: 0 });
+
 const otherPartWidth = 2e-3;
 
 /** The parts whose key the answer is. */
-function keysOfOtherParts(reading: Reading, others: readonly OtherKey[]): readonly Relation[] {
+function keysOfOtherParts(reading: Reading, others: readonly OtherKey[]): readonly RelationMatch[] {
   if (reading.kind !== 'number' && reading.kind !== 'complex') return [];
   return others.flatMap(({ label, key }) => {
     const expected = quietly(() => asComplex(key.value));
@@ -37,7 +39,9 @@ function keysOfOtherParts(reading: Reading, others: readonly OtherKey[]): readon
     const target = reading.kind === 'number' && reading.unit ? si : expected;
     const size = modulus(target);
     const distance = modulus({ re: value.re - target.re, im: value.im - target.im });
-    return size > 0 && distance <= otherPartWidth * size ? [{ name: `the key of part (${label})` }] : [];
+    return size > 0 && distance <= otherPartWidth * size
+      ? [{ relation: { name: `the key of part (${label})` }, deviation: distance / size }]
+      : [];
   });
 }
 
@@ -77,7 +81,7 @@ export function relationsOf(
   part: ComputedSpecification,
   keys: RelatedKeys,
   match: Match,
-): readonly Relation[] {
+): readonly RelationMatch[] {
   const others = keysOfOtherParts(reading, keys.others ?? []);
   if (part.form === 'state') {
     return reading.kind === 'state' ? relationsBetweenStates(reading, keys.key, part.minimumFidelity) : [];
@@ -86,12 +90,12 @@ export function relationsOf(
     if (reading.kind !== 'formula') return [];
     const points = formulaAtPoints(reading, keys.key, part);
     const answer = points.flatMap((point) => (point.answer ? [point.answer] : []));
-    if (answer.length < points.length) return [{ name: 'undefined where the key is not' }];
+    if (answer.length < points.length) return [named('undefined where the key is not')];
     return relationsBetweenSets({ answer, key: points.map(({ key }) => key), width: 1e-6 });
   }
   if (match.answer === undefined || match.key === undefined) {
     return part.form === 'number' && reading.kind === 'number' && reading.unit
-      ? [...others, unitRelation(reading, part.unit ?? keys.key.unit)]
+      ? [...others, { relation: unitRelation(reading, part.unit ?? keys.key.unit), deviation: 0 }]
       : others;
   }
   if (isOne(match.answer) && isOne(match.key)) {
@@ -105,10 +109,10 @@ export function relationsOf(
   ];
   const found = relationsBetweenSets({ answer, key, width: setWidth(key, part) });
   if (found.length > 0 || answer.length === key.length) return found;
-  return [{ name: answer.length < key.length ? 'fewer entries than the key' : 'more entries than the key' }];
+  return [named(answer.length < key.length ? 'fewer entries than the key' : 'more entries than the key')];
 }
 
 /** The best relation of a wrong answer to its key. */
 export function relationOf(reading: Reading, part: ComputedSpecification, keys: RelatedKeys, match: Match): Relation {
-  return relationsOf(reading, part, keys, match)[0] ?? noRelation;
+  return relationsOf(reading, part, keys, match)[0]?.relation ?? noRelation;
 }

@@ -92,6 +92,12 @@ export function relationWidth(key: Complex, allowed: number): number {
 
 const close = (a: Complex, b: Complex, width: number): boolean => modulus(subtract(a, b)) <= width * modulus(b);
 
+/** A relation that holds, with the relative distance from holding exactly. */
+export interface RelationMatch {
+  readonly relation: Relation;
+  readonly deviation: number;
+}
+
 /**
  * The candidates that take the key to the answer, best first: nearest, with the likelier mistake before the less
  * likely where both are near. A relation that leaves the key as it is does not count.
@@ -101,13 +107,13 @@ export function relationsBetween(
   key: Complex,
   width: number,
   candidates: readonly Candidate[] = numberCandidates,
-): readonly Relation[] {
-  const found: { readonly relation: Relation; readonly score: number }[] = [];
+): readonly RelationMatch[] {
+  const found: (RelationMatch & { readonly score: number })[] = [];
   for (const [index, { relation, of }] of candidates.entries()) {
     const expected = of(key);
     if (!isFiniteComplex(expected) || modulus(expected) === 0 || close(expected, key, width)) continue;
     const deviation = modulus(subtract(answer, expected)) / modulus(expected);
-    if (deviation <= width) found.push({ relation, score: deviation / width + index / candidates.length });
+    if (deviation <= width) found.push({ relation, deviation, score: deviation / width + index / candidates.length });
   }
-  return found.sort((a, b) => a.score - b.score).map(({ relation }) => relation);
+  return found.sort((a, b) => a.score - b.score).map(({ relation, deviation }) => ({ relation, deviation }));
 }
