@@ -1,0 +1,74 @@
+import { ChangeDetectionStrategy, Component, computed, effect, inject, input } from '@angular/core';
+import { rxResource } from '@angular/core/rxjs-interop';
+import { MatButtonModule } from '@angular/material/button';
+import { MatIconModule } from '@angular/material/icon';
+import { dayOf, momentOf } from '@shared/times';
+import { ResultsApi } from '../../core/api/results-api';
+import { RequestFailure, sentenceOf } from '../../core/api/request-failure';
+import { PageTitle } from '../../core/page-title';
+import { Session } from '../../core/session';
+import { ErrorState } from '../../ui/error-state/error-state';
+import { FormulaText } from '../../ui/formula-text/formula-text';
+import { LoadingBars } from '../../ui/loading-bars/loading-bars';
+import { FeedbackPart } from './feedback-part';
+import { givensAsFormula, givensByName } from './printed-givens';
+
+/** A student's marks and feedback on one set, each beside their own work. */
+@Component({
+  selector: 'app-feedback',
+  imports: [ErrorState, FeedbackPart, FormulaText, LoadingBars, MatButtonModule, MatIconModule],
+  templateUrl: './feedback.html',
+  styleUrl: './feedback.scss',
+  changeDetection: ChangeDetectionStrategy.OnPush,
+})
+export default class FeedbackPage {
+  private readonly api = inject(ResultsApi);
+  private readonly session = inject(Session);
+  private readonly pageTitle = inject(PageTitle);
+
+  readonly setId = input.required<string>();
+
+  protected readonly feedback = rxResource({
+    params: () => this.setId(),
+    stream: ({ params }) => this.api.feedback(params),
+  });
+  protected readonly problem = computed(() => {
+    const error = this.feedback.error();
+    if (!error) return null;
+    const notYet = error instanceof RequestFailure && error.details.status === 404;
+    return notYet ? 'There is no feedback here: the marks of this set are not released to you.' : sentenceOf(error);
+  });
+  private readonly timeZone = computed(() => this.session.course()?.timeZone ?? 'UTC');
+  protected readonly problems = computed(() =>
+    this.feedback.hasValue()
+      ? this.feedback.value().problems.map((each) => ({
+          ...each,
+          byName: givensByName(each.givens),
+          line: givensAsFormula(each.givens),
+          pages: each.parts.flatMap((part) => part.pages),
+        }))
+      : [],
+  );
+  protected readonly releasedOn = computed(() =>
+    this.feedback.hasValue() ? dayOf(this.feedback.value().releasedAt, this.timeZone()) : '',
+  );
+  protected readonly handedIn = computed(() => {
+    const at = this.feedback.hasValue() ? this.feedback.value().handedInAt : null;
+    return at === null ? '' : momentOf(at, this.timeZone());
+  });
+  /** The first figures of the receipt's digest, in groups. */
+  protected readonly receipt = computed(() => {
+    const digest = this.feedback.hasValue() ? this.feedback.value().receipt : null;
+    return digest?.slice(0, 12).replace(/(.{4})(?=.)/g, '$1 ') ?? '';
+  });
+
+  constructor() {
+    effect(() => {
+      if (this.feedback.hasValue()) this.pageTitle.set(`Feedback on set ${String(this.feedback.value().number)}`);
+    });
+  }
+
+  protected print(): void {
+    window.print();
+  }
+}
