@@ -32,4 +32,7 @@ export function openDatabase(file: string, migrationsFolder: string) {
 export type Database = ReturnType<typeof openDatabase>['db'];
 
 /** A database or a transaction on it: what every query takes first. */
-export type Queryable = Pick<Database, 'select' | 'insert' | 'update' | 'delete' | 'query' | 'get' | 'all' | 'run'>;
+export type Queryable = Pick<
+  Database,
+  'select' | 'selectDistinct' | 'insert' | 'update' | 'delete' | 'query' | 'get' | 'all' | 'run'
+>;

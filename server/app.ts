@@ -17,6 +17,8 @@ import { serveClient } from './http/static-client';
 import { translateErrors } from './http/translate-errors';
 import { addMarkingRoutes } from './marking/marking-routes';
 import { addResultsRoutes } from './results/results-routes';
+import { addScriptsRoutes } from './scripts/scripts-routes';
+import { addSetsRoutes } from './sets/sets-routes';
 
 /** The application and what tests and the live connection need of it. */
 export interface Application {
@@ -88,6 +90,8 @@ export function createApp(context: Context, clientFolder?: string): Application 
   addDeskRoutes(serve, context);
   addProblemRoutes(serve, context);
   addRecordRoutes(serve, context);
+  addSetsRoutes(serve, context);
+  addScriptsRoutes(serve, context);
   addMarkingRoutes(serve, context);
   addResultsRoutes(serve, context);
   app.use('/api', router);

@@ -14,6 +14,7 @@ import { createFileStore } from './files/file-store';
 import { createKeyPool } from './keys';
 import { createLive } from './live/live';
 import { sweepHolds } from './marking/marking-routes';
+import { runClockStages } from './sets/run-clock-stages';
 import { sendDueLetters, smtpTransport } from './mail/post-office';
 
 /** How often the clock's own work is looked at, in milliseconds. */
@@ -81,6 +82,7 @@ async function main(): Promise<void> {
 async function onBeat(context: Context, transport: ReturnType<typeof smtpTransport> | null): Promise<void> {
   dropOldGuesses(context.db, context.clock.now());
   sweepHolds(context);
+  await runClockStages(context);
   await sendDueLetters(context, transport, (kind, userId) =>
     linkWith(context.config.origin, makeToken(context.db, kind as TokenKind, userId, context.clock.now()).secret),
   );

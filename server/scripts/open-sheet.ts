@@ -1,0 +1,31 @@
+import type { Context } from '../context';
+import { conflict } from '../http/errors';
+import { drawSetVariants, storeVariants } from '../sets/draw-set-variants';
+import { demandSet } from '../sets/set-queries';
+import { beginScript, scriptOf, type ScriptRow } from './begin-script';
+import { isOpenNow } from './own-answer';
+
+/**
+ * The script behind a student's sheet, begun when they first open it. Who was added to the course after the set had opened
+ * gets their variant now.
+ *
+ * @throws RequestError 404; 409 where the set closed before they ever opened their sheet and before they were in the course
+ */
+export async function openSheet(context: Context, setId: string, membershipId: string): Promise<ScriptRow> {
+  const { db, clock } = context;
+  const there = scriptOf(db, setId, membershipId);
+  if (there) return there;
+  const { set } = demandSet(db, setId);
+  const refuse = () =>
+    conflict('This set had closed before you opened a sheet of it. Your lead can tell you what to do.');
+  if (!isOpenNow(set, clock.now())) throw refuse();
+  const drawn = await drawSetVariants(context, set, [membershipId]);
+  return db.transaction(
+    (tx) => {
+      if (!isOpenNow(demandSet(tx, setId).set, clock.now())) throw refuse();
+      storeVariants(tx, drawn);
+      return beginScript(tx, set, membershipId, clock.now());
+    },
+    { behavior: 'immediate' },
+  );
+}

@@ -1,0 +1,209 @@
+import type { Queryable } from '@drizzle/client';
+import { sets } from '@drizzle/schema';
+import { desc, eq } from 'drizzle-orm';
+import { answerField, type AnswerSpecification } from '@shared/answer-forms';
+import type { SetStage } from '@shared/primitives';
+import { partLabel, partMarks, problemMarks, type Part, type ProblemContent } from '@shared/problems';
+import type {
+  Sheet,
+  SheetField,
+  SheetPart,
+  SheetProblem,
+  SheetState,
+  SheetSummary,
+  SubmissionSummary,
+} from '@shared/scripts';
+import { namedGivens, splitStatement } from '@shared/statement';
+import { fullMomentOf } from '@shared/times';
+import type { GivenValues } from '@shared/variants';
+import { conflict, notFound } from '../http/errors';
+import { conventionOf } from '../courses/convention';
+import { isReleased } from '../results/find-set';
+import { variantsOfStudent } from '../sets/draw-set-variants';
+import { demandSet, problemsOfSet, type ProblemOfSet, type SetRow } from '../sets/set-queries';
+import { scriptOf, type ScriptRow } from './begin-script';
+import { digestOf, lastSubmission, type SubmissionRow } from './hand-in';
+import { isOpenNow } from './own-answer';
+import { contentOf, savedParts, type SavedPart } from './saved-answers';
+import { presentPage } from './worked-pages';
+
+/** Whether students see nothing but the announcement of a set, or not even that. */
+function isHidden(stage: SetStage): boolean {
+  return stage === 'draft' || stage === 'review';
+}
+
+/** Where a sheet stands for its student. Marking and moderation are not theirs to know. */
+export function sheetStateOf(set: Pick<SetRow, 'stage' | 'closesAt'>, now: number): SheetState {
+  if (isOpenNow(set, now)) return 'open';
+  return isReleased(set.stage) ? 'released' : 'closed';
+}
+
+/** @throws RequestError 404 where students know nothing of the set yet, 409 before it opens */
+export function demandOpened(tx: Queryable, setId: string) {
+  const found = demandSet(tx, setId);
+  const { set, course } = found;
+  if (isHidden(set.stage)) throw notFound('sheet');
+  if (set.stage === 'ready')
+    throw conflict(
+      set.opensAt === null
+        ? 'This set is not open yet.'
+        : `This set opens ${fullMomentOf(set.opensAt, course.timeZone)}.`,
+    );
+  return found;
+}
+
+/**
+ * A student's sheet: what is asked, with their own numbers, and what they saved. It is made of named pieces only, so that
+ * no key, tolerance, slip or mark scheme can come along.
+ */
+export function presentSheet(tx: Queryable, setId: string, script: ScriptRow, now: number): Sheet {
+  const { set, course } = demandOpened(tx, setId);
+  const convention = conventionOf(course);
+  const saved = savedParts(tx, script);
+  const variants = variantsOfStudent(tx, setId, script.membershipId);
+  const own = problemsOfSet(tx, setId);
+  const problems = own.map((each): SheetProblem => {
+    const { content } = each.revision;
+    const theirs = content.convention;
+    const isOwn =
+      theirs.vacuumVariance !== convention.vacuumVariance ||
+      theirs.squeezingSign !== convention.squeezingSign ||
+      theirs.splitterPhase !== convention.splitterPhase;
+    return {
+      setProblemId: each.setProblem.id,
+      position: each.setProblem.position,
+      title: content.title,
+      marks: problemMarks(content),
+      stem: splitStatement(content.statement).stem,
+      safety: content.safety,
+      givens: printedGivens(content, variants.get(each.setProblem.id)?.givens ?? {}),
+      convention: isOwn ? theirs : null,
+      parts: presentParts(each, saved),
+    };
+  });
+  const last = lastSubmission(tx, script.id);
+  return {
+    setId,
+    courseId: course.id,
+    courseTitle: course.title,
+    number: set.number,
+    title: set.title,
+    coverText: set.coverText,
+    state: sheetStateOf(set, now),
+    closesAt: set.closesAt,
+    timeZone: course.timeZone,
+    convention,
+    marks: problems.reduce((sum, each) => sum + each.marks, 0),
+    problems,
+    submission: last ? presentSubmission(last) : null,
+    changedSince: hasChanged(last, saved),
+    now,
+  };
+}
+
+/** Values of the names that the statement prints; what only keys use stays on the server. */
+function printedGivens(content: ProblemContent, values: GivenValues): SheetProblem['givens'] {
+  return Object.fromEntries(
+    namedGivens(content.statement).flatMap((name) => {
+      const value = values[name];
+      if (!value) return [];
+      return [[name, { printed: value.printed, ...(value.unit === undefined ? {} : { unit: value.unit }) }]];
+    }),
+  );
+}
+
+function presentParts({ setProblem, revision }: ProblemOfSet, saved: readonly SavedPart[]): SheetPart[] {
+  const { content } = revision;
+  const texts = new Map(splitStatement(content.statement).parts.map((part) => [part.label, part.text]));
+  return content.parts.flatMap((part, index): SheetPart[] => {
+    const its = saved.find((each) => each.setProblemId === setProblem.id && each.partId === part.id);
+    if (!its) return [];
+    const label = partLabel(index);
+    return [
+      {
+        answerId: its.answer.id,
+        label,
+        text: texts.get(label) ?? '',
+        marks: partMarks(part),
+        field: fieldOf(part.answer, content),
+        options: optionsOf(part),
+        workedPage: part.workedPage,
+        answer: its.latest?.text ?? '',
+        version: its.latest?.number ?? 0,
+        savedAt: its.latest?.savedAt ?? null,
+        pages: its.pages.map(presentPage),
+      },
+    ];
+  });
+}
+
+function fieldOf(answer: AnswerSpecification, content: ProblemContent): SheetField {
+  const variables = new Map(content.givens.map(({ name, symbol, spellings }) => [name, { symbol, spellings }]));
+  const field = answerField(answer, variables);
+  switch (field.form) {
+    case 'number':
+      return field;
+    case 'formula':
+      return {
+        form: 'formula',
+        variables: field.variables.map(({ name, symbol, spellings }) => ({
+          name,
+          ...(symbol === undefined ? {} : { symbol }),
+          ...(spellings === undefined ? {} : { spellings: [...spellings] }),
+        })),
+      };
+    case 'choice':
+      return { form: 'choice', labels: [...field.labels], several: field.several };
+    default:
+      return { form: field.form };
+  }
+}
+
+function optionsOf(part: Part): SheetPart['options'] {
+  if (part.answer.form !== 'choice') return [];
+  return part.answer.options.map((option) =>
+    typeof option === 'string' ? { label: option, text: '' } : { label: option.label, text: option.text },
+  );
+}
+
+/** A submission in short. */
+export function presentSubmission({ number, at, by, digest }: SubmissionRow): SubmissionSummary {
+  return { number, at, by, digest };
+}
+
+/** Whether what is saved differs from what was handed in last; false where nothing was handed in. */
+export function hasChanged(last: SubmissionRow | undefined, saved: readonly SavedPart[]): boolean {
+  return last !== undefined && digestOf(contentOf(saved)) !== last.digest;
+}
+
+/** A student's sheets in a course, the newest first; sets that are being made are not among them. */
+export function listSheets(tx: Queryable, courseId: string, membershipId: string, now: number): SheetSummary[] {
+  return tx
+    .select()
+    .from(sets)
+    .where(eq(sets.courseId, courseId))
+    .orderBy(desc(sets.number))
+    .all()
+    .filter((set) => !isHidden(set.stage))
+    .map((set): SheetSummary => {
+      const { id, number, title, opensAt, closesAt } = set;
+      const script = scriptOf(tx, id, membershipId);
+      const saved = script ? savedParts(tx, script) : [];
+      const last = script && lastSubmission(tx, script.id);
+      return {
+        setId: id,
+        number,
+        title,
+        state: set.stage === 'ready' ? 'coming' : sheetStateOf(set, now),
+        opensAt,
+        closesAt,
+        parts:
+          set.stage === 'ready'
+            ? 0
+            : problemsOfSet(tx, id).reduce((sum, each) => sum + each.revision.content.parts.length, 0),
+        answered: saved.filter((part) => (part.latest?.text ?? '').trim() !== '' || part.pages.length > 0).length,
+        submission: last ? presentSubmission(last) : null,
+        changedSince: hasChanged(last, saved),
+      };
+    });
+}
