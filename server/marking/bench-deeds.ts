@@ -7,6 +7,7 @@ import type { Criterion } from '@shared/problems';
 import { conflict, invalidField, notAllowed, stale } from '../http/errors';
 import { newId } from '../http/new-id';
 import { enter } from '../record/enter';
+import { enterStage } from '../sets/enter-stage';
 import { presentCurrent, presentMark } from './present-answers';
 import { findAnswer, marksAreGiven, type FoundPile } from './find-pile';
 import { activeHold, heldNow, takeHolds, type Bench, type HoldsChange } from './holds';
@@ -15,6 +16,7 @@ import { nextSequence } from './sequence';
 /** Who does something at a bench, and to what. */
 export interface Doer extends Bench {
   readonly userId: string;
+  readonly name: string;
   readonly found: FoundPile;
 }
 
@@ -73,6 +75,8 @@ export function markAnswer(
     reason: sent.reason ?? null,
   });
   settle(tx, write, { state: 'marked', standingMarkId: row.id });
+  // The first mark is what makes a closed set one that is marked.
+  if (doer.found.set.stage === 'closed') enterStage(tx, doer.found.set, 'marking', doer, write.now);
   if (before) {
     enter(tx, {
       ...entryFor(doer, write, 'mark changed'),

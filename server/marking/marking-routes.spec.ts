@@ -1,6 +1,6 @@
 import { eq } from 'drizzle-orm';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
-import { answers, holds, marks, record } from '@drizzle/schema';
+import { answers, holds, marks, record, sets } from '@drizzle/schema';
 import type { Held, Pile } from '@shared/marking';
 import { newId } from '../http/new-id';
 import type { Emitted } from '../live/live';
@@ -229,6 +229,18 @@ describe('marks', () => {
     ]);
     const numbers = told.slice(1, 3).map((each) => (each.body as { sequence: number }).sequence);
     expect(numbers).toEqual([held.sequence + 1, held.sequence + 2]);
+  });
+
+  it('begin the marking of a set that is closed', async () => {
+    const { brandt } = await team();
+    const built = buildPile(harness, { courseId, values: [4], stage: 'closed' });
+    const held = (await take(brandt, built.pileId)).body as Held;
+    await sendMark(brandt, built, held.inHand ?? '', 1).expect(201);
+    expect(harness.db.select().from(sets).where(eq(sets.id, built.setId)).get()).toMatchObject({
+      stage: 'marking',
+      version: 2,
+    });
+    expect(told.at(-1)).toMatchObject({ event: 'stageChanged', body: { setId: built.setId, stage: 'marking' } });
   });
 
   it('are the same mark when the same key comes twice', async () => {

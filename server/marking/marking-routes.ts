@@ -9,6 +9,7 @@ import { findAnswer, findPile, marksAreGiven, teamOf } from './find-pile';
 import { dropExpiredHolds, letGo, renewHolds, shortenHolds, takeHolds } from './holds';
 import { listPiles, presentHeading } from './list-piles';
 import { presentAnswers } from './present-answers';
+import { tellStage } from '../sets/enter-stage';
 import { presentOn, tellDeed, tellHolds, tellPresence } from './tell-piles';
 import { conflict } from '../http/errors';
 
@@ -19,8 +20,13 @@ export function addMarkingRoutes(serve: Serve, context: Context): void {
 
   /** Acts at a bench in one transaction, then tells all who watch the pile. */
   function atBench(user: SignedIn, answerId: string, benchId: string, act: (tx: Queryable, doer: Doer) => Deed) {
-    const deed = write((tx) => act(tx, doerAt(tx, user, findAnswer(tx, answerId).answer.pileId, benchId)));
+    const { deed, set } = write((tx) => {
+      const doer = doerAt(tx, user, findAnswer(tx, answerId).answer.pileId, benchId);
+      return { deed: act(tx, doer), set: doer.found.set };
+    });
     tellDeed(context, deed.pileId, deed);
+    const { stage } = findPile(db, deed.pileId).set;
+    if (stage !== set.stage) tellStage(context, set, stage);
     return deed.outcome;
   }
 
@@ -137,5 +143,5 @@ function doerAt(tx: Queryable, user: SignedIn, pileId: string, benchId: string):
   const found = findPile(tx, pileId);
   const { id } = membershipFor(user, 'mark', found.set.courseId);
   const seesAllMarks = can(user, 'see all marks', found.set.courseId);
-  return { pileId, benchId, membershipId: id, userId: user.id, seesAllMarks, found };
+  return { pileId, benchId, membershipId: id, userId: user.id, name: user.name, seesAllMarks, found };
 }
