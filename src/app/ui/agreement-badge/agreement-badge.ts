@@ -23,7 +23,7 @@ export class AgreementBadge {
   readonly stoppable = input(false, { transform: booleanAttribute });
 
   /** The computation is to be stopped. */
-  readonly stopped = output<void>();
+  readonly stopped = output();
 
   protected readonly id = `agreement-${++badges}`;
   protected readonly open = signal(false);

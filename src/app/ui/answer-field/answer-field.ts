@@ -12,10 +12,10 @@ import {
   signal,
   untracked,
 } from '@angular/core';
-import type { Reading, AnswerField as ReadingField } from '@shared/reading';
+import type { AnswerField as ReadingField, readAnswer, Reading } from '@shared/reading';
 import { ReadBack } from '../read-back/read-back';
 
-type Reader = (typeof import('@shared/reading'))['readAnswer'];
+type Reader = typeof readAnswer;
 
 /** What is printed beside a field whose answer is typed. */
 export type TypedField = Exclude<ReadingField, { readonly form: 'choice' }>;
@@ -77,7 +77,7 @@ export class AnswerField {
     const done = this.pendingTasks.add();
     import('@shared/reading')
       .then(
-        ({ readAnswer }) => this.reader.set(readAnswer),
+        (reading) => this.reader.set(reading.readAnswer),
         () => this.readerFailed.set(true),
       )
       .finally(done);

@@ -60,5 +60,5 @@ export class ErrorState {
   /** What the button says; without it there is none. */
   readonly retryLabel = input('Try again');
   /** To be tried again. */
-  readonly retried = output<void>();
+  readonly retried = output();
 }

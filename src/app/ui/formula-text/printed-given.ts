@@ -8,7 +8,7 @@ export interface PrintedGiven {
 /** The givens of a variant by name. */
 export type PrintedGivens = Readonly<Record<string, PrintedGiven>>;
 
-const raised = new Map([...'⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻'].map((sign, index) => [sign, '0123456789+-'.charAt(index)]));
+const raised = new Map(Array.from('⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻', (sign, index) => [sign, '0123456789+-'.charAt(index)]));
 
 /** A number in KaTeX, with its power of ten written out: `7.65e6` becomes `7.65 \times 10^{6}`. */
 function formulaOfNumber(printed: string): string {
@@ -22,21 +22,22 @@ function textOfNumber(printed: string): string {
   const digits = (power ? (power[1] ?? '') : printed).replaceAll('-', '−');
   if (!power) return digits;
   const signs = [...raised.keys()];
-  const exponent = [...(power[2] ?? '')].map((c) => signs['0123456789+-'.indexOf(c)] ?? c).join('');
+  const exponent = Array.from(power[2] ?? '', (c) => signs['0123456789+-'.indexOf(c)] ?? c).join('');
   return `${digits} × 10${exponent}`;
 }
 
 /** A unit in KaTeX, upright, with raised exponents: `W/m^2` becomes `\text{W}/\text{m}^{2}`. */
 export function formulaOfUnit(unit: string): string {
-  const plain = [...unit].map((c) => raised.get(c) ?? c).join('');
+  const plain = Array.from(unit, (c) => raised.get(c) ?? c).join('');
   return plain.replace(
     /\^?([+-]?\d+)|([*·]|\s+)|(\/)|([^\s\d*·/^+-]+)|./gu,
-    (whole, exponent, times, slash, symbol) => {
-      if (exponent !== undefined) return /^\d/.test(whole) && whole === '1' ? '1' : `^{${exponent}}`;
+    (whole, ...groups: (string | undefined)[]) => {
+      const [exponent, times, slash, symbol] = groups;
+      // A unit may begin with 1, as in 1/s; any other figure is an exponent.
+      if (exponent !== undefined) return whole === '1' ? '1' : `^{${exponent}}`;
       if (times !== undefined) return '\\,';
       if (slash !== undefined) return '/';
-      if (symbol !== undefined) return `\\text{${escapeForText(symbol)}}`;
-      return '';
+      return symbol === undefined ? '' : `\\text{${escapeForText(symbol)}}`;
     },
   );
 }

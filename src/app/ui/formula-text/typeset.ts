@@ -65,17 +65,15 @@ function setBlock(block: Block, key: string, setting: Setting): SetBlock {
   }
   for (const place of fragment.querySelectorAll('[data-formula]')) {
     const source = place.getAttribute('data-formula') ?? '';
-    let anyNamed = false;
-    let allKnown = true;
+    const known: boolean[] = [];
     const filled = source.replace(/\\val\{([A-Za-z][A-Za-z0-9_]*)\}/g, (_, name: string) => {
       const given = ownEntry(setting.givens, name);
-      anyNamed = true;
-      allKnown &&= given !== undefined;
+      known.push(given !== undefined);
       return `{${givenInFormula(name, given)}}`;
     });
     const { element, problem } = setFormula(filled, place.hasAttribute('data-display'));
     if (problem !== undefined) problems.push({ formula: source, message: problem });
-    if (anyNamed) markGiven(element, allKnown, setting.showGivens);
+    if (known.length > 0) markGiven(element, !known.includes(false), setting.showGivens);
     place.replaceWith(element);
   }
   return { key, nodes: [...fragment.childNodes], problems };

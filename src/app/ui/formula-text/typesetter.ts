@@ -1,6 +1,7 @@
-import { DOCUMENT, Injectable, PendingTasks, Signal, inject, signal } from '@angular/core';
+import { DOCUMENT, Injectable, PendingTasks, type Signal, inject, signal } from '@angular/core';
+import type * as typeset from './typeset';
 
-type Typesetting = typeof import('./typeset');
+type Typesetting = typeof typeset;
 
 /** Fetches what typesetting needs once the first text asks for it: the program and KaTeX's style sheet. */
 @Injectable({ providedIn: 'root' })

@@ -1,4 +1,4 @@
-import { BaseHarnessFilters, ComponentHarness, HarnessPredicate } from '@angular/cdk/testing';
+import { type BaseHarnessFilters, ComponentHarness, HarnessPredicate } from '@angular/cdk/testing';
 import { ReadBackHarness } from '../../read-back/testing/read-back-harness';
 
 interface AnswerFieldFilters extends BaseHarnessFilters {

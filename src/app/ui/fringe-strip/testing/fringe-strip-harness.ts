@@ -1,4 +1,4 @@
-import { ComponentHarness, TestKey } from '@angular/cdk/testing';
+import { ComponentHarness, type TestKey } from '@angular/cdk/testing';
 
 /** Walks and reads a fringe strip as its users do. */
 export class FringeStripHarness extends ComponentHarness {
