@@ -5,13 +5,16 @@ import type { State } from './state';
 import { readState } from './states';
 import { OpticsError } from './optics-error';
 
+/** Requests that have a state and nothing more. */
+type OfState<K extends string> = K extends string ? { readonly kind: K; readonly state: State } : never;
+
 /** A figure asked of a state, with its checked arguments; angles, x and p are in the convention's own scale. */
 export type FigureRequest =
+  | OfState<'meanPhotons' | 'photonVariance' | 'mandelQ' | 'fanoFactor' | 'parity' | 'g2' | 'amplitude'>
+  | OfState<'wignerNegativity' | 'entropy' | 'purity' | 'covariance'>
+  | OfState<'coincidence' | 'g2Cross' | 'visibility' | 'fieldCorrelation' | 'logNegativity'>
   | { readonly kind: 'photonProbability'; readonly state: State; readonly n: number }
   | { readonly kind: 'photonDistribution'; readonly state: State; readonly nmax: number }
-  | { readonly kind: 'meanPhotons' | 'photonVariance' | 'mandelQ' | 'fanoFactor' | 'parity'; readonly state: State }
-  | { readonly kind: 'g2' | 'amplitude' | 'wignerNegativity' | 'entropy'; readonly state: State }
-  | { readonly kind: 'purity' | 'covariance'; readonly state: State }
   | { readonly kind: 'gN'; readonly state: State; readonly order: number }
   | {
       readonly kind: 'countProbability';
@@ -20,18 +23,19 @@ export type FigureRequest =
       readonly eta: number;
       readonly dark: number;
     }
-  | { readonly kind: 'quadratureMean' | 'quadratureVariance'; readonly state: State; readonly theta: number }
+  | { readonly kind: 'quadratureMean'; readonly state: State; readonly theta: number }
+  | { readonly kind: 'quadratureVariance'; readonly state: State; readonly theta: number }
   | { readonly kind: 'quadratureDensity'; readonly state: State; readonly x: number; readonly theta: number }
   | { readonly kind: 'wigner'; readonly state: State; readonly x: number; readonly p: number }
-  | { readonly kind: 'husimi' | 'pFunction'; readonly state: State; readonly alpha: Complex }
+  | { readonly kind: 'husimi'; readonly state: State; readonly alpha: Complex }
+  | { readonly kind: 'pFunction'; readonly state: State; readonly alpha: Complex }
   | { readonly kind: 'characteristic'; readonly state: State; readonly xi: Complex; readonly s: number }
-  | { readonly kind: 'fidelity' | 'overlap'; readonly state: State; readonly other: State }
+  | { readonly kind: 'fidelity'; readonly state: State; readonly other: State }
+  | { readonly kind: 'overlap'; readonly state: State; readonly other: State }
   | { readonly kind: 'matrixElement'; readonly state: State; readonly m: number; readonly n: number }
   | { readonly kind: 'densityMatrix'; readonly state: State; readonly nmax: number }
   | { readonly kind: 'atomInversion'; readonly state: State; readonly coupling: number; readonly t: number }
   | { readonly kind: 'jointProbability'; readonly state: State; readonly n: number; readonly m: number }
-  | { readonly kind: 'coincidence' | 'g2Cross' | 'visibility'; readonly state: State }
-  | { readonly kind: 'fieldCorrelation' | 'logNegativity'; readonly state: State }
   | { readonly kind: 'heraldProbability'; readonly state: State; readonly mode: 1 | 2; readonly n: number }
   | {
       readonly kind: 'clickProbability';
@@ -61,58 +65,13 @@ const LARGEST_LISTED = 9_999;
 /** The highest order of a correlation function: 32 photons at once. */
 const LARGEST_ORDER = 32;
 
-function plain(kind: 'meanPhotons' | 'photonVariance' | 'mandelQ' | 'fanoFactor' | 'parity'): FigureFunction;
-function plain(kind: 'g2' | 'amplitude' | 'wignerNegativity' | 'entropy'): FigureFunction;
-function plain(
-  kind:
-    | 'meanPhotons'
-    | 'photonVariance'
-    | 'mandelQ'
-    | 'fanoFactor'
-    | 'parity'
-    | 'g2'
-    | 'amplitude'
-    | 'wignerNegativity'
-    | 'entropy',
-): FigureFunction {
+/** A figure of `(state)` alone. */
+function ofState<K extends OfState<FigureKind>['kind']>(kind: K, modes: 1 | 2 | 'any'): FigureFunction {
   return (args, convention = defaultConvention) => {
     const reader = new ArgumentReader(kind, args);
     reader.expectCount(1, 1);
-    return { kind, state: readState(reader, 0, 1), convention };
-  };
-}
-
-function ofAnyState(kind: 'purity' | 'covariance'): FigureFunction {
-  return (args, convention = defaultConvention) => {
-    const reader = new ArgumentReader(kind, args);
-    reader.expectCount(1, 1);
-    return { kind, state: readState(reader, 0, 'any'), convention };
-  };
-}
-
-function ofJointState(
-  kind: 'coincidence' | 'g2Cross' | 'visibility' | 'fieldCorrelation' | 'logNegativity',
-): FigureFunction {
-  return (args, convention = defaultConvention) => {
-    const reader = new ArgumentReader(kind, args);
-    reader.expectCount(1, 1);
-    return { kind, state: readState(reader, 0, 2), convention };
-  };
-}
-
-function ofAngle(kind: 'quadratureMean' | 'quadratureVariance'): FigureFunction {
-  return (args, convention = defaultConvention) => {
-    const reader = new ArgumentReader(kind, args);
-    reader.expectCount(2, 2);
-    return { kind, state: readState(reader, 0, 1), theta: reader.real(1, 'angle'), convention };
-  };
-}
-
-function ofAmplitude(kind: 'husimi' | 'pFunction'): FigureFunction {
-  return (args, convention = defaultConvention) => {
-    const reader = new ArgumentReader(kind, args);
-    reader.expectCount(2, 2);
-    return { kind, state: readState(reader, 0, 1), alpha: reader.complex(1, 'amplitude'), convention };
+    // Every kind in K is a request that has a state and nothing more.
+    return { kind, state: readState(reader, 0, modes), convention } as Figure;
   };
 }
 
@@ -131,12 +90,12 @@ export const figureFunctions = {
     const nmax = reader.whole(1, 'largest photon number', 0, LARGEST_LISTED);
     return { kind: 'photonDistribution', state, nmax, convention };
   },
-  meanPhotons: plain('meanPhotons'),
-  photonVariance: plain('photonVariance'),
-  mandelQ: plain('mandelQ'),
-  fanoFactor: plain('fanoFactor'),
-  parity: plain('parity'),
-  g2: plain('g2'),
+  meanPhotons: ofState('meanPhotons', 1),
+  photonVariance: ofState('photonVariance', 1),
+  mandelQ: ofState('mandelQ', 1),
+  fanoFactor: ofState('fanoFactor', 1),
+  parity: ofState('parity', 1),
+  g2: ofState('g2', 1),
   gN: (args, convention = defaultConvention) => {
     const reader = new ArgumentReader('gN', args);
     reader.expectCount(2, 2);
@@ -155,9 +114,17 @@ export const figureFunctions = {
       convention,
     };
   },
-  amplitude: plain('amplitude'),
-  quadratureMean: ofAngle('quadratureMean'),
-  quadratureVariance: ofAngle('quadratureVariance'),
+  amplitude: ofState('amplitude', 1),
+  quadratureMean: (args, convention = defaultConvention) => {
+    const reader = new ArgumentReader('quadratureMean', args);
+    reader.expectCount(2, 2);
+    return { kind: 'quadratureMean', state: readState(reader, 0, 1), theta: reader.real(1, 'angle'), convention };
+  },
+  quadratureVariance: (args, convention = defaultConvention) => {
+    const reader = new ArgumentReader('quadratureVariance', args);
+    reader.expectCount(2, 2);
+    return { kind: 'quadratureVariance', state: readState(reader, 0, 1), theta: reader.real(1, 'angle'), convention };
+  },
   quadratureDensity: (args, convention = defaultConvention) => {
     const reader = new ArgumentReader('quadratureDensity', args);
     reader.expectCount(3, 3);
@@ -170,8 +137,16 @@ export const figureFunctions = {
     const state = readState(reader, 0, 1);
     return { kind: 'wigner', state, x: reader.real(1, 'x'), p: reader.real(2, 'p'), convention };
   },
-  husimi: ofAmplitude('husimi'),
-  pFunction: ofAmplitude('pFunction'),
+  husimi: (args, convention = defaultConvention) => {
+    const reader = new ArgumentReader('husimi', args);
+    reader.expectCount(2, 2);
+    return { kind: 'husimi', state: readState(reader, 0, 1), alpha: reader.complex(1, 'amplitude'), convention };
+  },
+  pFunction: (args, convention = defaultConvention) => {
+    const reader = new ArgumentReader('pFunction', args);
+    reader.expectCount(2, 2);
+    return { kind: 'pFunction', state: readState(reader, 0, 1), alpha: reader.complex(1, 'amplitude'), convention };
+  },
   characteristic: (args, convention = defaultConvention) => {
     const reader = new ArgumentReader('characteristic', args);
     reader.expectCount(2, 3);
@@ -183,9 +158,9 @@ export const figureFunctions = {
       convention,
     };
   },
-  wignerNegativity: plain('wignerNegativity'),
-  purity: ofAnyState('purity'),
-  entropy: plain('entropy'),
+  wignerNegativity: ofState('wignerNegativity', 1),
+  purity: ofState('purity', 'any'),
+  entropy: ofState('entropy', 1),
   fidelity: (args, convention = defaultConvention) => {
     const reader = new ArgumentReader('fidelity', args);
     reader.expectCount(2, 2);
@@ -224,7 +199,7 @@ export const figureFunctions = {
       convention,
     };
   },
-  covariance: ofAnyState('covariance'),
+  covariance: ofState('covariance', 'any'),
   atomInversion: (args, convention = defaultConvention) => {
     const reader = new ArgumentReader('atomInversion', args);
     reader.expectCount(3, 3);
@@ -241,11 +216,11 @@ export const figureFunctions = {
     const n = reader.whole(1, 'photon number of mode 1');
     return { kind: 'jointProbability', state, n, m: reader.whole(2, 'photon number of mode 2'), convention };
   },
-  coincidence: ofJointState('coincidence'),
-  g2Cross: ofJointState('g2Cross'),
-  visibility: ofJointState('visibility'),
-  fieldCorrelation: ofJointState('fieldCorrelation'),
-  logNegativity: ofJointState('logNegativity'),
+  coincidence: ofState('coincidence', 2),
+  g2Cross: ofState('g2Cross', 2),
+  visibility: ofState('visibility', 2),
+  fieldCorrelation: ofState('fieldCorrelation', 2),
+  logNegativity: ofState('logNegativity', 2),
   heraldProbability: (args, convention = defaultConvention) => {
     const reader = new ArgumentReader('heraldProbability', args);
     reader.expectCount(3, 3);

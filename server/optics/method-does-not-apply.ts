@@ -1,0 +1,7 @@
+/** Thrown inside one method where it does not apply; the others go on. The message is the reason that authors see. */
+export class MethodDoesNotApply extends Error {
+  constructor(reason: string) {
+    super(reason);
+    this.name = 'MethodDoesNotApply';
+  }
+}

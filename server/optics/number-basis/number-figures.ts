@@ -1,0 +1,409 @@
+import { abs, abs2, type Complex } from '../complex';
+import { quadratureScale } from '../convention';
+import type { Figure } from '../figures';
+import { MethodDoesNotApply } from '../method-does-not-apply';
+import { figureOfMoments, isMomentFigure, type FigureEstimate, type Moment } from '../moments/moment-figures';
+import { poisson } from '../special/distributions';
+import { fallingFactorial } from '../special/factorials';
+import type { State } from '../state';
+import { negativityOf } from '../wigner-negativity';
+import { jointDiagonal } from './joint-diagonal';
+import { eachAmplitude } from './joint-ket';
+import { clickWeight, ensembleOf, pushedIn } from './joint-states';
+import { entropyOf, fidelityOf, jointFidelity, jointPurity, logNegativityOf, overlapOf, purityOf } from './comparisons';
+import { loseDiagonal } from './number-maps';
+import { numberDiagonal, numberState, defaultResolution, type Resolution } from './number-states';
+import { elementOf, type NumberDiagonal, type NumberState } from './one-mode';
+import { densityAt, displacementTrace, husimiAt, wignerAt } from './wave-functions';
+
+/** A figure in a number basis, with the basis it took. */
+export interface NumberFigure extends FigureEstimate {
+  readonly dimension: number;
+  readonly outsideWeight: number;
+}
+
+const EPS = 2 ** -52;
+/** A value's truncation error may be this part of it; otherwise the basis is made larger. */
+const WANTED = 1e-13;
+const MOST_ATTEMPTS = 4;
+
+/**
+ * A figure in a number basis; the basis grows until what is outside does not show in the value.
+ *
+ * @throws MethodDoesNotApply where the basis would be too large
+ * @throws OpticsError where the figure is not defined
+ */
+export function numberFigure(figure: Figure): NumberFigure {
+  let resolution: Resolution = { ...defaultResolution, least: leastLevels(figure) };
+  let found = evaluate(figure, resolution);
+  for (let attempt = 1; attempt < MOST_ATTEMPTS; attempt++) {
+    const size = sizeOf(found.value);
+    if (found.truncation <= WANTED * size || found.truncation === 0 || found.truncation < 1e-300) break;
+    const shrink = size === 0 ? 1e-16 : Math.max(1e-60, (WANTED * size) / found.truncation);
+    resolution = { ...resolution, logWeight: resolution.logWeight + Math.log(shrink / 4) };
+    try {
+      found = evaluate(figure, resolution);
+    } catch (error) {
+      if (error instanceof MethodDoesNotApply) break;
+      throw error;
+    }
+    if (size === 0) break;
+  }
+  const { value, error, dimension, outsideWeight, truncation } = found;
+  return { value, error: error + truncation, dimension, outsideWeight };
+}
+
+interface Truncated extends NumberFigure {
+  /** The part of the error that a larger basis would take away. */
+  readonly truncation: number;
+}
+
+function sizeOf(value: FigureEstimate['value']): number {
+  if (typeof value === 'number') return Math.abs(value);
+  if ('re' in value) return abs(value);
+  return value.reduce<number>((most, entry) => {
+    if (typeof entry === 'number') return Math.max(most, Math.abs(entry));
+    return Math.max(most, ...entry.map((cell) => (typeof cell === 'number' ? Math.abs(cell) : abs(cell))));
+  }, 0);
+}
+
+/** Levels that a figure asks for by its own arguments. */
+function leastLevels(figure: Figure): number {
+  switch (figure.kind) {
+    case 'photonProbability':
+      return figure.n + 1;
+    case 'photonDistribution':
+    case 'densityMatrix':
+      return figure.nmax + 1;
+    case 'matrixElement':
+      return Math.max(figure.m, figure.n) + 1;
+    case 'countProbability':
+      return figure.m + 1;
+    case 'jointProbability':
+      return figure.n + figure.m + 1;
+    case 'heraldProbability':
+      return figure.n + 1;
+    default:
+      return 1;
+  }
+}
+
+function of(state: NumberState, value: FigureEstimate['value'], error: number, truncation: number): Truncated {
+  return { value, error, truncation, dimension: state.levels, outsideWeight: state.outside };
+}
+
+function evaluate(figure: Figure, resolution: Resolution): Truncated {
+  const { state } = figure;
+  switch (figure.kind) {
+    case 'photonProbability': {
+      const diagonal = numberDiagonal(state, resolution);
+      return probabilityOf(diagonal, figure.n);
+    }
+    case 'photonDistribution': {
+      const diagonal = numberDiagonal(state, resolution);
+      const value = Array.from({ length: figure.nmax + 1 }, (_, n) => diagonal.p[n] ?? 0);
+      return of(diagonal, value, diagonal.noise + 8 * EPS * sizeOf(value), inside(diagonal));
+    }
+    case 'countProbability':
+      return countsOf(numberDiagonal(state, resolution), figure.m, figure.eta, figure.dark);
+    case 'parity': {
+      const diagonal = numberDiagonal(state, resolution);
+      const value = diagonal.p.reduce((sum, p, n) => sum + (n % 2 === 0 ? p : -p), 0);
+      return of(diagonal, value, EPS * 8 + diagonal.noise * diagonal.levels, diagonal.outside);
+    }
+    case 'atomInversion': {
+      const diagonal = numberDiagonal(state, resolution);
+      const angle = 2 * figure.coupling * figure.t;
+      let value = 0;
+      let error = 0;
+      diagonal.p.forEach((p, n) => {
+        const turn = angle * Math.sqrt(n + 1);
+        value += p * Math.cos(turn);
+        error += p * EPS * (4 + Math.abs(turn));
+      });
+      return of(diagonal, value, error + diagonal.noise * diagonal.levels, diagonal.outside);
+    }
+    case 'quadratureDensity': {
+      const scale = quadratureScale(figure.convention);
+      const basis = numberState(state, resolution);
+      const { value, error } = densityAt(basis, figure.x / scale, figure.theta);
+      return of(basis, value / scale, error / scale, 0);
+    }
+    case 'wigner': {
+      const scale = quadratureScale(figure.convention);
+      const basis = numberState(state, resolution);
+      const { value, error } = wignerAt(basis, figure.x / scale, figure.p / scale);
+      return of(basis, value / scale ** 2, error / scale ** 2, 0);
+    }
+    case 'husimi': {
+      const basis = numberState(state, resolution);
+      const { value, error } = husimiAt(basis, figure.alpha);
+      return of(basis, value, error, 0);
+    }
+    case 'characteristic': {
+      const basis = numberState(state, resolution);
+      const { re, im, error } = displacementTrace(basis, figure.xi, false);
+      const order = Math.exp((figure.s * abs2(figure.xi)) / 2);
+      return of(basis, { re: re * order, im: im * order }, error * order, 0);
+    }
+    case 'pFunction':
+      throw new MethodDoesNotApply('the P function is no convergent sum over photon numbers');
+    case 'wignerNegativity': {
+      const basis = numberState(state, resolution);
+      const found = negativityOf(state, (xs, ps) => {
+        const values = new Float64Array(xs.length * ps.length);
+        for (let i = 0; i < ps.length; i++) {
+          for (let j = 0; j < xs.length; j++) values[i * xs.length + j] = wignerAt(basis, xs[j]!, ps[i]!).value;
+        }
+        return values;
+      });
+      return of(basis, found.value, found.error, 0);
+    }
+    case 'matrixElement': {
+      if (figure.m === figure.n) return probabilityOf(numberDiagonal(state, resolution), figure.n);
+      const basis = numberState(state, resolution);
+      const value = elementOf(basis, figure.m, figure.n);
+      return of(basis, value, elementError(basis, figure.m, figure.n), inside(basis));
+    }
+    case 'densityMatrix':
+      return blockOf(numberState(state, resolution), figure.nmax);
+    case 'purity':
+      if (state.modes === 2) return jointPurity(state, resolution);
+      return purityOf(numberState(state, resolution));
+    case 'entropy':
+      return entropyOf(numberState(state, resolution));
+    case 'fidelity':
+      if (state.modes === 2) return jointFidelity(state, figure.other, resolution);
+      return fidelityOf(numberState(state, resolution), numberState(figure.other, resolution));
+    case 'overlap':
+      return overlapOf(state, figure.other, resolution);
+    case 'logNegativity':
+      return logNegativityOf(state, resolution);
+    case 'jointProbability': {
+      const pushed = pushedIn(state);
+      if (pushed.kind === 'product') {
+        const first = probabilityOf(numberDiagonal(pushed.first, resolution), figure.n);
+        const second = probabilityOf(numberDiagonal(pushed.second, resolution), figure.m);
+        return timesOf(first, second);
+      }
+      const joint = jointDiagonal(state, resolution);
+      const value =
+        figure.n < joint.levels && figure.m < joint.levels ? joint.p[figure.n * joint.levels + figure.m]! : 0;
+      return {
+        value,
+        error: EPS * 16 * value + 2 * Math.sqrt(value) * joint.noise + joint.noise ** 2,
+        truncation: figure.n + figure.m < joint.levels && joint.outside === 0 ? 0 : joint.outside,
+        dimension: joint.levels,
+        outsideWeight: joint.outside,
+      };
+    }
+    case 'heraldProbability':
+    case 'clickProbability':
+      return conditionOf(figure, resolution);
+    default:
+      if (isMomentFigure(figure)) return momentFigure(figure, resolution);
+      throw new MethodDoesNotApply('no sum over photon numbers');
+  }
+}
+
+/** Entries inside the basis are exact up to what a lossy or amplified state would still have got from outside. */
+const inside = (state: NumberState): number => state.outside;
+
+function probabilityOf(diagonal: NumberDiagonal, n: number): Truncated {
+  const value = diagonal.p[n] ?? 0;
+  const error = EPS * 16 * value + (diagonal.noise === 0 ? 0 : Math.min(diagonal.noise, noiseOf(diagonal, value)));
+  return of(diagonal, value, error, inside(diagonal));
+}
+
+/** Noise e of an amplitude is 2|ψ|e + e² of a probability. */
+const noiseOf = (diagonal: NumberDiagonal, value: number): number =>
+  2 * Math.sqrt(Math.abs(value)) * diagonal.noise + diagonal.noise;
+
+function elementError(state: NumberState, m: number, n: number): number {
+  const { re, im } = elementOf(state, m, n);
+  const size = Math.hypot(re, im);
+  if (state.kind === 'ket') {
+    const noise = state.noise + EPS * 4;
+    return (
+      16 * EPS * size +
+      noise * (Math.sqrt(sizeAt(state, m)) + Math.sqrt(sizeAt(state, n))) * (state.noise > 0 ? 1 : EPS)
+    );
+  }
+  return 16 * EPS * size + state.noise;
+}
+
+const sizeAt = (state: NumberState, n: number): number => elementOf(state, n, n).re;
+
+function countsOf(diagonal: NumberDiagonal, m: number, eta: number, dark: number): Truncated {
+  const seen = loseDiagonal(diagonal, eta);
+  if (dark === 0) return probabilityOf(seen, m);
+  let value = 0;
+  for (let k = 0; k <= Math.min(m, seen.levels - 1); k++) value += seen.p[k]! * poisson(m - k, dark);
+  return of(seen, value, 16 * EPS * value + seen.noise, seen.outside);
+}
+
+function blockOf(basis: NumberState, nmax: number): Truncated {
+  const side = nmax + 1;
+  let isReal = true;
+  let error = 0;
+  const cells: Complex[][] = Array.from({ length: side }, (_, m) =>
+    Array.from({ length: side }, (__, n) => {
+      const cell = elementOf(basis, m, n);
+      const own = elementError(basis, m, n);
+      if (Math.abs(cell.im) > Math.max(own, EPS * 4)) isReal = false;
+      error = Math.max(error, own);
+      return cell;
+    }),
+  );
+  const value = isReal ? cells.map((row) => row.map((cell) => cell.re)) : cells;
+  return of(basis, value, error, inside(basis));
+}
+
+function timesOf(first: Truncated, second: Truncated): Truncated {
+  const a = Number(first.value);
+  const b = Number(second.value);
+  return {
+    value: a * b,
+    error: first.error * b + second.error * a + EPS * a * b,
+    truncation: first.truncation * b + second.truncation * a,
+    dimension: Math.max(first.dimension, second.dimension),
+    outsideWeight: first.outsideWeight + second.outsideWeight,
+  };
+}
+
+type Condition = Extract<Figure, { readonly kind: 'heraldProbability' | 'clickProbability' }>;
+
+function conditionOf(figure: Condition, resolution: Resolution): Truncated {
+  const weight = (n: number): number =>
+    figure.kind === 'heraldProbability' ? (n === figure.n ? 1 : 0) : clickWeight(n, figure.eta, figure.dark);
+  const marginal = numberDiagonal(
+    { kind: 'output', modes: 1, pure: false, state: figure.state, mode: figure.mode },
+    resolution,
+  );
+  let value = 0;
+  marginal.p.forEach((p, n) => (value += p * weight(n)));
+  return of(marginal, value, 16 * EPS * value + marginal.noise * Math.sqrt(value + marginal.noise), marginal.outside);
+}
+
+type MomentFigure = Parameters<typeof figureOfMoments>[0];
+
+function momentFigure(figure: MomentFigure, resolution: Resolution): Truncated {
+  let truncation = 0;
+  let dimension = 0;
+  let outsideWeight = 0;
+  const note = (levels: number, outside: number, order: number) => {
+    dimension = Math.max(dimension, levels);
+    outsideWeight = Math.max(outsideWeight, outside);
+    // Photon numbers outside are weighted by their powers; the bound falls geometrically beyond the last level.
+    truncation = Math.max(truncation, 4 * outside * (levels + 10) ** order);
+  };
+  const { state } = figure;
+  const moment = (p: number, q: number, r = 0, s = 0): Moment => {
+    if (state.modes === 1) {
+      if (p === q) {
+        const diagonal = numberDiagonal(state, resolution);
+        note(diagonal.levels, diagonal.outside, p);
+        return diagonalMoment(diagonal, p);
+      }
+      const basis = numberState(state, resolution);
+      note(basis.levels, basis.outside, Math.ceil((p + q) / 2));
+      return oneModeMoment(basis, p, q);
+    }
+    if (p === q && r === s) {
+      const joint = jointDiagonal(state, resolution);
+      note(joint.levels, joint.outside, p + r);
+      let value = 0;
+      for (let n = p; n < joint.levels; n++) {
+        for (let m = r; m < joint.levels; m++) {
+          value += joint.p[n * joint.levels + m]! * fallingFactorial(n, p) * fallingFactorial(m, r);
+        }
+      }
+      return { value: { re: value, im: 0 }, error: value * EPS * 16 + joint.noise * joint.levels ** (p + r) };
+    }
+    return jointMoment(state, resolution, p, q, r, s, note);
+  };
+  const { value, error } = figureOfMoments(figure, moment);
+  // Quotients have their truncation in the error of what they divide: it is turned into the value's scale.
+  const mean =
+    figure.kind === 'g2' || figure.kind === 'gN' || figure.kind === 'mandelQ' || figure.kind === 'fanoFactor';
+  const order = figure.kind === 'gN' ? figure.order : 2;
+  const scale = mean ? abs(moment(1, 1).value) ** (figure.kind === 'g2' || figure.kind === 'gN' ? order : 1) : 1;
+  const joint = figure.kind === 'g2Cross' ? abs(moment(1, 1, 0, 0).value) * abs(moment(0, 0, 1, 1).value) : 1;
+  const total = figure.kind === 'visibility' ? abs(moment(1, 1, 0, 0).value) + abs(moment(0, 0, 1, 1).value) : 1;
+  return { value, error, truncation: truncation / (scale * joint * total), dimension, outsideWeight };
+}
+
+function diagonalMoment(diagonal: NumberDiagonal, order: number): Moment {
+  let value = 0;
+  for (let n = order; n < diagonal.levels; n++) value += diagonal.p[n]! * fallingFactorial(n, order);
+  return { value: { re: value, im: 0 }, error: value * EPS * 16 + noiseMoment(diagonal, order) };
+}
+
+/** Noise of amplitudes shows in proportion to them: √(P noise) summed with its weight. */
+function noiseMoment(diagonal: NumberDiagonal, order: number): number {
+  if (diagonal.noise === 0) return 0;
+  let sum = 0;
+  for (let n = order; n < diagonal.levels; n++) {
+    sum += (2 * Math.sqrt(Math.abs(diagonal.p[n]!)) + diagonal.noise) * fallingFactorial(n, order);
+  }
+  return diagonal.noise * sum;
+}
+
+/** ⟨a†ᵖ a^q⟩ = Σ ρ_{k+q, k+p} √((k+q)!/k!) √((k+p)!/k!). */
+function oneModeMoment(basis: NumberState, p: number, q: number): Moment {
+  if (basis.kind === 'diagonal') return { value: { re: 0, im: 0 }, error: 0 };
+  let re = 0;
+  let im = 0;
+  let size = 0;
+  let weights = 0;
+  for (let k = 0; k + Math.max(p, q) < basis.levels; k++) {
+    const element = elementOf(basis, k + q, k + p);
+    const factor = Math.sqrt(fallingFactorial(k + q, q) * fallingFactorial(k + p, p));
+    re += element.re * factor;
+    im += element.im * factor;
+    size += Math.hypot(element.re, element.im) * factor;
+    if (basis.noise > 0) {
+      weights +=
+        factor * (basis.kind === 'ket' ? Math.sqrt(sizeAt(basis, k + q)) + Math.sqrt(sizeAt(basis, k + p)) : 1);
+    }
+  }
+  return { value: { re, im }, error: size * EPS * 16 + basis.noise * weights };
+}
+
+function jointMoment(
+  state: State,
+  resolution: Resolution,
+  p: number,
+  q: number,
+  r: number,
+  s: number,
+  note: (levels: number, outside: number, order: number) => void,
+): Moment {
+  const { kets, levels, noise, outside } = ensembleOf(state, resolution);
+  note(levels, outside, Math.ceil((p + q + r + s) / 2));
+  let re = 0;
+  let im = 0;
+  let size = 0;
+  for (const ket of kets) {
+    // a₁^q a₂ˢ|n, m⟩ must meet a₁ᵖ a₂ʳ|n', m'⟩: n' = n − q + p, m' = m − s + r.
+    eachAmplitude(ket, (n, m, a, b) => {
+      const low1 = n - q;
+      const low2 = m - s;
+      if (low1 < 0 || low2 < 0) return;
+      const n2 = low1 + p;
+      const m2 = low2 + r;
+      const block = ket.blocks[n2 + m2];
+      if (block === undefined) return;
+      const factor = Math.sqrt(
+        fallingFactorial(n, q) * fallingFactorial(m, s) * fallingFactorial(n2, p) * fallingFactorial(m2, r),
+      );
+      const c = block.re[n2]!;
+      const d = block.im[n2]!;
+      re += factor * (c * a + d * b);
+      im += factor * (c * b - d * a);
+      size += factor * Math.hypot(a, b) * Math.hypot(c, d);
+    });
+  }
+  const scale = levels ** ((p + q + r + s) / 2);
+  return { value: { re, im }, error: size * EPS * 16 + 2 * noise * scale };
+}
