@@ -1,4 +1,4 @@
-import { EncryptedPDFError, PDFArray, PDFDict, PDFDocument, PDFName, PDFStream, type PDFObject } from 'pdf-lib';
+import { PDFArray, PDFDict, PDFDocument, PDFName, PDFStream, type PDFObject } from 'pdf-lib';
 import { wrongMediaType } from '../http/errors';
 import type { WorkedPageFile } from './worked-page-file';
 
@@ -54,7 +54,8 @@ async function open(upload: Uint8Array): Promise<PDFDocument> {
     return document;
   } catch (error) {
     throw wrongMediaType(
-      error instanceof EncryptedPDFError
+      // Its class does not survive the library's translation to older JavaScript; its words do.
+      error instanceof Error && error.message.includes('is encrypted')
         ? 'The PDF is protected by a password. Save it without one, and add that.'
         : broken,
     );

@@ -37,9 +37,9 @@ function testClock(): TestClock {
   };
 }
 
-/** The application on a database in memory with the real migrations, a clock that can be set, and people to be. */
-export function createHarness() {
-  const database = openDatabase(':memory:', 'migrations');
+/** The application on a database with the real migrations, in memory unless a file is named, a clock that can be set, and people to be. */
+export function createHarness(file = ':memory:') {
+  const database = openDatabase(file, 'migrations');
   const { db } = database;
   const clock = testClock();
   const keys = createKeyPool({ size: 1 });
