@@ -51,7 +51,11 @@ function sampleNumbers(content: Parameters<typeof drawNumbers>[0], options: Samp
   const shown = options.shown !== undefined && options.shown <= countVariants(content) ? options.shown : undefined;
   const drawn = drawNumbers(content, options.count, `sample ${options.seed}`);
   if (shown === undefined || drawn.includes(shown)) return drawn;
-  return [...drawn.slice(0, options.count - 1), shown].sort((one, other) => one - other);
+  const nearest = drawn.reduce(
+    (best, each) => (Math.abs(each - shown) < Math.abs(best - shown) ? each : best),
+    Infinity,
+  );
+  return drawn.map((each) => (each === nearest ? shown : each));
 }
 
 /** The expressions of a part as far as they are typed; those that are empty come to nothing. */

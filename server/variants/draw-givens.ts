@@ -76,7 +76,8 @@ export function plainGivensOf(content: Givens, number: number): GivenValues {
 }
 
 /**
- * Some numbers of variants, drawn without repetition and in their order; all of them where there are no more.
+ * Some numbers of variants, one drawn from each of as many equal stretches, so that they lie well apart; all of them
+ * where there are no more.
  *
  * @param count how many
  */
@@ -84,7 +85,8 @@ export function drawNumbers(content: Givens, count: number, seed: string): reado
   const all = Math.min(countVariants(content), 1_000_000_000);
   if (all <= count) return Array.from({ length: all }, (_, index) => index + 1);
   const source = seededSource(seed);
-  const numbers = new Set<number>();
-  while (numbers.size < count) numbers.add(source.below(all) + 1);
-  return [...numbers].sort((one, other) => one - other);
+  return Array.from({ length: count }, (_, index) => {
+    const [from, to] = [Math.floor((index * all) / count), Math.floor(((index + 1) * all) / count)];
+    return from + source.below(to - from) + 1;
+  });
 }

@@ -206,13 +206,29 @@ export default class Composer {
   protected readonly toMend = computed(() => {
     const draft = this.open.draft();
     if (!draft || !this.open.showsAll()) return [];
-    return this.open.faults().map((fault) => ({ ...faultPlace(fault, draft), message: fault.message }));
+    const evaluated = this.samples.keyFaults().flatMap((fault, index) => {
+      const path = ['parts', index, 'answer', 'key'];
+      return fault && this.open.faultsAt(...path).length === 0 ? [{ ...fault, path }] : [];
+    });
+    return [...this.open.faults(), ...this.samples.faults(), ...evaluated].map((fault) => ({
+      ...faultPlace(fault, draft),
+      message: fault.message,
+    }));
   });
 
   constructor() {
     effect(() => {
       const problemId = this.problemId();
       untracked(() => void this.open.load(problemId));
+    });
+    // The tab that is shown is in sight on narrow screens too.
+    effect(() => {
+      this.tab();
+      const list = this.tabList()?.nativeElement;
+      setTimeout(() => {
+        const shown = list?.querySelector<HTMLElement>('.on');
+        if (list && shown) list.scrollLeft = shown.offsetLeft - list.offsetLeft - list.clientWidth / 3;
+      });
     });
     effect(() => this.pageTitle.set(this.open.draft()?.title.trim() || 'Problem'));
     // The browser asks before a tab closes while something is not yet kept.
@@ -236,10 +252,7 @@ export default class Composer {
     const isBegun = (draft?.parts[index]?.answer.key.trim() ?? '') !== '' || this.open.showsAll();
     if (!isBegun) return 0;
     const typed = this.open.faults().filter((fault) => fault.path[0] === 'parts' && fault.path[1] === index);
-    const failing = this.samples.variants().some((variant) => {
-      const key = variant.parts[index]?.key;
-      return key && 'fault' in key;
-    });
+    const failing = this.samples.keyFaults()[index] !== null && this.samples.keyFaults()[index] !== undefined;
     const keyIsNamed = typed.some((fault) => fault.path.join('.').endsWith('answer.key'));
     return typed.length + (failing && !keyIsNamed ? 1 : 0);
   }

@@ -14,6 +14,8 @@ export function editorLook(nonce: string | null): Extension {
       '&.cm-focused > .cm-scroller > .cm-selectionLayer .cm-selectionBackground, .cm-selectionBackground': {
         backgroundColor: 'var(--line-wash)',
       },
+      // The box around an editor shows that it has the focus.
+      '.cm-content:focus-visible': { outline: 'none' },
       '.cm-line': { padding: '0' },
       '.cm-gutters': { backgroundColor: 'transparent', border: '0', color: 'var(--silver-4)', fontSize: '12px' },
       '.cm-activeLineGutter': { backgroundColor: 'transparent', color: 'var(--ink)' },

@@ -49,9 +49,8 @@ export class PartBench {
     const typed = this.part().answer.key.trim() === '' && !this.open.showsAll();
     const faults = typed ? [] : this.open.faultsAt('parts', this.index(), 'answer', 'key');
     if (faults.length > 0 || this.samples.isWaiting()) return faults;
-    const failed = this.samples.variants().map((variant) => variant.parts[this.index()]?.key);
-    const first = failed.find((key) => key && 'fault' in key);
-    return first && 'fault' in first ? [first.fault] : [];
+    const failing = this.samples.keyFaults()[this.index()];
+    return failing ? [failing] : [];
   });
 
   /** The key of the variant that is shown. */
@@ -109,7 +108,13 @@ export class PartBench {
         }),
         unit: value?.unit ?? '',
         dimension: value?.dimension,
-        fault: key && 'fault' in key ? key.fault.message : '',
+        // What is said once under the expression is not said again in every row.
+        fault:
+          key && 'fault' in key
+            ? key.fault.message === this.keyFaults()[0]?.message
+              ? 'no value'
+              : key.fault.message
+            : '',
         slips: number === null ? null : slipStanding(number, values, tolerance),
       };
     });

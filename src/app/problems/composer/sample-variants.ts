@@ -3,10 +3,13 @@ import { takeUntilDestroyed, toObservable } from '@angular/core/rxjs-interop';
 import { catchError, debounceTime, distinctUntilChanged, map, of, switchMap } from 'rxjs';
 import type { FieldProblem } from '@shared/problem-details';
 import type { ProblemDraft } from '@shared/problem-draft';
-import type { ProblemSample, SampledVariant } from '@shared/problem-routes';
+import type { ProblemSample, SampledKey, SampledVariant } from '@shared/problem-routes';
 import { ProblemsApi } from '../../core/api/problems-api';
 import { sentenceOf } from '../../core/api/request-failure';
 import { OpenProblem } from './open-problem';
+
+/** Why an expression has no value, and at which character. */
+export type KeyFault = Extract<SampledKey, { readonly fault: unknown }>['fault'];
 
 /** Sample variants of the draft with their keys, asked for anew whenever something changes that they depend on. */
 @Injectable()
@@ -40,6 +43,16 @@ export class SampleVariants {
     return (this.sample()?.faults ?? []).filter(
       (fault) => fault.path[0] === 'givens' && fault.path[2] === 'expression' && !typed.has(fault.path.join('.')),
     );
+  });
+
+  /** For each part, why its key has no value, on the first sample on which it fails; null where it has one on all. */
+  readonly keyFaults = computed<readonly (KeyFault | null)[]>(() => {
+    const parts = this.open.draft()?.parts ?? [];
+    return parts.map((_, index) => {
+      const keys = this.variants().map((variant) => variant.parts[index]?.key);
+      const failing = keys.find((key) => key && 'fault' in key);
+      return failing && 'fault' in failing ? failing.fault : null;
+    });
   });
 
   constructor() {

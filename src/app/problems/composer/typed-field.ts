@@ -45,6 +45,7 @@ let instances = 0;
   `,
   styleUrl: './typed-field.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
+  host: { '[class.beside]': 'beside()' },
 })
 export class TypedField {
   /** What the field is called; read out where it is not shown. */
@@ -54,6 +55,8 @@ export class TypedField {
   readonly fault = input('');
   readonly placeholder = input('');
   readonly hideLabel = input(false, { transform: booleanAttribute });
+  /** Whether the label stands before the field rather than over it. */
+  readonly beside = input(false, { transform: booleanAttribute });
   readonly mono = input(false, { transform: booleanAttribute });
   readonly numeric = input(false, { transform: booleanAttribute });
   /** More than 0 makes it a field of several lines. */
