@@ -67,7 +67,7 @@ export const directions = {
       folder('demo', 'demo'),
     ],
     'boundaries/files': [
-      { category: 'spec', pattern: '**/*.spec.ts' },
+      { category: 'test', pattern: ['**/*.spec.ts', 'server/**/testing/**/*.ts'] },
       { category: 'routes', pattern: 'server/*/*-routes.ts' },
       { category: 'context', pattern: 'server/{context,config}.ts' },
       { category: 'main', pattern: 'server/main.ts' },
@@ -111,10 +111,13 @@ export const directions = {
             message: 'Routes are only for app.ts; ask the subject’s queries or rules.',
           },
           allow('server-testing', ['server', ...serverElements, 'shared', 'drizzle']),
-          { from: { file: { categories: 'spec' } }, allow: { to: elements('server-testing') } },
+          // Tests make what they need through whichever subject makes it; pure functions need nothing.
           {
-            from: elements(pure.map(server)),
-            disallow: { to: elements('server-testing') },
+            from: {
+              element: { type: [...subjects, ...Object.keys(grounds)].map(server) },
+              file: { categories: 'test' },
+            },
+            allow: { to: elements([...serverElements, 'server', 'server-testing', 'shared', 'drizzle']) },
           },
 
           // What both sides share, the tables, and the demonstration

@@ -7,7 +7,13 @@ const here = (folder: string) => fileURLToPath(new URL(folder, import.meta.url))
 export default defineConfig({
   resolve: { alias: { '@shared': here('./shared'), '@drizzle': here('./drizzle') } },
   test: {
-    include: ['server/**/*.spec.ts', 'shared/**/*.spec.ts', 'demo/**/*.spec.ts', 'drizzle/**/*.spec.ts', 'scripts/**/*.spec.ts'],
+    include: [
+      'server/**/*.spec.ts',
+      'shared/**/*.spec.ts',
+      'demo/**/*.spec.ts',
+      'drizzle/**/*.spec.ts',
+      'scripts/**/*.spec.ts',
+    ],
     environment: 'node',
     testTimeout: 30_000,
   },

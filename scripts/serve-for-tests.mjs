@@ -14,7 +14,9 @@ process.on('exit', () => {
 
 /** @type {import('./start-server.mjs').RunningServer | null} */
 let server = null;
+let stopping = false;
 async function stop() {
+  stopping = true;
   await server?.stop();
   process.exit(0);
 }
@@ -25,8 +27,8 @@ try {
   await buildProgram();
   server = await startServer({ DATA_DIR: dataDir, NODE_ENV: 'test', LOG_LEVEL: 'warn' });
   await server.ended;
-  console.error(`The server has ended.\n${server.printed()}`);
+  if (!stopping) console.error(`The server has ended.\n${server.printed()}`);
 } catch (error) {
   console.error(error instanceof Error ? error.message : error);
 }
-process.exit(1);
+if (!stopping) process.exit(1);

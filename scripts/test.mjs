@@ -16,6 +16,8 @@ process.chdir(root);
 demandNode();
 passSignalsOn();
 await installPackages();
+// Colours are for terminals.
+if (!process.stdout.isTTY) process.env['NO_COLOR'] ??= '1';
 
 const reports = mkdtempSync(join(tmpdir(), 'halfsilver-test-'));
 process.on('exit', () => {
@@ -55,11 +57,13 @@ async function faultOf(parameters) {
  * @param {readonly string[]} parameters for Node.js
  * @param {string} report
  * @param {(report: unknown) => import('./count-results.mjs').Counts} count
- * @param {Record<string, string>} [env]
+ * @param {{ readonly env?: Record<string, string>, readonly after?: string }} [options]
+ *   `after`: what is printed before this word is of no interest where the word comes at all
  */
-async function runTests(name, parameters, report, count, env = {}) {
+async function runTests(name, parameters, report, count, { env = {}, after } = {}) {
   announce(name);
-  const { code, seconds } = await runCommand(process.execPath, parameters, { env });
+  const { code, output, seconds } = await runCommand(process.execPath, parameters, { env, quiet: after !== undefined });
+  if (after) console.log(output.slice(Math.max(0, output.indexOf(after))).trim());
   const judged = judgeRunner(readReport(report, count), code);
   results.push(judged);
   const parts = [`${String(judged.passed)} passed`, `${String(judged.failed)} failed`];
@@ -81,30 +85,29 @@ function readReport(path, count) {
   }
 }
 
-announce('Lint and import directions');
+// Two of the gates at a time: lint takes as long as the others together.
 const lintReport = join(reports, 'lint.json');
-const lint = await runCommand(
+const linting = runCommand(
   process.execPath,
   [bin('eslint', 'bin', 'eslint.js'), '.', '--format', 'json', '--output-file', lintReport],
   { quiet: true },
 );
-const found = readReportOf(lintReport);
-noteGate('Lint', found ? found.others : lint.output.trim() || 'ESLint left no report.');
+const format = await faultOf([bin('prettier', 'bin', 'prettier.cjs'), '--check', '--log-level', 'warn', '.']);
+const types = [];
+for (const parameters of typeChecks) types.push(await faultOf(parameters));
 const cycles = await faultOf([
   bin('dependency-cruiser', 'bin', 'dependency-cruise.mjs'),
   ...['--config', '.dependency-cruiser.mjs', 'src', 'server', 'shared', 'drizzle', 'demo'],
 ]);
-noteGate('Import directions', [found ? found.directions : 'ESLint left no report.', cycles].filter(Boolean).join('\n'));
+const { output: linted } = await linting;
+const found = readLint(lintReport) ?? { others: linted.trim() || 'ESLint left no report.', directions: 'Unknown.' };
 
-announce('Format');
-noteGate('Format', await faultOf([bin('prettier', 'bin', 'prettier.cjs'), '--check', '--log-level', 'warn', '.']));
+noteGate('Lint', found.others);
+noteGate('Format', format);
+noteGate('Types', types.filter(Boolean).join('\n'));
+noteGate('Import directions', [found.directions, cycles].filter(Boolean).join('\n'));
 
-announce('Types');
-const faults = [];
-for (const parameters of typeChecks) faults.push(await faultOf(parameters));
-noteGate('Types', faults.filter(Boolean).join('\n'));
-
-announce('Build, with the types of templates');
+announce('Build');
 let built = '';
 try {
   await buildProgram();
@@ -124,7 +127,8 @@ await runTests(
   ],
   clientReport,
   countVitest,
-  { NG_CLI_ANALYTICS: 'false' },
+  // Before its tests it lists the files that it has built.
+  { env: { NG_CLI_ANALYTICS: 'false' }, after: ' RUN ' },
 );
 
 const serverReport = join(reports, 'server.json');
@@ -150,7 +154,7 @@ console.log(`\n${totalLine(results)}`);
 process.exitCode = results.some(({ failed }) => failed > 0) ? 1 : 0;
 
 /** @param {string} path */
-function readReportOf(path) {
+function readLint(path) {
   try {
     return splitLint(JSON.parse(readFileSync(path, 'utf8')), root);
   } catch {
