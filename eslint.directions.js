@@ -5,7 +5,18 @@
 import boundaries from 'eslint-plugin-boundaries';
 
 /** Folders of the server that hold a subject each: routes, rules, queries. */
-const subjects = ['courses', 'problems', 'sets', 'scripts', 'marking', 'results', 'accounts', 'record', 'files'];
+const subjects = [
+  'desk',
+  'courses',
+  'problems',
+  'sets',
+  'scripts',
+  'marking',
+  'results',
+  'accounts',
+  'record',
+  'files',
+];
 
 /** What subjects stand on; each folder with those that it may use. */
 const grounds = {
@@ -33,6 +44,17 @@ const elements = (...types) => ({ element: { type: types.flat() } });
  * @param {readonly string[]} to
  */
 const allow = (from, to) => ({ from: elements(from), allow: { to: elements(to) } });
+
+/**
+ * For files beside the folders, not in one: a new folder has to be entered above before it may import anything.
+ *
+ * @param {string} from
+ * @param {readonly string[]} to
+ */
+const allowAtTheRoot = (from, to) => ({
+  from: { element: { type: from }, file: { categories: 'root' } },
+  allow: { to: elements(to) },
+});
 
 const server = (name) => `server-${name}`;
 /** The words of `grounds` as names of elements. */
@@ -70,6 +92,7 @@ export const directions = {
       { category: 'test', pattern: ['**/*.spec.ts', 'server/**/testing/**/*.ts'] },
       { category: 'routes', pattern: 'server/*/*-routes.ts' },
       { category: 'context', pattern: 'server/{context,config}.ts' },
+      { category: 'root', pattern: ['server/*.ts', 'src/*.ts', 'src/app/*.ts'] },
       { category: 'main', pattern: 'server/main.ts' },
     ],
   },
@@ -83,13 +106,13 @@ export const directions = {
         message: '{{from.element.type}} may not import from {{to.element.type}} (see eslint.directions.js).',
         policies: [
           // The client
-          allow('client', ['client', 'client-core', 'client-ui', ...featureElements, 'shared']),
+          allowAtTheRoot('client', ['client-core', 'client-ui', ...featureElements, 'shared']),
           allow('client-core', ['client-ui', 'shared']),
           allow('client-ui', ['shared']),
           allow(featureElements, ['client-core', 'client-ui', 'shared']),
 
           // The server
-          allow('server', ['server', ...serverElements, 'shared', 'drizzle']),
+          allowAtTheRoot('server', [...serverElements, 'shared', 'drizzle']),
           ...Object.entries(grounds).map(([name, uses]) =>
             allow(server(name), ['shared', ...uses.filter((use) => use !== 'context').map(named)]),
           ),
