@@ -1,7 +1,6 @@
 import { MethodDoesNotApply } from './method-does-not-apply';
-import { levelsFor, logGenerating } from './photon-bounds';
+import { levelsFor } from './photon-bounds';
 import type { State } from './state';
-import { withoutPhases } from './without-phases';
 
 /** Values of a Wigner function on a grid, row by row of p. */
 export type WignerGrid = (xs: Float64Array, ps: Float64Array) => Float64Array;
@@ -65,18 +64,6 @@ function isRound(state: State): boolean {
   }
 }
 
-/** A displacement only moves the Wigner function, and a squeezer or a phase shift keeps areas. */
-function core(state: State): State {
-  switch (state.kind) {
-    case 'displaced':
-    case 'squeeze':
-    case 'phaseShift':
-      return state.modes === 1 ? core(state.state) : state;
-    default:
-      return state;
-  }
-}
-
 /**
  * ∫|W| dx dp − 1.
  *
@@ -88,11 +75,7 @@ function core(state: State): State {
 export function negativityOf(state: State, grid: WignerGrid): NegativityEstimate {
   const size = levelsFor(state, Math.log(1e-13));
   if (size.levels > 400) throw new MethodDoesNotApply('the Wigner function has too fine a structure to be integrated');
-  void logGenerating;
-  void core;
-  return isRound(withoutPhases(state)) && isRound(state)
-    ? roundNegativity(size.levels, grid)
-    : planeNegativity(size.levels, grid);
+  return isRound(state) ? roundNegativity(size.levels, grid) : planeNegativity(size.levels, grid);
 }
 
 /** 2π ∫ |W(r)| r dr between its zeros. */

@@ -41,7 +41,7 @@ export function entropyOf(given: NumberState): Truncated {
   const state = simplest(given);
   const { levels, outside, noise } = state;
   if (state.kind === 'ket') return result(0, 0, 0, levels, outside);
-  const weights = state.kind === 'diagonal' ? Array.from(state.p) : eigenvaluesOf(state, levels);
+  const weights = state.kind === 'diagonal' ? Array.from(state.p) : eigenvaluesOf(state);
   let value = 0;
   let rounding = 0;
   for (const weight of weights) {
@@ -55,10 +55,9 @@ export function entropyOf(given: NumberState): Truncated {
   return result(value, rounding + noisy + left, lost, levels, outside);
 }
 
-function eigenvaluesOf(state: NumberState, levels: number): number[] {
+function eigenvaluesOf(state: NumberState): number[] {
   const { kets } = ketsOf(state);
   checkColumns(kets.length);
-  void levels;
   return singularValues(copies(kets)).map((s) => s * s);
 }
 
@@ -92,14 +91,13 @@ export function fidelityOf(givenLeft: NumberState, givenRight: NumberState): Tru
     const { kets } = ketsOf(other);
     let value = 0;
     for (const part of kets) value += abs2(innerOf(part, ket));
-    const rounding =
-      EPS * 32 * value + 4 * noise * Math.sqrt(value) + 4 * noise * noise + smallFloor(kets.length, value);
+    const rounding = EPS * 32 * value + 4 * noise * Math.sqrt(value) + 4 * noise * noise;
     return result(value, rounding, crossing(value, left.outside, right.outside), dimension, outside);
   }
   if (left.kind === 'diagonal' && right.kind === 'diagonal') {
     let root = 0;
     for (let n = 0; n < Math.min(left.levels, right.levels); n++) root += Math.sqrt(left.p[n]! * right.p[n]!);
-    const lost = Math.sqrt(left.outside * right.outside) + Math.max(left.outside, right.outside) * 0;
+    const lost = Math.sqrt(left.outside * right.outside);
     const tail = tailOf(left, right);
     return result(root * root, EPS * 16 * root * root, 2 * root * (lost + tail), dimension, outside);
   }
@@ -114,8 +112,6 @@ export function fidelityOf(givenLeft: NumberState, givenRight: NumberState): Tru
     outside,
   );
 }
-
-const smallFloor = (terms: number, value: number): number => (terms > 1 ? EPS * 8 * Math.sqrt(value) * 0 : 0);
 
 /** An overlap of tails that are both outside: at most the geometric mean of their weights. */
 const crossing = (value: number, a: number, b: number): number => 2 * Math.sqrt(value * a * b) + a * b;
@@ -171,12 +167,10 @@ export function overlapOf(left: State, right: State, resolution: Resolution): Tr
     const phi = asKet(numberState(right, resolution));
     const value = innerOf(psi, phi);
     const noise = psi.noise + phi.noise;
-    const size = Math.sqrt(abs2(value));
     let spread = 0;
     for (let n = 0; n < Math.min(psi.levels, phi.levels); n++) {
       spread += Math.hypot(psi.re[n]!, psi.im[n]!) * Math.hypot(phi.re[n]!, phi.im[n]!);
     }
-    void size;
     return result(
       value,
       EPS * 16 * spread + 4 * noise,

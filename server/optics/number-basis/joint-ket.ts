@@ -207,7 +207,7 @@ export function innerProductOf(phi: JointKet, psi: JointKet): Complex {
 export function loseKets(kets: readonly JointKet[], mode: 1 | 2, eta: number): readonly JointKet[] {
   if (eta === 1) return kets;
   const levels = Math.max(0, ...kets.map((ket) => ket.blocks.length));
-  checkJointSize((sizeOfKets(kets) * levels) / 3);
+  checkJointSize(Math.max((sizeOfKets(kets) * levels) / 3, kets.length * levels * levels));
   const rows = lossAmplitudes(levels, eta);
   return branches(kets, levels, levels, (k, n) => (n >= k ? rows[k]![n]! : 0), mode, -1);
 }
@@ -216,7 +216,8 @@ export function loseKets(kets: readonly JointKet[], mode: 1 | 2, eta: number): r
 export function amplifyKets(kets: readonly JointKet[], mode: 1 | 2, gain: number, levels: number): readonly JointKet[] {
   if (gain === 1) return kets;
   const from = Math.max(0, ...kets.map((ket) => ket.blocks.length));
-  checkJointSize(sizeOfKets(kets) * levels, from * levels);
+  // Every branch holds a list of blocks, most of them empty.
+  checkJointSize(Math.max(sizeOfKets(kets) * levels, kets.length * levels * levels * 2), from * levels);
   const rows = gainAmplitudes(from, levels, gain);
   return branches(kets, levels, levels, (k, n) => rows[k]?.[n] ?? 0, mode, 1);
 }

@@ -1,6 +1,7 @@
 import { abs, abs2, type Complex } from '../complex';
 import { quadratureScale } from '../convention';
 import type { Figure } from '../figures';
+import { gaussianOf } from '../gaussian/gaussian-state';
 import { MethodDoesNotApply } from '../method-does-not-apply';
 import { figureOfMoments, isMomentFigure, type FigureEstimate, type Moment } from '../moments/moment-figures';
 import { poisson } from '../special/distributions';
@@ -26,6 +27,8 @@ const EPS = 2 ** -52;
 /** A value's truncation error may be this part of it; otherwise the basis is made larger. */
 const WANTED = 1e-13;
 const MOST_ATTEMPTS = 4;
+/** Levels up to which a whole plane of a Wigner function is summed. */
+const MOST_PICTURE_LEVELS = 24;
 
 /**
  * A figure in a number basis; the basis grows until what is outside does not show in the value.
@@ -126,30 +129,35 @@ function evaluate(figure: Figure, resolution: Resolution): Truncated {
     case 'quadratureDensity': {
       const scale = quadratureScale(figure.convention);
       const basis = numberState(state, resolution);
-      const { value, error } = densityAt(basis, figure.x / scale, figure.theta);
-      return of(basis, value / scale, error / scale, 0);
+      const { value, error, truncation } = densityAt(basis, figure.x / scale, figure.theta);
+      return of(basis, value / scale, error / scale, truncation / scale);
     }
     case 'wigner': {
       const scale = quadratureScale(figure.convention);
       const basis = numberState(state, resolution);
-      const { value, error } = wignerAt(basis, figure.x / scale, figure.p / scale);
-      return of(basis, value / scale ** 2, error / scale ** 2, 0);
+      const { value, error, truncation } = wignerAt(basis, figure.x / scale, figure.p / scale);
+      return of(basis, value / scale ** 2, error / scale ** 2, truncation / scale ** 2);
     }
     case 'husimi': {
       const basis = numberState(state, resolution);
-      const { value, error } = husimiAt(basis, figure.alpha);
-      return of(basis, value, error, 0);
+      const { value, error, truncation } = husimiAt(basis, figure.alpha);
+      return of(basis, value, error, truncation);
     }
     case 'characteristic': {
       const basis = numberState(state, resolution);
-      const { re, im, error } = displacementTrace(basis, figure.xi, false);
+      const { re, im, error, truncation } = displacementTrace(basis, figure.xi, false);
       const order = Math.exp((figure.s * abs2(figure.xi)) / 2);
-      return of(basis, { re: re * order, im: im * order }, error * order, 0);
+      return of(basis, { re: re * order, im: im * order }, error * order, truncation * order);
     }
     case 'pFunction':
       throw new MethodDoesNotApply('the P function is no convergent sum over photon numbers');
     case 'wignerNegativity': {
+      if (gaussianOf(state) !== undefined)
+        throw new MethodDoesNotApply('a Gaussian Wigner function is left to phase space');
       const basis = numberState(state, resolution);
+      if (basis.levels > MOST_PICTURE_LEVELS && basis.kind !== 'diagonal') {
+        throw new MethodDoesNotApply('the Wigner function would take too long in a number basis');
+      }
       const found = negativityOf(state, (xs, ps) => {
         const values = new Float64Array(xs.length * ps.length);
         for (let i = 0; i < ps.length; i++) {

@@ -32,6 +32,8 @@ export function hermiteFunctions(x: number, levels: number): Float64Array {
 export interface NumberEstimate {
   readonly value: number;
   readonly error: number;
+  /** The part of the error that a larger basis would take away. */
+  readonly truncation: number;
 }
 
 const EPS = 2 ** -52;
@@ -44,7 +46,7 @@ export function densityAt(state: NumberState, x: number, theta: number): NumberE
   if (state.kind === 'diagonal') {
     let value = 0;
     for (let n = 0; n < levels; n++) value += state.p[n]! * phi[n]! * phi[n]!;
-    return { value, error: value * rounding + state.outside };
+    return { value, error: value * rounding, truncation: state.outside };
   }
   const turn = phase(-theta);
   const angle = Math.atan2(turn.im, turn.re);
@@ -65,9 +67,14 @@ export function densityAt(state: NumberState, x: number, theta: number): NumberE
       size += (Math.abs(state.re[n]!) + Math.abs(state.im[n]!)) * Math.abs(phi[n]!);
     }
     const amplitude = Math.hypot(re, im);
-    const noise = size * rounding + state.noise * Math.sqrt(levels) + Math.sqrt(state.outside);
+    const noise = size * rounding + state.noise * Math.sqrt(levels);
     // What is outside would add at most √outside times the wave function there, of order 1.
-    return { value: amplitude * amplitude, error: 2 * amplitude * noise + noise * noise };
+    const lost = Math.sqrt(state.outside);
+    return {
+      value: amplitude * amplitude,
+      error: 2 * amplitude * noise + noise * noise,
+      truncation: 2 * amplitude * lost + lost * lost,
+    };
   }
   let value = 0;
   let size = 0;
@@ -83,7 +90,7 @@ export function densityAt(state: NumberState, x: number, theta: number): NumberE
     value += cos[m]! * re - sin[m]! * im;
     size += Math.abs(phi[m]!) * Math.hypot(re, im);
   }
-  return { value, error: size * rounding + state.noise * levels + Math.sqrt(state.outside) };
+  return { value, error: size * rounding + state.noise * levels, truncation: 2 * Math.sqrt(state.outside) };
 }
 
 /**
@@ -121,7 +128,7 @@ export function displacementTrace(
   state: NumberState,
   xi: Complex,
   alternating: boolean,
-): { readonly re: number; readonly im: number; readonly error: number } {
+): { readonly re: number; readonly im: number; readonly error: number; readonly truncation: number } {
   const { levels } = state;
   const a = xi.re * xi.re + xi.im * xi.im;
   const angle = Math.atan2(xi.im, xi.re);
@@ -168,14 +175,17 @@ export function displacementTrace(
     re += upRe * turn.re - upIm * turn.im + downRe * turn.re + downIm * turn.im;
     im += upRe * turn.im + upIm * turn.re - downRe * turn.im + downIm * turn.re;
   }
-  const error = size * EPS * (8 + Math.sqrt(levels) + a / 4) + state.noise * levels + 2 * Math.sqrt(state.outside);
-  return { re, im, error };
+  const error = size * EPS * (8 + Math.sqrt(levels) + a / 4) + state.noise * levels;
+  // Without coherences what is outside counts once; with them the root of it may stand beside the diagonal.
+  const truncation = state.kind === 'diagonal' ? state.outside : 2 * Math.sqrt(state.outside);
+  return { re, im, error, truncation };
 }
 
 /** W(x, p) = Tr[ρ D(2α) (−1)ⁿ]/π with α = (x + ip)/√2. */
 export function wignerAt(state: NumberState, x: number, p: number): NumberEstimate {
-  const { re, error } = displacementTrace(state, { re: Math.SQRT2 * x, im: Math.SQRT2 * p }, true);
-  return { value: re / Math.PI, error: error / Math.PI };
+  const xi = { re: Math.SQRT2 * x, im: Math.SQRT2 * p };
+  const { re, error, truncation } = displacementTrace(state, xi, true);
+  return { value: re / Math.PI, error: error / Math.PI, truncation: truncation / Math.PI };
 }
 
 /** Q(α) = ⟨α|ρ|α⟩/π. */
@@ -196,7 +206,7 @@ export function husimiAt(state: NumberState, alpha: Complex): NumberEstimate {
   if (state.kind === 'diagonal') {
     let value = 0;
     for (let n = 0; n < levels; n++) value += state.p[n]! * (vRe[n]! ** 2 + vIm[n]! ** 2);
-    return { value: value / Math.PI, error: (value * rounding + state.outside) / Math.PI };
+    return { value: value / Math.PI, error: (value * rounding) / Math.PI, truncation: state.outside / Math.PI };
   }
   if (state.kind === 'ket') {
     let re = 0;
@@ -208,8 +218,13 @@ export function husimiAt(state: NumberState, alpha: Complex): NumberEstimate {
       size += Math.hypot(vRe[n]!, vIm[n]!) * Math.hypot(state.re[n]!, state.im[n]!);
     }
     const amplitude = Math.hypot(re, im);
-    const noise = size * rounding + state.noise + Math.sqrt(state.outside);
-    return { value: (amplitude * amplitude) / Math.PI, error: (2 * amplitude * noise + noise * noise) / Math.PI };
+    const noise = size * rounding + state.noise;
+    const lost = Math.sqrt(state.outside);
+    return {
+      value: (amplitude * amplitude) / Math.PI,
+      error: (2 * amplitude * noise + noise * noise) / Math.PI,
+      truncation: (2 * amplitude * lost + lost * lost) / Math.PI,
+    };
   }
   let value = 0;
   let size = 0;
@@ -226,5 +241,9 @@ export function husimiAt(state: NumberState, alpha: Complex): NumberEstimate {
     value += vRe[m]! * re - vIm[m]! * im;
     size += Math.hypot(vRe[m]!, vIm[m]!) * Math.hypot(re, im);
   }
-  return { value: value / Math.PI, error: (size * rounding + state.noise + Math.sqrt(state.outside)) / Math.PI };
+  return {
+    value: value / Math.PI,
+    error: (size * rounding + state.noise) / Math.PI,
+    truncation: (2 * Math.sqrt(state.outside)) / Math.PI,
+  };
 }

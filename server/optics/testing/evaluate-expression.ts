@@ -1,4 +1,5 @@
-import { all, create, type MathNode } from 'mathjs';
+import * as mathjs from 'mathjs';
+import type { MathNode } from 'mathjs';
 import { bathAmplitude, invertedBathAmplitude } from '../bath-amplitude';
 import { compareMethods } from '../compare-methods';
 import type { Complex } from '../complex';
@@ -10,7 +11,7 @@ import { isState, type State } from '../state';
 import { addStates, divideState, multiplyState, stateFunctions, subtractStates, type StateFunction } from '../states';
 import type { FigureFunction } from '../figures';
 
-const math = create(all);
+const math = mathjs;
 
 /** A value that an expression of the specs evaluates to. */
 export type SpecValue = FigureValue | State | readonly SpecValue[];
