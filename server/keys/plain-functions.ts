@@ -1,0 +1,101 @@
+import { mathematics as m } from './mathematics';
+import type { Value } from './value';
+
+/** A function of values; what it throws is turned into an error with the place of the call. */
+export type PlainFunction = (...values: readonly Value[]) => Value;
+
+/** Longest list that an expression may make. */
+export const longestList = 10_000;
+
+const from = (f: unknown): PlainFunction => f as PlainFunction;
+
+/** Refuses a call in a sentence. */
+export class Refusal extends Error {}
+
+function range(first: Value, last: Value, step: Value = 1): Value {
+  if (typeof first !== 'number' || typeof last !== 'number' || typeof step !== 'number')
+    throw new Refusal('takes numbers: first, last and, where it is not 1, the step');
+  if (![first, last, step].every(Number.isFinite) || step === 0) throw new Refusal('takes finite numbers and a step other than 0');
+  const count = Math.floor((last - first) / step + 1e-9) + 1;
+  if (count > longestList) throw new Refusal(`would make a list of ${String(count)} entries; at most 10,000 are allowed`);
+  return Array.from({ length: Math.max(0, count) }, (_, index) => first + index * step);
+}
+
+function factorial(n: Value): Value {
+  if (Array.isArray(n)) return (n as readonly Value[]).map(factorial);
+  if (typeof n !== 'number' || !Number.isInteger(n) || n < 0)
+    throw new Refusal('takes a whole number from 0; `gamma` takes any');
+  if (n > 170) throw new Refusal(`of ${String(n)} is beyond the range of numbers; at most 170 is allowed`);
+  return m.factorial(n);
+}
+
+function combinations(n: Value, k: Value): Value {
+  if (typeof n !== 'number' || typeof k !== 'number' || !Number.isInteger(n) || !Number.isInteger(k) || k < 0 || k > n)
+    throw new Refusal('takes whole numbers n and k with 0 ≤ k ≤ n');
+  if (Math.min(k, n - k) > 10_000) throw new Refusal('takes k or n − k of at most 10,000');
+  return m.combinations(n, k);
+}
+
+/** How many places `round` keeps: not more than numbers have. */
+function round(x: Value, places: Value = 0): Value {
+  if (typeof places !== 'number' || !Number.isInteger(places) || places < 0 || places > 15)
+    throw new Refusal('takes 0 to 15 decimal places');
+  return from(m.round)(x, places);
+}
+
+/** The mathematical functions of the language, by name. */
+export const plainFunctions: Readonly<Record<string, PlainFunction>> = Object.assign(
+  Object.create(null) as Record<string, PlainFunction>,
+  {
+    abs: from(m.abs),
+    arg: from(m.arg),
+    conj: from(m.conj),
+    re: from(m.re),
+    im: from(m.im),
+    sqrt: from(m.sqrt),
+    cbrt: from(m.cbrt),
+    square: from(m.square),
+    hypot: from(m.hypot),
+    pow: from(m.pow),
+    mod: from(m.mod),
+    sign: from(m.sign),
+    exp: from(m.exp),
+    expm1: from(m.expm1),
+    log: from(m.log),
+    ln: from((x: never) => m.log(x)),
+    log10: from(m.log10),
+    log2: from(m.log2),
+    log1p: from(m.log1p),
+    sin: from(m.sin),
+    cos: from(m.cos),
+    tan: from(m.tan),
+    cot: from(m.cot),
+    sec: from(m.sec),
+    csc: from(m.csc),
+    asin: from(m.asin),
+    acos: from(m.acos),
+    atan: from(m.atan),
+    atan2: from(m.atan2),
+    sinh: from(m.sinh),
+    cosh: from(m.cosh),
+    tanh: from(m.tanh),
+    asinh: from(m.asinh),
+    acosh: from(m.acosh),
+    atanh: from(m.atanh),
+    sum: from(m.sum),
+    prod: from(m.prod),
+    min: from(m.min),
+    max: from(m.max),
+    mean: from(m.mean),
+    round,
+    floor: from((x: never) => m.floor(x)),
+    ceil: from((x: never) => m.ceil(x)),
+    fix: from((x: never) => m.fix(x)),
+    factorial,
+    combinations,
+    gamma: from(m.gamma),
+    lgamma: from(m.lgamma),
+    erf: from(m.erf),
+    range,
+  } satisfies Record<string, PlainFunction>,
+);
