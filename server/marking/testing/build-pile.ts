@@ -156,5 +156,5 @@ export function buildPile(harness: Harness, wishes: Wishes) {
       .run();
     return { answerId, code, student, scriptId };
   });
-  return { setId, pileId, part, handedIn, setProblemId };
+  return { setId, pileId, part, handedIn, setProblemId, problemId };
 }
