@@ -20,6 +20,7 @@ import { PageTitle } from '../../core/page-title';
 import { Session } from '../../core/session';
 import { ErrorState } from '../../ui/error-state/error-state';
 import type { FringeBar } from '../../ui/fringe-strip/fringe-bar';
+import { FormulaText } from '../../ui/formula-text/formula-text';
 import { FringeStrip } from '../../ui/fringe-strip/fringe-strip';
 import { MarkerToken } from '../../ui/marker-token/marker-token';
 import type { RulerAnswer } from '../../ui/tolerance-ruler/tolerance-ruler';
@@ -38,7 +39,7 @@ const cardPlaces: readonly CardPlace[] = ['in hand', 'next', 'after that'];
 /** Where a pile is marked: the strip, the light table, the dock, and who is on the pile. Everything by keyboard. */
 @Component({
   selector: 'app-bench',
-  imports: [AnswerCard, Dock, ErrorState, FringeStrip, MarkerToken, MatButtonModule, RouterLink],
+  imports: [AnswerCard, Dock, ErrorState, FormulaText, FringeStrip, MarkerToken, MatButtonModule, RouterLink],
   providers: [PileWatch, BenchHand, HoldKeeper],
   templateUrl: './bench.html',
   styleUrl: './bench.scss',
@@ -156,11 +157,16 @@ export default class Bench {
     const since = this.watch.notLiveSince();
     return since === null ? '' : `Not live since ${timeOf(since, this.timeZone())}`;
   });
-  protected readonly saved = computed(() => {
-    if (this.hand.isSaving()) return 'saving';
+  /** `live, saved 14:36:08`. */
+  protected readonly liveInWords = computed(() => {
+    const live = this.notLive() || (this.watch.isLive() ? 'live' : 'connecting');
+    if (this.hand.isSaving()) return `${live}, saving`;
     const last = this.hand.lastSave();
-    return last ? `saved ${secondOf(last.at, this.timeZone())}` : '';
+    return last ? `${live}, saved ${secondOf(last.at, this.timeZone())}` : live;
   });
+  protected readonly asideInWords = computed(() =>
+    this.setAside() > 0 ? `, ${String(this.setAside())} set aside` : '',
+  );
 
   protected readonly problem = computed(() => {
     const error = this.watch.problem();

@@ -70,8 +70,10 @@ export class AnswerCard {
   /** The relation in words, where the factor alone does not say it. */
   protected readonly relation = computed(() => {
     const answer = this.answer();
-    if (!answer?.relation || answer.verdict === 'unanswered' || answer.verdict === 'unreadable') return '';
-    return answer.verdict === 'right' ? 'right' : answer.relation.name;
+    if (!answer?.relation || answer.relation.factor !== undefined) return '';
+    if (answer.verdict !== 'slip' && answer.verdict !== 'wrong')
+      return answer.ratio === null ? (answer.verdict ?? '') : '';
+    return answer.relation.name;
   });
 
   protected readonly ruler = computed(() => {

@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, DestroyRef, computed, inject, input } from '@angular/core';
+import { ChangeDetectionStrategy, Component, DestroyRef, computed, effect, inject, input } from '@angular/core';
 import { rxResource, takeUntilDestroyed } from '@angular/core/rxjs-interop';
 import { RouterLink } from '@angular/router';
 import type { PileSummary } from '@shared/marking';
@@ -48,6 +48,9 @@ export default class Piles {
       .of('stageChanged')
       .pipe(takeUntilDestroyed())
       .subscribe(() => this.piles.reload());
+    effect((onCleanup) => {
+      onCleanup(this.live.watchCourse(this.courseId()));
+    });
     inject(DestroyRef).onDestroy(() => {
       clearInterval(timer);
     });

@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, computed, inject, input } from '@angular/core';
+import { ChangeDetectionStrategy, Component, computed, effect, inject, input } from '@angular/core';
 import { rxResource, takeUntilDestroyed } from '@angular/core/rxjs-interop';
 import { MatButtonModule } from '@angular/material/button';
 import { RouterLink } from '@angular/router';
@@ -67,10 +67,14 @@ export default class FeedbackList {
   protected readonly problem = computed(() => (this.list.error() ? sentenceOf(this.list.error()) : null));
 
   constructor() {
-    inject(LiveConnection)
+    const live = inject(LiveConnection);
+    live
       .of('stageChanged')
       .pipe(takeUntilDestroyed())
       .subscribe(() => this.list.reload());
+    effect((onCleanup) => {
+      onCleanup(live.watchCourse(this.courseId()));
+    });
   }
 
   protected moment(at: number): string {

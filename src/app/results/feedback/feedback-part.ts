@@ -52,17 +52,10 @@ export class FeedbackPart {
 
   /** Only where the key is shown, and the answer is another number. */
   protected readonly ruler = computed(() => {
-    const { key, slip, verdict } = this.part();
+    const { key, verdict } = this.part();
     if (!key || typeof key.value !== 'number' || typeof key.answer !== 'number') return null;
     if (verdict === 'right' || !key.band) return null;
-    const named = slip?.name;
-    return {
-      key: key.value,
-      band: key.band,
-      answer: key.answer,
-      slips: named ? [{ name: named, value: key.answer }] : [],
-      unit: key.unit ?? '',
-    };
+    return { key: key.value, band: key.band, answer: key.answer, unit: key.unit ?? '' };
   });
 }
 
