@@ -6,7 +6,7 @@ import { verdict } from './problems';
 export const plainValue = z.union([
   z.number(),
   z.object({ re: z.number(), im: z.number() }),
-  z.array(z.unknown()),
+  z.array(z.unknown()).readonly(),
   z.string(),
 ]);
 

@@ -54,8 +54,12 @@ export function compileKey(expression: string, options: CompileOptions): Compile
   const source = new SourceText(expression);
   if (expression.trim() === '') throw new KeyError('Write an expression.', null);
   if (expression.length > longestExpression)
-    throw new KeyError(`An expression has at most 2,000 characters; this one has ${expression.length.toLocaleString('en')}.`, null);
-  if (source.depth > deepestNesting) throw new KeyError(`Brackets are nested more than ${String(deepestNesting)} deep.`, null);
+    throw new KeyError(
+      `An expression has at most 2,000 characters; this one has ${expression.length.toLocaleString('en')}.`,
+      null,
+    );
+  if (source.depth > deepestNesting)
+    throw new KeyError(`Brackets are nested more than ${String(deepestNesting)} deep.`, null);
   const compiler = new Compiler(source, new Set(options.names));
   const step = compiler.compile(parse(expression, source));
   const convention = options.convention ?? defaultConvention;
@@ -87,13 +91,21 @@ function parse(expression: string, source: SourceText): MathNode {
 }
 
 /** Does something and turns what it throws into an error with a place. */
-function guarded<Result>(place: Place, name: string | undefined, act: () => Result, argumentsOf?: readonly Place[]): Result {
+function guarded<Result>(
+  place: Place,
+  name: string | undefined,
+  act: () => Result,
+  argumentsOf?: readonly Place[],
+): Result {
   try {
     return act();
   } catch (error) {
     if (error instanceof KeyError) throw error;
     if (error instanceof OpticsError) {
-      const own = error.argumentIndex === undefined || error.functionName !== name ? undefined : argumentsOf?.[error.argumentIndex];
+      const own =
+        error.argumentIndex === undefined || error.functionName !== name
+          ? undefined
+          : argumentsOf?.[error.argumentIndex];
       throw new KeyError(error.message, own ?? place, { functionName: error.functionName, argument: error.argument });
     }
     if (error instanceof Refusal)
@@ -228,7 +240,13 @@ class Compiler {
     const whole = this.source.whole;
     if (args.length === 1 && first && Object.hasOwn(unaryOperators, fn)) {
       const act = unaryOperators[fn];
-      if (act) return (run) => number(guarded(whole, undefined, () => act(first(run))), node.op ?? '', whole);
+      if (act)
+        return (run) =>
+          number(
+            guarded(whole, undefined, () => act(first(run))),
+            node.op ?? '',
+            whole,
+          );
     }
     if (args.length === 2 && first && second && Object.hasOwn(binaryOperators, fn)) {
       const act = binaryOperators[fn];
@@ -236,7 +254,11 @@ class Compiler {
         return (run) => {
           const left = first(run);
           const right = second(run);
-          return number(guarded(whole, undefined, () => act(left, right)), node.op ?? '', whole);
+          return number(
+            guarded(whole, undefined, () => act(left, right)),
+            node.op ?? '',
+            whole,
+          );
         };
     }
     throw new KeyError(`The operator ${node.op ?? ''} is not part of the key language.`, whole);

@@ -71,13 +71,18 @@ export function evaluateState(compiled: CompiledKey, values: ReadonlyMap<string,
 function provenance(value: PlainValue, figures: readonly ComparedValue[]): Omit<KeyResult, 'value' | 'unit'> {
   const [first] = figures;
   if (!first) return { method: 'algebra' };
-  const weakest = figures.reduce((least, each) => ((each.agreesTo ?? -1) < (least.agreesTo ?? -1) ? each : least), first);
+  const weakest = figures.reduce(
+    (least, each) => ((each.agreesTo ?? -1) < (least.agreesTo ?? -1) ? each : least),
+    first,
+  );
   const alone = figures.length === 1 && isSame(first.value, value);
   return {
     method: weakest.method,
     ...(weakest.dimension === undefined ? {} : { dimension: weakest.dimension }),
     ...(weakest.outsideWeight === undefined ? {} : { outsideWeight: weakest.outsideWeight }),
-    ...(weakest.second && alone ? { second: { method: weakest.second.method, value: weakest.second.value as PlainValue } } : {}),
+    ...(weakest.second && alone
+      ? { second: { method: weakest.second.method, value: weakest.second.value as PlainValue } }
+      : {}),
     ...(weakest.agreesTo === undefined ? {} : { agreesTo: weakest.agreesTo }),
   };
 }

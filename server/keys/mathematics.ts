@@ -20,3 +20,10 @@ export const mathematics = library.create(
   Object.fromEntries(used.map((name) => [`${name}Dependencies`, factories[`${name}Dependencies`] ?? {}])),
   { matrix: 'Array' },
 );
+
+// The library's electronvolt is that of CODATA 2010; since 2019 it is exact.
+const units = mathematics.Unit as unknown as { readonly UNITS: Record<string, { value: number } | undefined> };
+for (const name of ['eV', 'electronvolt']) {
+  const unit = units.UNITS[name];
+  if (unit) unit.value = 1.602_176_634e-19;
+}

@@ -29,7 +29,8 @@ export const binaryOperators: Readonly<Record<string, Operator>> = {
   },
   multiply: (left, right) => {
     if (typeof left === 'number' && typeof right === 'number') return left * right;
-    if (isState(left) && isState(right)) throw new Refusal('two states are put side by side with `product`, not multiplied');
+    if (isState(left) && isState(right))
+      throw new Refusal('two states are put side by side with `product`, not multiplied');
     if (isState(left)) return multiplyState(factorOf(right), left);
     if (isState(right)) return multiplyState(factorOf(left), right);
     return from(m.multiply)(left, right);

@@ -62,7 +62,12 @@ function expectCount(values: readonly Value[], count: number): void {
     throw new Refusal(`takes ${String(count)} ${count === 1 ? 'argument' : 'arguments'}, got ${String(values.length)}`);
 }
 
-function expectDimension(quantity: SiQuantity, allowed: readonly (readonly number[])[], what: string, example: string): void {
+function expectDimension(
+  quantity: SiQuantity,
+  allowed: readonly (readonly number[])[],
+  what: string,
+  example: string,
+): void {
   if (!allowed.some((dimension) => has(quantity, dimension)))
     throw new Refusal(`${what} must be given in a unit such as ${example}, got ${quantity.unit || 'a pure number'}`);
 }
@@ -105,10 +110,12 @@ const withUnits: Readonly<Record<string, OpticsFunction>> = {
     expectCount(values, 2);
     const angular = quantityAt(values, 0, 'angular frequency');
     expectDimension(angular, [rate, angularRate], 'angular frequency', 'rad/s');
-    if (angular.unit === 'Hz') throw new Refusal('angular frequency must be given in rad/s, got Hz; multiply by 2π rad');
+    if (angular.unit === 'Hz')
+      throw new Refusal('angular frequency must be given in rad/s, got Hz; multiply by 2π rad');
     const moment = quantityAt(values, 1, 'dipole moment');
     expectDimension(moment, [dipole], 'dipole moment', 'C m');
-    if (!(angular.value >= 0)) throw new Refusal(`angular frequency must not be negative, got ${String(angular.value)}`);
+    if (!(angular.value >= 0))
+      throw new Refusal(`angular frequency must not be negative, got ${String(angular.value)}`);
     return unitOf(spontaneousRate(angular.value, moment.value), 's^-1');
   },
 };
@@ -122,7 +129,8 @@ function wholeAt(values: readonly Value[], index: number, what: string, least: n
 
 function realAt(values: readonly Value[], index: number, what: string): number {
   const value = dropTime(values[index]);
-  if (typeof value !== 'number' || !Number.isFinite(value)) throw new Refusal(`${what} must be a finite real number, got ${given(value)}`);
+  if (typeof value !== 'number' || !Number.isFinite(value))
+    throw new Refusal(`${what} must be a finite real number, got ${given(value)}`);
   return value;
 }
 
@@ -133,7 +141,9 @@ function given(value: Value | undefined): string {
 function realsAt(values: readonly Value[], index: number, what: string): readonly number[] {
   const list = values[index];
   if (!Array.isArray(list)) throw new Refusal(`${what} must be a list of numbers, got ${given(list)}`);
-  return (list as readonly Value[]).map((_, at) => realAt(list as readonly Value[], at, `${what}: entry ${String(at + 1)}`));
+  return (list as readonly Value[]).map((_, at) =>
+    realAt(list as readonly Value[], at, `${what}: entry ${String(at + 1)}`),
+  );
 }
 
 const largestOrder = 16_383;
@@ -141,7 +151,11 @@ const largestOrder = 16_383;
 const special: Readonly<Record<string, OpticsFunction>> = {
   laguerre: (values) => {
     expectCount(values, 3);
-    return laguerre(wholeAt(values, 0, 'degree', 0, largestOrder), realAt(values, 1, 'a'), realAt(values, 2, 'argument'));
+    return laguerre(
+      wholeAt(values, 0, 'degree', 0, largestOrder),
+      realAt(values, 1, 'a'),
+      realAt(values, 2, 'argument'),
+    );
   },
   hermite: (values) => {
     expectCount(values, 2);
@@ -187,7 +201,11 @@ function dropTime(value: Value | undefined): Value | undefined {
 /** A value as the engine of states takes it. */
 function toOptics(value: Value): unknown {
   const plain = dropTime(value);
-  return isComplex(plain) ? { re: plain.re, im: plain.im } : Array.isArray(plain) ? (plain as readonly Value[]).map(toOptics) : plain;
+  return isComplex(plain)
+    ? { re: plain.re, im: plain.im }
+    : Array.isArray(plain)
+      ? (plain as readonly Value[]).map(toOptics)
+      : plain;
 }
 
 function ofState(make: (args: readonly unknown[], convention?: Convention) => State): OpticsFunction {
@@ -207,7 +225,9 @@ function ofFigure(name: keyof typeof figureFunctions): OpticsFunction {
 export const opticsFunctions: Readonly<Record<string, OpticsFunction>> = Object.assign(
   Object.create(null) as Record<string, OpticsFunction>,
   Object.fromEntries(Object.entries(stateFunctions).map(([name, make]) => [name, ofState(make)])),
-  Object.fromEntries((Object.keys(figureFunctions) as (keyof typeof figureFunctions)[]).map((name) => [name, ofFigure(name)])),
+  Object.fromEntries(
+    (Object.keys(figureFunctions) as (keyof typeof figureFunctions)[]).map((name) => [name, ofFigure(name)]),
+  ),
   withUnits,
   special,
 );

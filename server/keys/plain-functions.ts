@@ -15,9 +15,11 @@ export class Refusal extends Error {}
 function range(first: Value, last: Value, step: Value = 1): Value {
   if (typeof first !== 'number' || typeof last !== 'number' || typeof step !== 'number')
     throw new Refusal('takes numbers: first, last and, where it is not 1, the step');
-  if (![first, last, step].every(Number.isFinite) || step === 0) throw new Refusal('takes finite numbers and a step other than 0');
+  if (![first, last, step].every(Number.isFinite) || step === 0)
+    throw new Refusal('takes finite numbers and a step other than 0');
   const count = Math.floor((last - first) / step + 1e-9) + 1;
-  if (count > longestList) throw new Refusal(`would make a list of ${String(count)} entries; at most 10,000 are allowed`);
+  if (count > longestList)
+    throw new Refusal(`would make a list of ${String(count)} entries; at most 10,000 are allowed`);
   return Array.from({ length: Math.max(0, count) }, (_, index) => first + index * step);
 }
 

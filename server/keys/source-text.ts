@@ -60,13 +60,21 @@ export class SourceText {
       if (')]}'.includes(token.text)) depth -= 1;
       const ends = depth === 0 || (depth === 1 && token.text === ',');
       if (ends) {
-        if (first && last) places.push({ position: first.position, length: last.position + last.text.length - first.position });
+        if (first && last)
+          places.push({ position: first.position, length: last.position + last.text.length - first.position });
         first = null;
         last = null;
         if (depth === 0) return places;
         continue;
       }
-      if (depth === 1 && token.text === '(' && !first && places.length === 0 && token.position === this.tokens[at + 1]?.position) continue;
+      if (
+        depth === 1 &&
+        token.text === '(' &&
+        !first &&
+        places.length === 0 &&
+        token.position === this.tokens[at + 1]?.position
+      )
+        continue;
       first ??= token;
       last = token;
     }

@@ -6,7 +6,8 @@ import type { GivenValues } from '@shared/variants';
 import { checkAnswer, KeyProblem, type Check, type ComputedKey, type PartKeys as ComparedKeys } from '../checks';
 import type { Keys } from '../variants/evaluate-outcomes';
 import { evaluateVariantKeys, evaluateWithEarlier, partName, type PartKeys } from '../variants/evaluate-variant-keys';
-import type { KeyOutcome, Scope, ScopeValue } from '../variants/key-outcome';
+import type { GivenValue } from '../keys';
+import type { KeyOutcome, Scope } from '../variants/key-outcome';
 
 /** What was handed in for a part. */
 export interface HandedIn {
@@ -97,7 +98,7 @@ async function ownKeys(
   if (!answer || !isComputed(answer)) return undefined;
   const used = earlierUsedBy(answer, index);
   if (used.length === 0) return undefined;
-  const scope: Record<string, ScopeValue> = {};
+  const scope: Record<string, GivenValue> = {};
   for (const each of used) {
     const value = ownValue(content.parts[each], earlier[each], computed[each]?.key?.key);
     if (value === undefined) return undefined;
@@ -123,10 +124,10 @@ function ownValue(
   part: Part | undefined,
   result: CheckResult | null | undefined,
   key: VariantKey | undefined,
-): ScopeValue | undefined {
+): GivenValue | undefined {
   const value = result?.value;
   if (value === null || value === undefined) return undefined;
-  if (typeof value !== 'number') return value as ScopeValue;
+  if (typeof value !== 'number') return value as GivenValue;
   // A value is compared in the part's unit where it names one, otherwise in the key's.
   const unit = part?.answer.form === 'number' ? (part.answer.unit ?? key?.unit) : key?.unit;
   return unit === undefined || key?.unit === undefined ? value : `${String(value)} ${unit}`;

@@ -63,11 +63,13 @@ export function derivationOrder(givens: readonly Given[]): {
  * value.
  *
  * @param variants the givens that are drawn or fixed, of any number of variants; they are computed together
+ * @param deadline the time by `performance.now()` after which what is left is not evaluated
  */
 export async function deriveGivens(
   keys: Keys,
   content: Content,
   variants: readonly GivenValues[],
+  deadline = Infinity,
 ): Promise<readonly DerivedVariant[]> {
   const { order, faults } = derivationOrder(content.givens);
   const results = variants.map((givens) => ({ givens: { ...givens }, faults: [...faults] }));
@@ -82,6 +84,7 @@ export async function deriveGivens(
         givens: scopeOf(givens),
         convention: content.convention,
       })),
+      deadline,
     );
     const inItsUnit = await valuesInUnit(keys, content, given, outcomes, results);
     for (const [index, result] of results.entries()) {

@@ -32,6 +32,7 @@ export function partName(index: number): string {
  * Evaluates the keys and slips of all parts in any number of variants. `part_a`, `part_b` … in a part's expressions are
  * the values of earlier parts' keys; where such a key has no value, neither has what uses it.
  *
+ * @param deadline the time by `performance.now()` after which what is left is not evaluated
  * @returns for each variant, in order, what each part's expressions came to
  */
 export async function evaluateKeys(
@@ -39,6 +40,7 @@ export async function evaluateKeys(
   parts: readonly PartExpressions[],
   itsConvention: Convention,
   variants: readonly GivenValues[],
+  deadline = Infinity,
 ): Promise<readonly (readonly PartKeys[])[]> {
   const scopes: Record<string, Scope[string]>[] = variants.map((givens) => ({ ...scopeOf(givens) }));
   const results: PartKeys[][] = variants.map(() => []);
@@ -50,6 +52,7 @@ export async function evaluateKeys(
       scopes.flatMap((scope) =>
         expressions.map((expression) => ({ expression, givens: { ...scope }, convention: itsConvention })),
       ),
+      deadline,
     );
     for (const [variant, scope] of scopes.entries()) {
       const own = outcomes.slice(variant * expressions.length, (variant + 1) * expressions.length);
