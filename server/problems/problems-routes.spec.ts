@@ -223,9 +223,28 @@ describe('samples', () => {
     draft.parts = [buildPart({ key: 'R', slips: [] })];
     const { body } = await lead.post('/api/problems/sample').send({ draft }).expect(200);
     for (const { givens, parts } of body.variants) {
-      expect(givens.R.printed).toMatch(/^\d\.\d$/);
+      expect(givens.R.printed).toMatch(/^\d\.\d{1,2}$/);
       expect(parts[0].key.value).toBe(Number(givens.R.printed));
     }
+  });
+
+  it('derives givens with units, printed in their own', async () => {
+    const draft = buildDraft();
+    const given = { ...draft.givens[0]!, kind: 'derived' as const, significantFigures: '3' };
+    draft.givens.push(
+      { ...given, name: 'kappa', kind: 'fixed', value: '3', unit: 'MHz' },
+      { ...given, name: 'tau', expression: '1/kappa', unit: 'us' },
+      { ...given, name: 'bare', expression: '2*kappa', unit: '' },
+      { ...given, name: 'wrong', expression: '2*kappa', unit: 'm' },
+    );
+    draft.parts = [buildPart({ key: 'kappa*tau', slips: [] })];
+    const { body } = await lead.post('/api/problems/sample').send({ draft }).expect(200);
+    expect(body.variants[0].givens.tau).toEqual({ value: 0.333, printed: '0.333', unit: 'us' });
+    expect(body.variants[0].parts[0].key.value).toBeCloseTo(0.999, 12);
+    const faults = body.faults.filter((fault: { path: unknown[] }) => fault.path[0] === 'givens');
+    expect(faults.map((fault: { path: unknown[] }) => fault.path[1])).toEqual([4, 5]);
+    expect(faults[0].message).toContain('name the unit');
+    expect(faults[1].message).toContain('which is no m');
   });
 
   it('names givens that are derived in a circle', async () => {

@@ -14,6 +14,9 @@ interface SampleOptions {
   readonly seed: string;
 }
 
+/** How long an author waits for a sample at most, in milliseconds. */
+const longestSample = 8000;
+
 /**
  * Sample variants of a draft: whatever of it is in order is drawn and evaluated, the rest is named among the faults.
  */
@@ -21,16 +24,19 @@ export async function sampleDraft(keys: Keys, draft: ProblemDraft, options: Samp
   const read = readDraft(draft);
   const content = { givens: read.givens.map(({ given }) => given), convention: draft.convention };
   const numbers = sampleNumbers(content, options);
+  const deadline = performance.now() + longestSample;
   const derived = await deriveGivens(
     keys,
     content,
     numbers.map((number) => plainGivensOf(content, number)),
+    deadline,
   );
   const results = await evaluateKeys(
     keys,
     draft.parts.map(draftExpressions),
     draft.convention,
     derived.map((variant) => variant.givens),
+    deadline,
   );
   const numbered = areNumbered(content);
   return {

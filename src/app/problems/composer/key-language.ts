@@ -152,5 +152,5 @@ const signatureHelp: Extension = [
     provide: (field) => showTooltip.from(field),
   }),
   // Who leaves the field has no need of help with it.
-  EditorView.theme({ '&:not(.cm-focused) ~ .cm-tooltip, &:not(.cm-focused) .cm-signature': { display: 'none' } }),
+  EditorView.theme({ '&:not(.cm-focused) .cm-signature': { display: 'none' } }),
 ];
