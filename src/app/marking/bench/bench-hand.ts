@@ -1,22 +1,15 @@
 import { LiveAnnouncer } from '@angular/cdk/a11y';
+import { takeUntilDestroyed } from '@angular/core/rxjs-interop';
 import { DestroyRef, Injectable, computed, effect, inject, signal, untracked } from '@angular/core';
 import { firstValueFrom, type Observable } from 'rxjs';
 import { currentAnswer, type BenchAnswer, type BenchOutcome, type CurrentAnswer, type Held } from '@shared/marking';
 import { MarkingApi, type TakeWish } from '../../core/api/marking-api';
+import { LiveConnection } from '../../core/live-connection';
 import { RequestFailure, sentenceOf } from '../../core/api/request-failure';
 import { dropDraft, firstDraft, keepDraft, keptDraft, totalOf, type BenchDraft } from './bench-draft';
+import { BenchNotices } from './bench-notices';
 import { HoldKeeper } from './hold-keeper';
 import { PileWatch } from './pile-watch';
-
-/** Something that did not go as wished: what happened to which answer, and what can be done. */
-export interface BenchNotice {
-  readonly answerId: string | null;
-  readonly text: string;
-  /** Whether the answer can be taken in hand again. */
-  readonly canTake: boolean;
-  /** Whether the same save can be tried again as it was. */
-  readonly retry: (() => void) | null;
-}
 
 /** A save that was done, and can be taken back. */
 export interface LastSave {
@@ -26,6 +19,8 @@ export interface LastSave {
   readonly at: number;
   readonly version: number;
   readonly markId: string;
+  /** What was put down, so that taking it back loses nothing. */
+  readonly draft: BenchDraft | null;
 }
 
 const nothingHeld: Held = { sequence: 0, inHand: null, reserved: [], expiresAt: null };
@@ -38,13 +33,14 @@ const nothingHeld: Held = { sequence: 0, inHand: null, reserved: [], expiresAt: 
 export class BenchHand {
   private readonly api = inject(MarkingApi);
   private readonly announcer = inject(LiveAnnouncer);
+  private readonly live = inject(LiveConnection);
   private readonly watch = inject(PileWatch);
   private readonly keeper = inject(HoldKeeper);
+  private readonly notices = inject(BenchNotices);
   private readonly heldNow = signal<Held>(nothingHeld);
   private readonly details = signal<ReadonlyMap<string, BenchAnswer>>(new Map());
   private readonly drafts = signal<ReadonlyMap<string, BenchDraft>>(new Map());
   private readonly lookedAt = signal<string | null>(null);
-  private readonly noticed = signal<BenchNotice | null>(null);
   private readonly last = signal<LastSave | null>(null);
   private readonly underWay = signal(0);
   /** Acts at one bench happen one after the other. */
@@ -61,7 +57,6 @@ export class BenchHand {
   });
   /** The answer that is only looked at; null where the one in hand is shown. */
   readonly looking = this.lookedAt.asReadonly();
-  readonly notice = this.noticed.asReadonly();
   readonly lastSave = this.last.asReadonly();
   readonly isSaving = computed(() => this.underWay() > 0);
 
@@ -73,7 +68,10 @@ export class BenchHand {
   readonly canMark = computed(() => this.lookedAt() === null && this.inHand() !== null);
   readonly draft = computed<BenchDraft | null>(() => {
     const answer = this.current();
-    return answer ? (this.drafts().get(answer.id) ?? firstDraft(answer)) : null;
+    if (!answer) return null;
+    // A mark that is not this person's to see is not guessed at.
+    if (this.lookedAt() !== null && answer.standing === null) return null;
+    return this.drafts().get(answer.id) ?? firstDraft(answer);
   });
   readonly total = computed(() => totalOf(this.draft()?.awarded ?? [], this.watch.pile()?.criteria ?? []));
   /** Whether the mark that stands is not this person's, so that a change needs a reason. */
@@ -96,6 +94,10 @@ export class BenchHand {
           if ((answers.get(id)?.version ?? 0) > detail.version && this.shown().includes(id)) void this.fetch(id);
       });
     });
+    this.live.rejoined.pipe(takeUntilDestroyed()).subscribe(() => {
+      this.notices.retryAll();
+      void this.renew();
+    });
     inject(DestroyRef).onDestroy(() => {
       this.keeper.stop();
     });
@@ -108,17 +110,20 @@ export class BenchHand {
 
   /** Takes an answer in hand: a named one, the next of a pattern, or simply the next. */
   take(wish: TakeWish = {}): Promise<void> {
+    const { answerId } = wish;
+    if (answerId !== undefined && !this.isForMe(answerId)) return this.lookAt(answerId);
     return this.inTurn(async () => {
       const pileId = this.watch.pile()?.id;
       if (!pileId) return;
       try {
         this.hold(await firstValueFrom(this.api.take(pileId, this.watch.benchId, wish)));
         this.lookedAt.set(null);
-        this.noticed.set(null);
+        this.notices.close(this.inHand());
+        this.notices.close(null);
         this.announce();
       } catch (error) {
-        if (wish.answerId === undefined) this.tell(sentenceOf(error), null);
-        else await this.lookAt(wish.answerId, error);
+        this.notices.tell({ text: sentenceOf(error) });
+        if (answerId !== undefined) await this.lookAt(answerId);
       }
     });
   }
@@ -126,7 +131,7 @@ export class BenchHand {
   /** Goes back from an answer that was looked at to the one in hand. */
   goBack(): void {
     this.lookedAt.set(null);
-    this.noticed.set(null);
+    this.notices.close(null);
   }
 
   /** Awards a criterion, or takes the award back. */
@@ -143,15 +148,15 @@ export class BenchHand {
     this.changeDraft((draft) => ({ ...draft, ...text }));
   }
 
-  /** Saves the mark of the answer in hand, and shows the next at once. */
-  save(): void {
+  /** Saves the mark of the answer in hand, and shows the next at once. @returns whether there was something to save */
+  save(): boolean {
     const answer = this.current();
     const draft = this.draft();
     const pile = this.watch.pile();
-    if (!answer || !draft || !pile || !this.canMark()) return;
+    if (!answer || !draft || !pile || !this.canMark()) return false;
     if (this.needsReason() && draft.reason.trim() === '') {
-      this.tell('Say why the mark changes: it is not your own.', answer.id);
-      return;
+      this.notices.tell({ answerId: answer.id, text: 'Say why the mark changes: it is not your own.' });
+      return false;
     }
     this.keepDraftOf(answer.id, draft);
     this.showNext();
@@ -163,6 +168,7 @@ export class BenchHand {
         ...(draft.reason.trim() ? { reason: draft.reason.trim() } : {}),
       }),
     );
+    return true;
   }
 
   /** Sets the answer in hand aside for the lead. */
@@ -182,29 +188,23 @@ export class BenchHand {
     );
   }
 
-  /** Takes the last save back, and its answer in hand again. */
+  /** Takes the last save back, and its answer in hand again, with what was put down. */
   undo(): void {
     const save = this.last();
     if (!save) return;
     this.last.set(null);
     void this.inTurn(async () => {
+      const { answerId, version, markId, draft } = save;
       try {
-        const outcome = await firstValueFrom(
-          this.api.undoMark(save.answerId, save.version, this.watch.benchId, save.markId),
-        );
+        const outcome = await firstValueFrom(this.api.undoMark(answerId, version, this.watch.benchId, markId));
         this.watch.learn(outcome.answer);
-        this.details.update((details) => without(details, save.answerId));
+        this.details.update((details) => without(details, answerId));
+        if (draft) this.keepDraftOf(answerId, { ...draft, key: crypto.randomUUID() });
         void this.announcer.announce(`The mark of ${save.code} was taken back.`, 'polite');
       } catch (error) {
-        this.tell(sentenceOf(error), null);
-        return;
+        this.notices.tell({ text: sentenceOf(error) });
       }
     }).then(() => this.take({ answerId: save.answerId }));
-  }
-
-  /** Closes the notice; a draft that it was about is forgotten where the answer is not in hand. */
-  dismiss(): void {
-    this.noticed.set(null);
   }
 
   private send(answer: BenchAnswer, request: () => Observable<BenchOutcome>): Promise<void> {
@@ -214,8 +214,8 @@ export class BenchHand {
       try {
         const outcome = await firstValueFrom(request());
         this.watch.learn(outcome.answer);
-        this.forget(answer.id);
         if (outcome.mark) this.remember(answer, outcome);
+        this.forget(answer.id);
         if (this.underWay() === 1) this.hold(outcome.held);
       } catch (error) {
         this.refused(answer, error, () => void this.send(answer, request));
@@ -228,26 +228,25 @@ export class BenchHand {
   private remember(answer: BenchAnswer, { mark, version }: BenchOutcome): void {
     if (!mark) return;
     const { id: answerId, code } = answer;
-    this.last.set({ answerId, code, total: mark.total, at: mark.at, version, markId: mark.id });
+    const draft = this.drafts().get(answerId) ?? null;
+    this.last.set({ answerId, code, total: mark.total, at: mark.at, version, markId: mark.id, draft });
   }
 
   private refused(answer: BenchAnswer, error: unknown, retry: () => void): void {
     const current = currentIn(error);
+    const { id: answerId, code } = answer;
     if (current) {
       this.watch.learn(current);
-      const holder = current.hold ? this.watch.team().get(current.hold.holder) : undefined;
-      const mine = current.hold?.holder === this.watch.pile()?.me;
-      const text =
-        holder && !mine
-          ? `${lastName(holder.name)} holds ${answer.code} now; your draft is kept.`
-          : `${answer.code} was not saved: ${sentenceOf(error)}`;
-      this.noticed.set({ answerId: answer.id, text, canTake: !holder || mine, retry: null });
+      const holder = this.otherHolder(answerId);
+      const text = holder
+        ? `${lastName(holder.name)} holds ${code} now; your draft is kept.`
+        : `${code} was not saved: ${sentenceOf(error)}`;
+      this.notices.tell({ answerId, text, canTake: !holder });
     } else {
       const again = error instanceof RequestFailure && (error.isOffline || error.details.status >= 500) ? retry : null;
-      const text = `${answer.code} is not saved yet. ${sentenceOf(error)}`;
-      this.noticed.set({ answerId: answer.id, text, canTake: again === null, retry: again });
+      const text = `${code} is not saved yet. ${sentenceOf(error)}`;
+      this.notices.tell({ answerId, text, canTake: again === null, retry: again });
     }
-    void this.announcer.announce(this.noticed()?.text ?? '', 'assertive');
     // Whether what is shown as in hand is held after all, the server says.
     setTimeout(() => void this.renew());
   }
@@ -267,33 +266,42 @@ export class BenchHand {
     }
   }
 
+  /** The hold in hand has ended. Where nobody else took it, it is simply taken again; the draft is kept either way. */
   private lose(answerId: string): void {
-    const answer = this.details().get(answerId);
     const draft = this.drafts().get(answerId);
     if (draft) keepDraft(answerId, draft);
-    const hold = this.watch.answers().get(answerId)?.hold;
-    const holder = hold ? this.watch.team().get(hold.holder) : undefined;
-    const code = answer?.code ?? 'this answer';
-    this.noticed.set({
-      answerId,
-      text: holder
-        ? `${lastName(holder.name)} holds ${code} now; your draft is kept.`
-        : `Your hold on ${code} has ended; your draft is kept.`,
-      canTake: !holder,
-      retry: null,
-    });
     this.heldNow.set(nothingHeld);
-    void this.announcer.announce(this.noticed()?.text ?? '', 'assertive');
-  }
-
-  private async lookAt(answerId: string, error: unknown): Promise<void> {
-    await this.fetch(answerId);
-    if (!this.details().has(answerId)) {
-      this.tell(sentenceOf(error), null);
+    const code = this.details().get(answerId)?.code ?? 'this answer';
+    const holder = this.otherHolder(answerId);
+    if (!holder && this.watch.answers().get(answerId)?.state === 'waits') {
+      void this.take({ answerId });
       return;
     }
-    this.lookedAt.set(answerId);
-    this.tell(sentenceOf(error), null);
+    const text = holder
+      ? `${lastName(holder.name)} holds ${code} now; your draft is kept.`
+      : `Your hold on ${code} has ended; your draft is kept.`;
+    this.notices.tell({ answerId, text, canTake: !holder });
+  }
+
+  /** A colleague who holds an answer, as far as the pile tells. */
+  private otherHolder(answerId: string) {
+    const hold = this.watch.answers().get(answerId)?.hold;
+    return hold && hold.holder !== this.watch.pile()?.me ? this.watch.team().get(hold.holder) : undefined;
+  }
+
+  /** Whether an answer is this person's to take in hand, as far as the pile tells; the server decides. */
+  private isForMe(answerId: string): boolean {
+    const pile = this.watch.pile();
+    const answer = this.watch.answers().get(answerId);
+    if (!pile || !answer) return true;
+    if (!pile.open || this.otherHolder(answerId)) return false;
+    if (pile.seesAllMarks || answer.state === 'waits') return true;
+    return answer.state === 'marked' && answer.markerId === pile.me;
+  }
+
+  private async lookAt(answerId: string): Promise<void> {
+    if (!this.details().has(answerId)) await this.fetch(answerId);
+    if (this.details().has(answerId)) this.lookedAt.set(answerId);
   }
 
   private hold(held: Held): void {
@@ -313,7 +321,7 @@ export class BenchHand {
   private showNext(): void {
     const { reserved, ...held } = this.heldNow();
     this.heldNow.set({ ...held, inHand: reserved[0] ?? null, reserved: reserved.slice(1) });
-    this.noticed.set(null);
+    this.notices.close(null);
     this.announce();
   }
 
@@ -324,7 +332,7 @@ export class BenchHand {
       const detail = await firstValueFrom(this.api.benchAnswer(answerId));
       this.details.update((details) => new Map(details).set(answerId, detail));
     } catch (error) {
-      this.tell(sentenceOf(error), null);
+      this.notices.tell({ text: sentenceOf(error) });
     } finally {
       this.fetching.delete(answerId);
     }
@@ -346,11 +354,6 @@ export class BenchHand {
     this.drafts.update((drafts) => without(drafts, answerId));
     this.details.update((details) => without(details, answerId));
     dropDraft(answerId);
-  }
-
-  private tell(text: string, answerId: string | null): void {
-    this.noticed.set({ answerId, text, canTake: false, retry: null });
-    void this.announcer.announce(text, 'assertive');
   }
 
   private announce(): void {

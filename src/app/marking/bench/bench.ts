@@ -28,6 +28,7 @@ import { Dock } from '../dock/dock';
 import { AnswerCard, type CardPlace } from '../light-table/answer-card';
 import { BenchHand } from './bench-hand';
 import { benchKeys, chooseSingleKeys, criterionKeys, singleKeysChosen, takesEnter, takesText } from './bench-keys';
+import { BenchNotices } from './bench-notices';
 import { HoldKeeper } from './hold-keeper';
 import { PileWatch } from './pile-watch';
 
@@ -40,7 +41,7 @@ const cardPlaces: readonly CardPlace[] = ['in hand', 'next', 'after that'];
 @Component({
   selector: 'app-bench',
   imports: [AnswerCard, Dock, ErrorState, FormulaText, FringeStrip, MarkerToken, MatButtonModule, RouterLink],
-  providers: [PileWatch, BenchHand, HoldKeeper],
+  providers: [PileWatch, BenchHand, BenchNotices, HoldKeeper],
   templateUrl: './bench.html',
   styleUrl: './bench.scss',
   host: { '(document:keydown)': 'steer($event)' },
@@ -286,9 +287,8 @@ export default class Bench {
   }
 
   private saveFromKeyboard(): void {
-    this.hand.save();
     // Away from the remark, so that single keys act on the next answer.
-    if (this.hand.notice() === null) this.table()?.nativeElement.focus({ preventScroll: true });
+    if (this.hand.save()) this.table()?.nativeElement.focus({ preventScroll: true });
   }
 
   private isMine(answer: PileAnswer): boolean {

@@ -15,6 +15,7 @@ import type { Criterion } from '@shared/problems';
 import { CriterionToggle } from '../../ui/criterion-toggle/criterion-toggle';
 import { FormulaText } from '../../ui/formula-text/formula-text';
 import { BenchHand } from '../bench/bench-hand';
+import { BenchNotices } from '../bench/bench-notices';
 import { criterionKeys } from '../bench/bench-keys';
 
 /** Where marks are given: the mark scheme, the remark, the total, and what to do with the answer. */
@@ -27,6 +28,7 @@ import { criterionKeys } from '../bench/bench-keys';
 })
 export class Dock {
   protected readonly hand = inject(BenchHand);
+  protected readonly notices = inject(BenchNotices);
   private readonly remark = viewChild<ElementRef<HTMLTextAreaElement>>('remark');
   private readonly reason = viewChild<ElementRef<HTMLTextAreaElement>>('asideReason');
   private readonly dialog = viewChild<ElementRef<HTMLDialogElement>>('asideDialog');
