@@ -1,5 +1,5 @@
 import { mkdirSync } from 'node:fs';
-import { createServer } from 'node:http';
+import { createServer, type Server } from 'node:http';
 import { join } from 'node:path';
 import { pino } from 'pino';
 import { openDatabase } from '@drizzle/client';
@@ -40,7 +40,7 @@ async function main(): Promise<void> {
     process.stdout.write('\n');
   }
 
-  await new Promise<void>((resolve) => server.listen(config.port, config.host, resolve));
+  await listen(server, config);
   await announce(context, config);
 
   const transport = config.smtpUrl ? smtpTransport(config.smtpUrl, config.mailFrom) : null;
@@ -77,6 +77,21 @@ async function main(): Promise<void> {
   };
   process.on('SIGINT', stop);
   process.on('SIGTERM', stop);
+}
+
+function listen(server: Server, { port, host }: Config): Promise<void> {
+  return new Promise((resolve, reject) => {
+    server.once('error', (error: NodeJS.ErrnoException) => {
+      reject(
+        error.code === 'EADDRINUSE'
+          ? new Error(
+              `Port ${String(port)} is in use by another program. Choose another one, for example: PORT=4400 npm start`,
+            )
+          : error,
+      );
+    });
+    server.listen(port, host, resolve);
+  });
 }
 
 async function onBeat(context: Context, transport: ReturnType<typeof smtpTransport> | null): Promise<void> {
