@@ -55,10 +55,10 @@ export function agreement(
 /** A method's relative error, where the value is not 0; otherwise its absolute one. */
 const errorRank = (outcome: MethodValue): number => outcome.error / Math.max(largest(outcome.value), 1e-300);
 
-/** A method that is ten times surer goes first; otherwise the order of the methods decides. */
-const BETTER = 10;
+/** A method that is four times surer goes first; otherwise the order of the methods decides. */
+const BETTER = 4;
 /** Below this estimate a method's rounding does not matter. */
-const GOOD_ENOUGH = 1e-13;
+const GOOD_ENOUGH = 1e-14;
 
 /**
  * Chooses the surest of the methods that found a value and holds it against the next.

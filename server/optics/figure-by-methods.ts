@@ -1,6 +1,6 @@
 import type { Figure, FigureValue } from './figures';
-import { MethodDoesNotApply } from './method-does-not-apply';
-import type { MethodName, MethodOutcome, MethodValue } from './methods';
+import { MethodDoesNotApply, StateVanishes } from './method-does-not-apply';
+import { isValue, type MethodName, type MethodOutcome, type MethodValue } from './methods';
 import { figureOfMoments, isMomentFigure } from './moments/moment-figures';
 import { momentsOf } from './moments/moments-of-state';
 import { numberFigure } from './number-basis/number-figures';
@@ -21,7 +21,7 @@ interface Found {
 }
 
 /** One method's way to a figure. */
-function attempt(method: MethodName, find: () => Found, tolerance: number): MethodOutcome {
+function attempt(method: MethodName, find: () => Found, tolerance: number, vanished: StateVanishes[]): MethodOutcome {
   try {
     const { value, error, dimension, outsideWeight } = find();
     const scale = scaleOf(value);
@@ -40,6 +40,7 @@ function attempt(method: MethodName, find: () => Found, tolerance: number): Meth
     };
     return found;
   } catch (error) {
+    if (error instanceof StateVanishes) vanished.push(error);
     if (error instanceof MethodDoesNotApply) return { method, notApplicable: error.message };
     throw error;
   }
@@ -76,13 +77,19 @@ export function figureByMethods(figure: Figure, choice: MethodChoice = {}): read
   const wanted = choice.methods ?? ['phase space', 'number basis', 'moments'];
   const tolerance = figure.kind === 'wignerNegativity' ? 1e-6 : RELATIVE;
   const outcomes: MethodOutcome[] = [];
-  if (wanted.includes('phase space')) outcomes.push(attempt('phase space', () => phaseSpaceFigure(figure), tolerance));
-  if (wanted.includes('number basis')) outcomes.push(attempt('number basis', () => numberFigure(figure), tolerance));
+  const vanished: StateVanishes[] = [];
+  if (wanted.includes('phase space'))
+    outcomes.push(attempt('phase space', () => phaseSpaceFigure(figure), tolerance, vanished));
+  if (wanted.includes('number basis'))
+    outcomes.push(attempt('number basis', () => numberFigure(figure), tolerance, vanished));
   if (wanted.includes('moments') && isMomentFigure(figure)) {
-    outcomes.push(attempt('moments', () => figureOfMoments(figure, momentsOf(figure.state)), tolerance));
+    outcomes.push(attempt('moments', () => figureOfMoments(figure, momentsOf(figure.state)), tolerance, vanished));
+  }
+  if (vanished.length > 0 && !outcomes.some(isValue)) {
+    throw new OpticsError(
+      'the state vanishes: a superposition cancels to rounding, or a condition has no probability, so that nothing is left to normalise',
+      { functionName: figure.kind, given: figure.state, allowed: 'a state whose norm does not vanish' },
+    );
   }
   return outcomes;
 }
-
-/** The error of a figure for which no method has an answer; kept here so that callers need not build it. */
-export const isOpticsError = (error: unknown): error is OpticsError => error instanceof OpticsError;

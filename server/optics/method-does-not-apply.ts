@@ -5,3 +5,11 @@ export class MethodDoesNotApply extends Error {
     this.name = 'MethodDoesNotApply';
   }
 }
+
+/** Thrown where a state cannot be normalised: it vanishes, or its condition never happens. */
+export class StateVanishes extends MethodDoesNotApply {
+  constructor(reason: string) {
+    super(reason);
+    this.name = 'StateVanishes';
+  }
+}

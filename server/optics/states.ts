@@ -1,5 +1,5 @@
 import { ArgumentReader, LARGEST_PHOTON_NUMBER, LARGEST_SQUEEZING } from './arguments';
-import { ONE, divide, multiply, phase, times, type Complex } from './complex';
+import { ONE, abs2, divide, multiply, phase, times, type Complex } from './complex';
 import { defaultConvention, type Convention } from './convention';
 import { OpticsError } from './optics-error';
 import { isState, type Mode, type State, type SuperpositionTerm } from './state';
@@ -121,7 +121,13 @@ export const stateFunctions = {
     const reader = new ArgumentReader('cat', args);
     reader.expectCount(1, 2);
     const alpha = reader.amplitude(0);
-    return { kind: 'cat', modes: 1, pure: true, alpha, theta: reader.real(1, 'phase', 0) };
+    const theta = reader.real(1, 'phase', 0);
+    const half = Math.cos(theta / 2);
+    // 1 + cos θ e^{−2|α|²} without cancellation.
+    if (2 * half * half + Math.cos(theta) * Math.expm1(-2 * abs2(alpha)) < 1e-30) {
+      reader.refuse(0, 'amplitude', 'be large enough for the difference of the two coherent states not to vanish');
+    }
+    return { kind: 'cat', modes: 1, pure: true, alpha, theta };
   },
 
   displaced: (args) => {

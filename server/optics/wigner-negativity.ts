@@ -128,64 +128,155 @@ function rootOf(f: (x: number) => number, from: number, to: number): number {
   return (a + b) / 2;
 }
 
-/** Lines of constant p: each is integrated exactly between its zeros by interpolation, then over p. */
-function planeNegativity(levels: number, grid: WignerGrid): NegativityEstimate {
-  const radius = radiusOf(levels);
-  const coarse = planeSum(grid, radius, Math.min(600, Math.max(200, 10 * levels)));
-  const fine = planeSum(grid, radius, Math.min(1200, Math.max(400, 20 * levels)));
-  // Kinks along the zero lines leave errors of second order and better; halving the step measures them.
-  const value = Math.max(0, fine - 1);
-  return { value, error: Math.abs(fine - coarse) + 1e-11 };
-}
-
-function planeSum(grid: WignerGrid, radius: number, steps: number): number {
-  const h = (2 * radius) / steps;
-  const xs = Float64Array.from({ length: steps + 1 }, (_, k) => -radius + h * k);
-  const values = grid(xs, xs);
-  const side = steps + 1;
-  let total = 0;
-  for (let i = 0; i < side; i++) total += lineSum(values.subarray(i * side, (i + 1) * side), h);
-  return total * h;
-}
-
-/** ∫|f| of a smooth sampled function: the trapezoid rule, exact to all orders, corrected at each zero. */
-function lineSum(f: Float64Array, h: number): number {
-  let sum = 0;
-  for (let k = 0; k < f.length; k++) sum += Math.abs(f[k]!);
-  let correction = 0;
-  for (let k = 1; k + 2 < f.length; k++) {
-    const [a, b] = [f[k]!, f[k + 1]!];
-    if (a * b >= 0) continue;
-    correction += kinkCorrection(f[k - 1]!, a, b, f[k + 2]!);
-  }
-  return (sum + correction) * h;
-}
+/** Samples of a sign below this part of the largest value are rounding. */
+const NOISE = 1e-14;
+/** Most lines of constant p that are looked at. */
+const MOST_LINES = 6000;
 
 /**
- * What the trapezoid rule misses of |f| in a cell where f changes sign: Euler and Maclaurin's terms of both sides at
- * the zero, in units of the step, from the cubic through four samples.
+ * 2 ∫ dp ∫ |W| over the negative stretches of each line of constant p (∫W = 1 is exact).
+ *
+ * Stretches appear and vanish at values of p where the integral over x has a branch point of power 3/2; these are
+ * found first, and between them p = middle − half cos θ makes the integrand smooth for Gauss and Legendre.
  */
-function kinkCorrection(before: number, a: number, b: number, after: number): number {
-  // Cubic through −1, 0, 1, 2.
-  const c0 = a;
-  const c2 = (before + b) / 2 - a;
-  const c3 = (after - 3 * b + 3 * a - before) / 6;
-  const c1 = (b - before) / 2 - c3;
-  const value = (t: number) => c0 + t * (c1 + t * (c2 + t * c3));
-  let [low, high] = [0, 1];
-  for (let step = 0; step < 50; step++) {
-    const middle = (low + high) / 2;
-    if (value(middle) * a > 0) low = middle;
-    else high = middle;
+function planeNegativity(levels: number, grid: WignerGrid): NegativityEstimate {
+  const radius = radiusOf(levels);
+  const step = Math.min(0.12, 1.2 / Math.sqrt(levels + 1));
+  const count = Math.ceil((2 * radius) / step);
+  // Not symmetric about 0, where many states have zero lines.
+  const xs = Float64Array.from({ length: count + 1 }, (_, k) => -radius + 0.37 * step + step * k);
+  const coarse = grid(xs, xs);
+  const floor = NOISE * coarse.reduce((most, v) => Math.max(most, Math.abs(v)), 0);
+  const search: LineSearch = { grid, xs, floor, lines: 0 };
+  const breaks: number[] = [];
+  const counts = Array.from(
+    { length: count + 1 },
+    (_, i) => signChanges(coarse.subarray(i * (count + 1), (i + 1) * (count + 1)), floor).length,
+  );
+  for (let i = 0; i < count; i++) findBreaks(search, xs[i]!, counts[i]!, xs[i + 1]!, counts[i + 1]!, breaks);
+  const ends = [xs[0]!, ...breaks, xs[count]!];
+  const [high, low] = [integrateBetween(search, ends, 24), integrateBetween(search, ends, 16)];
+  return { value: 2 * high, error: 2 * Math.abs(high - low) + 1e-11 };
+}
+
+interface LineSearch {
+  readonly grid: WignerGrid;
+  readonly xs: Float64Array;
+  readonly floor: number;
+  lines: number;
+}
+
+function lineOf(search: LineSearch, p: number): Float64Array {
+  if (++search.lines > MOST_LINES) throw new MethodDoesNotApply('the zero lines of the Wigner function are too many');
+  return search.grid(search.xs, Float64Array.of(p));
+}
+
+/** Pairs of samples between which a line changes sign; samples that are rounding are passed over. */
+function signChanges(values: Float64Array, floor: number): (readonly [number, number])[] {
+  const changes: (readonly [number, number])[] = [];
+  let last = -1;
+  for (let k = 0; k < values.length; k++) {
+    if (Math.abs(values[k]!) <= floor) continue;
+    if (last >= 0 && values[last]! * values[k]! < 0) changes.push([last, k]);
+    last = k;
   }
-  const t = (low + high) / 2;
-  const sign = a > 0 ? 1 : -1;
-  const d1 = (c1 + t * (2 * c2 + t * 3 * c3)) * sign;
-  const d2 = (2 * c2 + 6 * c3 * t) * sign;
-  const d3 = 6 * c3 * sign;
-  // ∫|f| − Σ|f| = Σ_m 2 B_m(t)/m! f^{(m−1)}(zero) with Bernoulli polynomials; f itself is 0 there.
-  const b2 = t * t - t + 1 / 6;
-  const b3 = t * (t * t - 1.5 * t + 0.5);
-  const b4 = t * t * (t * t - 2 * t + 1) - 1 / 30;
-  return -(d1 * b2) * -1 * 1 + d2 * (b3 / 3) * -1 + d3 * (b4 / 12);
+  return changes;
+}
+
+/** Values of p between two lines at which the number of sign changes differs. */
+function findBreaks(search: LineSearch, p1: number, n1: number, p2: number, n2: number, breaks: number[]): void {
+  if (n1 === n2) return;
+  if (p2 - p1 < 1e-7) {
+    breaks.push((p1 + p2) / 2);
+    return;
+  }
+  const middle = (p1 + p2) / 2;
+  const n = signChanges(lineOf(search, middle), search.floor).length;
+  findBreaks(search, p1, n1, middle, n, breaks);
+  findBreaks(search, middle, n, p2, n2, breaks);
+}
+
+function integrateBetween(search: LineSearch, ends: readonly number[], nodes: number): number {
+  const rule = gaussLegendre(nodes);
+  let total = 0;
+  for (let k = 0; k + 1 < ends.length; k++) {
+    const [from, to] = [ends[k]!, ends[k + 1]!];
+    const pieces = Math.max(1, Math.ceil((to - from) / 1.5));
+    for (let piece = 0; piece < pieces; piece++) {
+      // θ runs over [0, π] in pieces.
+      const a = (Math.PI * piece) / pieces;
+      const b = (Math.PI * (piece + 1)) / pieces;
+      for (const { x, w } of rule) {
+        const theta = (a + b) / 2 + (x * (b - a)) / 2;
+        const p = (from + to) / 2 - ((to - from) / 2) * Math.cos(theta);
+        const slope = ((to - from) / 2) * Math.sin(theta) * ((b - a) / 2);
+        total += w * slope * negativeOf(search, p);
+      }
+    }
+  }
+  return total;
+}
+
+/** ∫|W| dx over the negative stretches of one line. */
+function negativeOf(search: LineSearch, p: number): number {
+  const { xs, grid } = search;
+  const line = Float64Array.of(p);
+  const values = lineOf(search, p);
+  const changes = signChanges(values, search.floor);
+  if (changes.length === 0) return 0;
+  const roots = rootsOf((at) => grid(at, line), xs, values, changes);
+  const first = changes[0]!;
+  // Stretches between roots alternate in sign; those that begin or end outside are rounding.
+  const edges = [xs[0]!, ...roots, xs[xs.length - 1]!];
+  let negative = values[first[0]]! < 0;
+  let sum = 0;
+  for (let k = 0; k + 1 < edges.length; k++, negative = !negative) {
+    if (!negative) continue;
+    const pieces = Math.max(1, Math.ceil((edges[k + 1]! - edges[k]!) / 0.8));
+    for (let piece = 0; piece < pieces; piece++) {
+      const width = (edges[k + 1]! - edges[k]!) / pieces;
+      const from = edges[k]! + width * piece;
+      const at = Float64Array.from(NODES, ({ x }) => from + (width * (1 + x)) / 2);
+      const w = grid(at, line);
+      NODES.forEach((node, j) => (sum -= (w[j]! * node.w * width) / 2));
+    }
+  }
+  return sum;
+}
+
+/** Zeros of a line in given brackets, all at once: false position with halved ends (Illinois). */
+function rootsOf(
+  f: (xs: Float64Array) => Float64Array,
+  xs: Float64Array,
+  values: Float64Array,
+  brackets: readonly (readonly [number, number])[],
+): Float64Array {
+  const a = Float64Array.from(brackets, ([k]) => xs[k]!);
+  const b = Float64Array.from(brackets, ([, k]) => xs[k]!);
+  const fa = Float64Array.from(brackets, ([k]) => values[k]!);
+  const fb = Float64Array.from(brackets, ([, k]) => values[k]!);
+  const root = a.slice();
+  for (let step = 0; step < 40; step++) {
+    let widest = 0;
+    for (let k = 0; k < root.length; k++) {
+      root[k] = (a[k]! * fb[k]! - b[k]! * fa[k]!) / (fb[k]! - fa[k]!);
+      if (!(root[k]! > Math.min(a[k]!, b[k]!) && root[k]! < Math.max(a[k]!, b[k]!))) root[k] = (a[k]! + b[k]!) / 2;
+    }
+    const found = f(root);
+    for (let k = 0; k < root.length; k++) {
+      const value = found[k]!;
+      if (value * fb[k]! < 0) {
+        a[k] = b[k]!;
+        fa[k] = fb[k]!;
+      } else {
+        fa[k]! /= 2;
+      }
+      const moved = Math.abs(b[k]! - root[k]!);
+      b[k] = root[k]!;
+      fb[k] = value === 0 ? fb[k]! : value;
+      if (value !== 0) widest = Math.max(widest, moved);
+    }
+    if (widest < 1e-11) break;
+  }
+  return root.sort();
 }

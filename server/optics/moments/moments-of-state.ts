@@ -1,5 +1,5 @@
 import { abs, abs2, add, complex, conjugate, exponential, multiply, phase, times, type Complex } from '../complex';
-import { MethodDoesNotApply } from '../method-does-not-apply';
+import { MethodDoesNotApply, StateVanishes } from '../method-does-not-apply';
 import { binomial, fallingFactorial, logFactorial } from '../special/factorials';
 import { channelOf, type State, type Superposition } from '../state';
 import { productTermsOf, type ModeKet, type ProductTerm } from './product-terms';
@@ -253,7 +253,7 @@ function scaled({ value, error }: Moment, factor: Complex): Moment {
 
 function quotient(top: Moment, bottom: Moment): Moment {
   if (!(bottom.value.re > 16 * bottom.error)) {
-    throw new MethodDoesNotApply('the state that is left has no weight to rounding');
+    throw new StateVanishes('the state that is left has no weight to rounding');
   }
   const value = times(top.value, 1 / bottom.value.re);
   return { value, error: (top.error + abs(value) * bottom.error) / bottom.value.re + 2 * EPS * abs(value) };

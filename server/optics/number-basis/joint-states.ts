@@ -1,5 +1,5 @@
-import { abs2, phase, times, complex } from '../complex';
-import { MethodDoesNotApply } from '../method-does-not-apply';
+import { abs2, complex, times } from '../complex';
+import { MethodDoesNotApply, StateVanishes } from '../method-does-not-apply';
 import { channelOf, type State } from '../state';
 import { displacement, squeezer, type NumberUnitary } from './displaced-numbers';
 import {
@@ -217,7 +217,7 @@ function superposed(state: JointSuperposition, resolution: Resolution): Ensemble
   };
   let made = attempt(resolution);
   if (!(made.norm > 1e3 * made.noise * made.noise * made.reference)) {
-    throw new MethodDoesNotApply('the norm vanishes to rounding');
+    throw new StateVanishes('the norm vanishes to rounding');
   }
   if (made.outside / made.norm > 1.01 * Math.exp(resolution.logWeight)) {
     made = attempt({
@@ -263,7 +263,8 @@ export function ensembleOf(state: State, resolution: Resolution): Ensemble {
   const levels = Math.min(size.levels, highest);
   let amplitudes = 0;
   for (const left of first.kets) for (const right of second.kets) amplitudes += filled(left) * filled(right);
-  checkJointSize(amplitudes, first.kets.length * second.kets.length * 200);
+  // Every ket holds a list of blocks, most of them empty.
+  checkJointSize(Math.max(amplitudes, 4 * first.kets.length * second.kets.length * levels));
   const kets: JointKet[] = [];
   for (const left of first.kets) {
     for (const right of second.kets) {
@@ -323,7 +324,7 @@ export function outputOf(joint: JointState, mode: 1 | 2): NumberState {
 export function conditionedOnNumber(joint: JointState, mode: 1 | 2, n: number): Conditioned {
   if (joint.kind === 'factored') {
     const p = diagonalOf(mode === 1 ? joint.first : joint.second);
-    if (!((p.p[n] ?? 0) > 0)) throw new MethodDoesNotApply('the condition has no weight in the number basis');
+    if (!((p.p[n] ?? 0) > 0)) throw new StateVanishes('the condition has no weight in the number basis');
     return { state: mode === 1 ? joint.second : joint.first, probability: 1, reference: 1 };
   }
   const [only, ...others] = joint.kets;
@@ -346,7 +347,7 @@ export function conditionedOnClick(joint: JointState, mode: 1 | 2, eta: number, 
   if (joint.kind === 'factored') {
     const { p } = diagonalOf(mode === 1 ? joint.first : joint.second);
     const probability = p.reduce((sum, value, n) => sum + value * clickWeight(n, eta, dark), 0);
-    if (!(probability > 0)) throw new MethodDoesNotApply('the detector never tells anything');
+    if (!(probability > 0)) throw new StateVanishes('the detector never tells anything');
     return { state: mode === 1 ? joint.second : joint.first, probability: 1, reference: 1 };
   }
   return gather(joint, mode === 1 ? 2 : 1, (n) => clickWeight(n, eta, dark));
@@ -404,6 +405,3 @@ function gather(joint: Ensemble, kept: 1 | 2, weight: (other: number) => number)
   const state = simplest({ kind: 'density', levels, re, im, noise: 2 * noise, outside });
   return { state, probability, reference: 1 };
 }
-
-/** e^{iφ} as the modules here take it. */
-export const turnOf = phase;

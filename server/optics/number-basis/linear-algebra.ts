@@ -118,71 +118,105 @@ export function singularValues(columns: readonly { readonly re: Float64Array; re
 }
 
 /**
- * Eigenvalues of a Hermitian matrix by Jacobi rotations.
+ * Eigenvalues of a Hermitian matrix: Householder's reflections to three diagonals, then QL steps with shifts.
  *
- * @param re real part, row by row; changed in place
- * @param im imaginary part; changed in place
+ * A complex matrix A + iB is taken as the real one [[A, −B], [B, A]], whose eigenvalues are the same, each twice.
+ * @param re real part, row by row
+ * @param im imaginary part
+ * @returns the eigenvalues, each to about 1e-16 of the largest
  */
 export function hermitianEigenvalues(size: number, re: Float64Array, im: Float64Array): Float64Array {
-  let total = 0;
-  for (let k = 0; k < re.length; k++) total += re[k]! * re[k]! + im[k]! * im[k]!;
-  const small = 1e-34 * total;
-  for (let sweep = 0; sweep < 60; sweep++) {
-    let off = 0;
-    for (let p = 0; p < size - 1; p++) {
-      for (let q = p + 1; q < size; q++) {
-        const hRe = re[p * size + q]!;
-        const hIm = im[p * size + q]!;
-        const weight = hRe * hRe + hIm * hIm;
-        if (weight <= small / (size * size)) continue;
-        off += weight;
-        rotate(size, re, im, p, q, hRe, hIm);
-      }
+  if (im.every((value) => value === 0)) return symmetricEigenvalues(size, re.slice());
+  const double = 2 * size;
+  const wide = new Float64Array(double * double);
+  for (let i = 0; i < size; i++) {
+    for (let j = 0; j < size; j++) {
+      const [a, b] = [re[i * size + j]!, im[i * size + j]!];
+      wide[i * double + j] = a;
+      wide[(i + size) * double + j + size] = a;
+      wide[i * double + j + size] = -b;
+      wide[(i + size) * double + j] = b;
     }
-    if (off <= small) break;
   }
-  return Float64Array.from({ length: size }, (_, k) => re[k * size + k]!);
+  const twice = symmetricEigenvalues(double, wide).sort();
+  return Float64Array.from({ length: size }, (_, k) => (twice[2 * k]! + twice[2 * k + 1]!) / 2);
 }
 
-function rotate(
-  size: number,
-  re: Float64Array,
-  im: Float64Array,
-  p: number,
-  q: number,
-  hRe: number,
-  hIm: number,
-): void {
-  const h = Math.hypot(hRe, hIm);
-  const fRe = hRe / h;
-  const fIm = hIm / h;
-  const zeta = (re[q * size + q]! - re[p * size + p]!) / (2 * h);
-  const t = Math.sign(zeta || 1) / (Math.abs(zeta) + Math.hypot(1, zeta));
-  const c = 1 / Math.hypot(1, t);
-  const s = c * t;
-  // Columns: p' = c p − s f* q, q' = s f p + c q, with f = h_pq/|h_pq|.
-  for (let k = 0; k < size; k++) {
-    const pr = re[k * size + p]!;
-    const pi = im[k * size + p]!;
-    const qr = re[k * size + q]!;
-    const qi = im[k * size + q]!;
-    re[k * size + p] = c * pr - s * (fRe * qr + fIm * qi);
-    im[k * size + p] = c * pi - s * (fRe * qi - fIm * qr);
-    re[k * size + q] = s * (fRe * pr - fIm * pi) + c * qr;
-    im[k * size + q] = s * (fRe * pi + fIm * pr) + c * qi;
+/** Eigenvalues of a real symmetric matrix; the matrix is used up. */
+function symmetricEigenvalues(size: number, a: Float64Array): Float64Array {
+  const diagonal = new Float64Array(size);
+  const off = new Float64Array(size + 1);
+  const v = new Float64Array(size);
+  const w = new Float64Array(size);
+  for (let k = 0; k < size - 2; k++) {
+    // Reflect column k below the diagonal onto its first entry.
+    let norm = 0;
+    for (let i = k + 1; i < size; i++) norm += a[i * size + k]! ** 2;
+    const first = a[(k + 1) * size + k]!;
+    const rest = norm - first * first;
+    if (rest <= 1e-300) continue;
+    const alpha = first > 0 ? -Math.sqrt(norm) : Math.sqrt(norm);
+    const scale = 1 / (norm - first * alpha);
+    for (let i = k + 1; i < size; i++) v[i] = a[i * size + k]!;
+    v[k + 1]! -= alpha;
+    let inner = 0;
+    for (let i = k + 1; i < size; i++) {
+      let sum = 0;
+      for (let j = k + 1; j < size; j++) sum += a[i * size + j]! * v[j]!;
+      w[i] = sum * scale;
+      inner += w[i]! * v[i]!;
+    }
+    const half = (inner * scale) / 2;
+    for (let i = k + 1; i < size; i++) w[i]! -= half * v[i]!;
+    for (let i = k + 1; i < size; i++) {
+      const [vi, wi] = [v[i]!, w[i]!];
+      for (let j = k + 1; j < size; j++) a[i * size + j]! -= vi * w[j]! + wi * v[j]!;
+    }
+    a[(k + 1) * size + k] = alpha;
   }
   for (let k = 0; k < size; k++) {
-    const pr = re[p * size + k]!;
-    const pi = im[p * size + k]!;
-    const qr = re[q * size + k]!;
-    const qi = im[q * size + k]!;
-    re[p * size + k] = c * pr - s * (fRe * qr - fIm * qi);
-    im[p * size + k] = c * pi - s * (fRe * qi + fIm * qr);
-    re[q * size + k] = s * (fRe * pr + fIm * pi) + c * qr;
-    im[q * size + k] = s * (fRe * pi - fIm * pr) + c * qi;
+    diagonal[k] = a[k * size + k]!;
+    off[k] = k + 1 < size ? a[(k + 1) * size + k]! : 0;
   }
-  re[p * size + q] = 0;
-  im[p * size + q] = 0;
-  re[q * size + p] = 0;
-  im[q * size + p] = 0;
+  for (let low = 0; low < size; low++) {
+    for (let round = 0; round < 200; round++) {
+      let m = low;
+      for (; m < size - 1; m++) {
+        const scale = Math.abs(diagonal[m]!) + Math.abs(diagonal[m + 1]!);
+        if (Math.abs(off[m]!) <= 2 ** -53 * scale || Math.abs(off[m]!) < 1e-300) break;
+      }
+      if (m === low) break;
+      let g = (diagonal[low + 1]! - diagonal[low]!) / (2 * off[low]!);
+      const r0 = Math.hypot(g, 1);
+      g = diagonal[m]! - diagonal[low]! + off[low]! / (g + (g >= 0 ? r0 : -r0));
+      let s = 1;
+      let c = 1;
+      let p = 0;
+      let early = false;
+      for (let i = m - 1; i >= low; i--) {
+        const f = s * off[i]!;
+        const b = c * off[i]!;
+        const r = Math.hypot(f, g);
+        off[i + 1] = r;
+        if (r === 0) {
+          diagonal[i + 1]! -= p;
+          off[m] = 0;
+          early = true;
+          break;
+        }
+        s = f / r;
+        c = g / r;
+        g = diagonal[i + 1]! - p;
+        const t = (diagonal[i]! - g) * s + 2 * c * b;
+        p = s * t;
+        diagonal[i + 1] = g + p;
+        g = c * t - b;
+      }
+      if (early) continue;
+      diagonal[low]! -= p;
+      off[low] = g;
+      off[m] = 0;
+    }
+  }
+  return diagonal;
 }

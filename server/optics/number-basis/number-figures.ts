@@ -1,4 +1,4 @@
-import { abs, abs2, type Complex } from '../complex';
+import { abs, abs2, multiply, type Complex } from '../complex';
 import { quadratureScale } from '../convention';
 import type { Figure } from '../figures';
 import { gaussianOf } from '../gaussian/gaussian-state';
@@ -27,8 +27,6 @@ const EPS = 2 ** -52;
 /** A value's truncation error may be this part of it; otherwise the basis is made larger. */
 const WANTED = 1e-13;
 const MOST_ATTEMPTS = 4;
-/** Levels up to which a whole plane of a Wigner function is summed. */
-const MOST_PICTURE_LEVELS = 24;
 
 /**
  * A figure in a number basis; the basis grows until what is outside does not show in the value.
@@ -38,6 +36,10 @@ const MOST_PICTURE_LEVELS = 24;
  */
 export function numberFigure(figure: Figure): NumberFigure {
   let resolution: Resolution = { ...defaultResolution, least: leastLevels(figure) };
+  if (asksForEntries(figure)) {
+    const { value, error, dimension } = evaluate(figure, { ...resolution, logWeight: 0 });
+    return { value, error, dimension, outsideWeight: 0 };
+  }
   let found = evaluate(figure, resolution);
   for (let attempt = 1; attempt < MOST_ATTEMPTS; attempt++) {
     const size = sizeOf(found.value);
@@ -93,6 +95,39 @@ function leastLevels(figure: Figure): number {
 
 function of(state: NumberState, value: FigureEstimate['value'], error: number, truncation: number): Truncated {
   return { value, error, truncation, dimension: state.levels, outsideWeight: state.outside };
+}
+
+/** Figures of single entries of a basis, which need no more levels than themselves where entries stand alone. */
+function asksForEntries(figure: Figure): boolean {
+  switch (figure.kind) {
+    case 'photonProbability':
+    case 'photonDistribution':
+    case 'matrixElement':
+    case 'densityMatrix':
+      return entriesStandAlone(figure.state);
+    default:
+      return false;
+  }
+}
+
+/** Whether each entry in the number basis has a form of its own, whatever else is kept. */
+function entriesStandAlone(state: State): boolean {
+  switch (state.kind) {
+    case 'fock':
+    case 'coherent':
+    case 'thermal':
+    case 'squeezed':
+    case 'cat':
+      return true;
+    case 'phaseAveraged':
+    case 'dephased':
+    case 'phaseShift':
+      return state.modes === 1 && entriesStandAlone(state.state);
+    case 'mixture':
+      return state.modes === 1 && state.states.every(entriesStandAlone);
+    default:
+      return false;
+  }
 }
 
 function evaluate(figure: Figure, resolution: Resolution): Truncated {
@@ -155,8 +190,10 @@ function evaluate(figure: Figure, resolution: Resolution): Truncated {
       if (gaussianOf(state) !== undefined)
         throw new MethodDoesNotApply('a Gaussian Wigner function is left to phase space');
       const basis = numberState(state, resolution);
-      if (basis.levels > MOST_PICTURE_LEVELS && basis.kind !== 'diagonal') {
-        throw new MethodDoesNotApply('the Wigner function would take too long in a number basis');
+      if (basis.kind !== 'diagonal') {
+        throw new MethodDoesNotApply(
+          'only the Wigner functions of states without coherences are integrated in a number basis',
+        );
       }
       const found = negativityOf(state, (xs, ps) => {
         const values = new Float64Array(xs.length * ps.length);
@@ -306,17 +343,28 @@ function momentFigure(figure: MomentFigure, resolution: Resolution): Truncated {
     truncation = Math.max(truncation, 4 * outside * (levels + 10) ** order);
   };
   const { state } = figure;
-  const moment = (p: number, q: number, r = 0, s = 0): Moment => {
-    if (state.modes === 1) {
-      if (p === q) {
-        const diagonal = numberDiagonal(state, resolution);
-        note(diagonal.levels, diagonal.outside, p);
-        return diagonalMoment(diagonal, p);
-      }
-      const basis = numberState(state, resolution);
-      note(basis.levels, basis.outside, Math.ceil((p + q) / 2));
-      return oneModeMoment(basis, p, q);
+  const pushed = pushedIn(state);
+  const oneMode = (of: State, p: number, q: number): Moment => {
+    if (p + q === 0) return { value: { re: 1, im: 0 }, error: 0 };
+    if (p === q) {
+      const diagonal = numberDiagonal(of, resolution);
+      note(diagonal.levels, diagonal.outside, p);
+      return diagonalMoment(diagonal, p);
     }
+    const basis = numberState(of, resolution);
+    note(basis.levels, basis.outside, Math.ceil((p + q) / 2));
+    return oneModeMoment(basis, p, q);
+  };
+  const moment = (p: number, q: number, r = 0, s = 0): Moment => {
+    if (pushed.kind === 'product') {
+      const first = oneMode(pushed.first, p, q);
+      if (first.value.re === 0 && first.value.im === 0 && first.error === 0) return first;
+      const second = oneMode(pushed.second, r, s);
+      const value = multiply(first.value, second.value);
+      const error = first.error * abs(second.value) + second.error * abs(first.value) + EPS * abs(value);
+      return { value, error };
+    }
+    if (state.modes === 1) return oneMode(state, p, q);
     if (p === q && r === s) {
       const joint = jointDiagonal(state, resolution);
       note(joint.levels, joint.outside, p + r);

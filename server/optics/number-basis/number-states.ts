@@ -1,5 +1,5 @@
 import { abs2, phase, type Complex } from '../complex';
-import { MethodDoesNotApply } from '../method-does-not-apply';
+import { MethodDoesNotApply, StateVanishes } from '../method-does-not-apply';
 import { DEFAULT_LOG_WEIGHT, levelsFor } from '../photon-bounds';
 import { geometric, poisson } from '../special/distributions';
 import { channelOf, type Channel, type State } from '../state';
@@ -155,7 +155,7 @@ function conditioned(resolution: Resolution, make: (finer: Resolution) => Condit
   let outside = Infinity;
   for (let attempt = 0; attempt < 3; attempt++) {
     const ratio = made.probability / made.reference;
-    if (!(ratio > 1e-300)) throw new MethodDoesNotApply('the condition has no weight in the number basis');
+    if (!(ratio > 1e-300)) throw new StateVanishes('the condition has no weight in the number basis');
     outside = made.state.outside / ratio;
     if (outside <= Math.exp(resolution.logWeight) * 1.01) break;
     made = make({ ...resolution, logWeight: resolution.logWeight + Math.log(ratio) });
@@ -505,7 +505,7 @@ function superpose(parts: readonly { readonly amplitude: Complex; readonly ket: 
   // Where several terms meet, what cancels leaves noise of their size.
   if (several.some((count) => count > 1)) noise += EPS * Math.sqrt(reference);
   if (!(probability > 1e3 * (noise * noise + EPS * EPS * reference))) {
-    throw new MethodDoesNotApply('the norm vanishes to rounding');
+    throw new StateVanishes('the norm vanishes to rounding');
   }
   return { state: { kind: 'ket', levels, re, im, noise, outside: spread * spread }, probability, reference: 1 };
 }

@@ -2,11 +2,12 @@ import { exponential, type Complex } from '../complex';
 import type { Form } from './form';
 
 /** Most entries of one table of coefficients. */
-export const LARGEST_TABLE = 3_000_000;
+export const LARGEST_TABLE = 400_000;
 
 /** How much larger than a rounding error the test perturbation is. */
 const PERTURBATION = 2 ** -34;
 const ROUNDING = 2 ** -53;
+const BIG = 1e200;
 /** One sample of the perturbed sum may be luckily small; this much is allowed for. */
 const SAFETY = 16;
 
@@ -57,7 +58,9 @@ function fill(
   const count = sizes.length;
   const re = new Float64Array(total);
   const im = new Float64Array(total);
-  const start = exponential(form.c);
+  // The size of e^c may be far below the range of numbers and come back in the sum: it is put on last.
+  let logScale = form.c.re;
+  const start = exponential({ re: 0, im: form.c.im });
   re[0] = start.re;
   im[0] = start.im;
   const strides = new Array<number>(count).fill(1);
@@ -95,6 +98,20 @@ function fill(
     }
     re[position] = sumRe * scale;
     im[position] = sumIm * scale;
+    if (Math.abs(sumRe) > BIG || Math.abs(sumIm) > BIG) {
+      for (let k = 0; k <= position; k++) {
+        re[k]! /= BIG;
+        im[k]! /= BIG;
+      }
+      logScale += Math.log(BIG);
+    }
+  }
+  if (logScale !== 0) {
+    const factor = Math.exp(logScale);
+    for (let k = 0; k < total; k++) {
+      re[k]! *= factor;
+      im[k]! *= factor;
+    }
   }
   return { re, im };
 }

@@ -11,7 +11,7 @@ import {
   type Form,
   type SubstitutionRow,
 } from './form';
-import { MethodDoesNotApply } from '../method-does-not-apply';
+import { MethodDoesNotApply, StateVanishes } from '../method-does-not-apply';
 
 const I: Complex = { re: 0, im: 1 };
 const MINUS_I: Complex = { re: 0, im: -1 };
@@ -96,6 +96,6 @@ export const allAtZero = (form: Form): Form =>
  */
 export function normOfKetForms(forms: readonly Form[]): { readonly norm: number; readonly relative: number } {
   const { value, error } = innerProduct(forms, forms);
-  if (!(value.re > 1e3 * error)) throw new MethodDoesNotApply('the norm is lost in the cancellation of its terms');
+  if (!(value.re > 1e3 * error)) throw new StateVanishes('the norm is lost in the cancellation of its terms');
   return { norm: value.re, relative: error / value.re };
 }

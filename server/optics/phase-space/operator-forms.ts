@@ -1,5 +1,5 @@
 import { complex, conjugate, phase, times, type Complex } from '../complex';
-import { MethodDoesNotApply } from '../method-does-not-apply';
+import { MethodDoesNotApply, StateVanishes } from '../method-does-not-apply';
 import { channelOf, type Channel, type Mode, type State } from '../state';
 import {
   addConstant,
@@ -51,7 +51,7 @@ export function traceOf(state: State): FormSum {
   const { forms } = operatorForms(state);
   const trace = sumOfForms(forms.map(allAtZero));
   if (!(trace.value.re > 1e3 * trace.error)) {
-    throw new MethodDoesNotApply('the norm is lost in the cancellation of its terms');
+    throw new StateVanishes('the norm is lost in the cancellation of its terms');
   }
   traces.set(state, trace);
   return trace;
