@@ -72,6 +72,17 @@ export const keySignature = z.object({
 });
 export type KeySignature = z.infer<typeof keySignature>;
 
+/** The names that key expressions may use. */
+export const keyLanguage = z.object({
+  /** Functions that know of light, with their arguments. */
+  signatures: z.array(keySignature),
+  /** Names of mathematical functions. */
+  functions: z.array(z.string()),
+  /** Names of physical constants. */
+  constants: z.array(z.string()),
+});
+export type KeyLanguage = z.infer<typeof keyLanguage>;
+
 const problemParams = z.object({ problemId: identifier });
 const begun = z.object({
   /** The course whose convention the problem is written under. */
@@ -199,7 +210,7 @@ export const problemRoutes = {
   keyLanguage: defineRoute({
     method: 'GET',
     path: '/key-language',
-    summary: 'The functions that key expressions may use',
-    response: z.object({ signatures: z.array(keySignature) }),
+    summary: 'The names that key expressions may use',
+    response: keyLanguage,
   }),
 };

@@ -1,7 +1,13 @@
-import { isMap, isScalar, isSeq, type YAMLMap } from 'yaml';
+import { isMap, isScalar, isSeq, type Scalar, type YAMLMap } from 'yaml';
 
 /** A problem file that cannot be read: what is wrong, where, and what would be right. */
 export class ProblemFileError extends Error {}
+
+/** A value as it stands in the file: a number keeps its zeros. */
+function textOf(node: Scalar): string {
+  if (typeof node.value === 'string') return node.value;
+  return node.value === null ? '' : (node.source ?? JSON.stringify(node.value));
+}
 
 /**
  * The keys of one map in a problem file, read one by one; what nobody asked for is a mistake of the author and is named.
@@ -36,8 +42,7 @@ export class FileFields {
     const node = this.get(key);
     if (node === undefined) return '';
     if (!isScalar(node)) throw this.error(`“${key}” is one value.`, node);
-    if (typeof node.value === 'string') return node.value;
-    return node.value === null ? '' : (node.source ?? String(node.value));
+    return textOf(node);
   }
 
   /** Words, listed with commas or as a YAML list; joined as the composer's fields have them. */
@@ -47,7 +52,7 @@ export class FileFields {
     return node.items
       .map((item) => {
         if (!isScalar(item)) throw this.error(`“${key}” lists single values.`, item);
-        return typeof item.value === 'string' ? item.value : (item.source ?? String(item.value));
+        return textOf(item);
       })
       .join(separator);
   }

@@ -47,7 +47,7 @@ function presentProblem(tx: Queryable, row: ProblemRow, personId: string): Probl
     draft: row.draft,
     mine,
     nextStatuses: nextStatuses[row.status].filter((status) =>
-      status === 'draft' ? mine : latest || status === 'retired',
+      status === 'draft' ? mine : latest !== undefined || status === 'retired',
     ),
   };
 }

@@ -406,5 +406,7 @@ describe('the key language', () => {
     const { body } = await lead.get('/api/key-language').expect(200);
     const names = body.signatures.map((each: { name: string }) => each.name);
     expect(names).toEqual(expect.arrayContaining(['coherent', 'beamSplitter', 'photonProbability']));
+    expect(body.functions).toEqual(expect.arrayContaining(['sqrt', 'exp']));
+    expect(body.constants).toContain('boltzmann');
   });
 });

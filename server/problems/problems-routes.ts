@@ -10,6 +10,8 @@ import { conventionOf } from '../courses/convention';
 import { conflict, invalidField, notFound } from '../http/errors';
 import type { Serve } from '../http/serve';
 import { keySignatures } from '../keys';
+import { physicalConstants } from '../keys/physical-constants';
+import { plainFunctions } from '../keys/plain-functions';
 import { ProblemFileError, readProblemFile } from './problem-file';
 import { writeProblemFile } from './write-problem-file';
 import { latestRevision, listProblems, listRevisions, presentRevision } from './problem-queries';
@@ -108,7 +110,11 @@ export function addProblemRoutes(serve: Serve, context: Context): void {
 
   serve(routes.keyLanguage, ({ user }) => {
     demand(user, 'write problems');
-    return { signatures: keySignatures.map(({ name, signature, summary }) => ({ name, signature, summary })) };
+    return {
+      signatures: keySignatures.map(({ name, signature, summary }) => ({ name, signature, summary })),
+      functions: Object.keys(plainFunctions),
+      constants: Object.keys(physicalConstants),
+    };
   });
 }
 

@@ -1,4 +1,4 @@
-import { Document, isMap, isScalar, isSeq, Scalar, visit } from 'yaml';
+import { Document, isMap, isScalar, isSeq, type Scalar, visit } from 'yaml';
 import { defaultConvention, type Convention } from '@shared/primitives';
 import type { DraftAnswer, DraftGiven, DraftPart } from '@shared/problem-draft';
 import { partLabel, type ProblemContent } from '@shared/problems';

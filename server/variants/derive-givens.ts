@@ -124,7 +124,7 @@ async function valuesInUnit(
     keys,
     withUnit.map((index) => ({
       expression: `(${given.expression}) / (1 ${given.unit ?? ''})`,
-      givens: scopeOf(variants[index]!.givens),
+      givens: scopeOf(variants[index]?.givens ?? {}),
       convention: content.convention,
     })),
   );

@@ -1,5 +1,5 @@
 import type { Given, ProblemContent } from '@shared/problems';
-import type { GivenValues } from '@shared/variants';
+import type { GivenValue, GivenValues } from '@shared/variants';
 import { printGiven } from './print-given';
 import { seededSource } from './random-source';
 
@@ -65,14 +65,14 @@ export function drawPlainGivens(content: Givens, seed: string): GivenValues {
 
 /** The givens of the variant with a number from 1 to `countVariants`, without those that follow from others. */
 export function plainGivensOf(content: Givens, number: number): GivenValues {
-  const values: GivenValues = {};
+  const values: [string, GivenValue][] = [];
   let rest = number - 1;
   for (const given of [...plainGivens(content)].reverse()) {
     const count = countValues(given);
-    values[given.name] = printGiven(given, valueAt(given, rest % count));
+    values.unshift([given.name, printGiven(given, valueAt(given, rest % count))]);
     rest = Math.floor(rest / count);
   }
-  return Object.fromEntries(plainGivens(content).map((given) => [given.name, values[given.name]!]));
+  return Object.fromEntries(values);
 }
 
 /**

@@ -16,7 +16,7 @@ export function scopeOf(givens: GivenValues): Scope {
 
 /** A key's value as a later part's expression gets it. */
 export function scopeValueOf(key: Pick<VariantKey, 'value' | 'unit'>): GivenValue {
-  return typeof key.value === 'number' ? withUnit(key.value, key.unit) : (key.value as GivenValue);
+  return typeof key.value === 'number' ? withUnit(key.value, key.unit) : key.value;
 }
 
 function withUnit(value: number, unit: string | undefined): GivenValue {

@@ -1,7 +1,7 @@
 import {
   ChangeDetectionStrategy,
   Component,
-  ElementRef,
+  type ElementRef,
   computed,
   effect,
   inject,
@@ -17,6 +17,7 @@ import { MatIconModule } from '@angular/material/icon';
 import { MatMenuModule } from '@angular/material/menu';
 import { Router, RouterLink } from '@angular/router';
 import { catchError, firstValueFrom, fromEvent, of } from 'rxjs';
+import type { KeyLanguage } from '@shared/problem-routes';
 import { partLabel, type ProblemStatus } from '@shared/problems';
 import { secondOf } from '@shared/times';
 import { readTypedNumber, typeNumber } from '@shared/typed-number';
@@ -52,6 +53,8 @@ const statusDeeds: Readonly<Record<ProblemStatus, string>> = {
   ready: 'Mark ready',
   retired: 'Retire',
 };
+
+const noLanguage: KeyLanguage = { signatures: [], functions: [], constants: [] };
 
 /** A problem as it is written: statement beside what a student sees; below, givens and parts, one at a time. */
 @Component({
@@ -95,8 +98,13 @@ export default class Composer {
   /** The tab, in the address: `givens`, `about` or the letter of a part. */
   readonly at = input<string>();
 
-  private readonly language = toSignal(this.api.keyLanguage().pipe(catchError(() => of({ signatures: [] }))), {
-    initialValue: { signatures: [] },
+  /** Without the server's list the editor works, it only completes less. */
+  private readonly language = toSignal(this.api.keyLanguage().pipe(catchError(() => of(noLanguage))), {
+    initialValue: noLanguage,
+  });
+  private readonly functions = computed(() => {
+    const { signatures, functions } = this.language();
+    return [...signatures, ...functions.map((name) => ({ name, signature: `${name}(x)`, summary: '' }))];
   });
   protected readonly isSaving = signal(false);
   protected readonly showsRevisions = signal(false);
@@ -151,7 +159,8 @@ export default class Composer {
     const earlier = (draft?.parts ?? [])
       .slice(0, Math.max(0, this.partIndex()))
       .map((part, index) => ({ name: `part_${partLabel(index)}`, detail: part.heading.trim() || 'earlier part' }));
-    return { values: [...givens, ...earlier], functions: this.language().signatures };
+    const constants = this.language().constants.map((name) => ({ name, detail: 'constant' }));
+    return { values: [...givens, ...earlier], constants, functions: this.functions() };
   });
 
   protected readonly namedGivens = computed<readonly NamedGiven[]>(() =>
@@ -230,7 +239,10 @@ export default class Composer {
         if (list && shown) list.scrollLeft = shown.offsetLeft - list.offsetLeft - list.clientWidth / 3;
       });
     });
-    effect(() => this.pageTitle.set(this.open.draft()?.title.trim() || 'Problem'));
+    effect(() => {
+      const title = this.open.draft()?.title.trim() ?? '';
+      this.pageTitle.set(title === '' ? 'Problem' : title);
+    });
     // The browser asks before a tab closes while something is not yet kept.
     fromEvent<BeforeUnloadEvent>(window, 'beforeunload')
       .pipe(takeUntilDestroyed())
@@ -327,15 +339,5 @@ export default class Composer {
     } catch (error) {
       this.notice.set(sentenceOf(error));
     }
-  }
-
-  /** Arrow keys walk the tabs. */
-  protected walkTabs(event: KeyboardEvent): void {
-    const links = [...(this.tabList()?.nativeElement.querySelectorAll<HTMLElement>('a') ?? [])];
-    const present = links.indexOf(event.target as HTMLElement);
-    const step = event.key === 'ArrowRight' ? 1 : event.key === 'ArrowLeft' ? -1 : 0;
-    if (present < 0 || step === 0) return;
-    event.preventDefault();
-    links[(present + step + links.length) % links.length]?.focus();
   }
 }

@@ -3,7 +3,7 @@ import {
   Component,
   CSP_NONCE,
   DestroyRef,
-  ElementRef,
+  type ElementRef,
   afterNextRender,
   booleanAttribute,
   effect,

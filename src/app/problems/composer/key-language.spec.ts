@@ -1,7 +1,10 @@
 import { callAround } from './key-language';
 
 describe('callAround', () => {
-  const at = (marked: string) => callAround(marked.replace('|', ''), marked.indexOf('|'));
+  const at = (marked: string) => {
+    const call = callAround(marked.replace('|', ''), marked.indexOf('|'));
+    return call && { name: call.name, argument: call.argument };
+  };
 
   it('finds the innermost call and the argument', () => {
     expect(at('photonProbability(coherent(|), 0)')).toEqual({ name: 'coherent', argument: 0 });

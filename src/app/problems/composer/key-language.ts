@@ -14,7 +14,6 @@ import {
   showTooltip,
   ViewPlugin,
   keymap,
-  type DecorationSet,
   type Tooltip,
   type ViewUpdate,
 } from '@codemirror/view';
@@ -24,6 +23,8 @@ import type { KeySignature } from '@shared/problem-routes';
 export interface KeyNames {
   /** Givens and the values of earlier parts, each with a word about it. */
   readonly values: readonly { readonly name: string; readonly detail: string }[];
+  /** Physical constants. */
+  readonly constants?: readonly { readonly name: string; readonly detail: string }[];
   readonly functions: readonly KeySignature[];
 }
 
@@ -56,7 +57,7 @@ const colourer = new MatchDecorator({
 
 const colours = ViewPlugin.define(
   (view) => ({
-    marks: colourer.createDeco(view) as DecorationSet,
+    marks: colourer.createDeco(view),
     update(update: ViewUpdate) {
       this.marks =
         update.startState.facet(keyNames) === update.state.facet(keyNames)
@@ -73,10 +74,11 @@ function complete(context: CompletionContext): CompletionResult | null {
   const names = context.state.facet(keyNames);
   const options: Completion[] = [
     ...names.values.map(({ name, detail }) => ({ label: name, detail, boost: 2, type: 'variable' })),
+    ...(names.constants ?? []).map(({ name, detail }) => ({ label: name, detail, boost: -1, type: 'constant' })),
     ...names.functions.map(({ name, signature, summary }) => ({
       label: name,
       detail: signature.slice(name.length),
-      info: summary,
+      ...(summary ? { info: summary } : {}),
       type: 'function',
       // The brackets are written too, with the cursor between them where there is something to write.
       apply: (view: EditorView, _: Completion, from: number, to: number) => {
@@ -91,8 +93,17 @@ function complete(context: CompletionContext): CompletionResult | null {
   return { from: word?.from ?? context.pos, options, validFor: /^[A-Za-z0-9_]*$/ };
 }
 
-/** The call around a place in an expression: the function's name, and which argument the place is in, from 0. */
-export function callAround(text: string, place: number): { readonly name: string; readonly argument: number } | null {
+/** A call of a function in an expression. */
+interface Call {
+  readonly name: string;
+  /** Which argument the place is in, from 0. */
+  readonly argument: number;
+  /** Where its name begins. */
+  readonly from: number;
+}
+
+/** The innermost call around a place in an expression. */
+export function callAround(text: string, place: number): Call | null {
   let depth = 0;
   let argument = 0;
   for (let index = place - 1; index >= 0; index--) {
@@ -107,7 +118,7 @@ export function callAround(text: string, place: number): { readonly name: string
         continue;
       }
       const name = /[A-Za-z_][A-Za-z0-9_]*$/.exec(text.slice(0, index))?.[0];
-      if (name) return { name, argument };
+      if (name) return { name, argument, from: index - name.length };
       argument = 0;
     } else if (character === ',' && depth === 0) argument++;
   }
@@ -116,13 +127,20 @@ export function callAround(text: string, place: number): { readonly name: string
 
 function signatureTooltip(state: EditorState): Tooltip | null {
   const { head, empty } = state.selection.main;
-  const call = empty ? callAround(state.doc.toString(), head) : null;
-  const found = call && state.facet(keyNames).functions.find((each) => each.name === call.name);
+  if (!empty) return null;
+  const text = state.doc.toString();
+  const { functions } = state.facet(keyNames);
+  // Inside `sqrt(…)`, of which there is nothing to say, the call around it is what one wants to know of.
+  let call = callAround(text, head);
+  while (call && !functions.some((each) => each.name === call?.name && each.summary))
+    call = callAround(text, call.from);
+  const found = functions.find((each) => each.name === call?.name);
   if (!call || !found) return null;
+  const { argument } = call;
   return {
     pos: head,
     above: true,
-    create: () => ({ dom: signatureDom(found, call.argument) }),
+    create: () => ({ dom: signatureDom(found, argument) }),
   };
 }
 

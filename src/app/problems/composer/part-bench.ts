@@ -16,6 +16,12 @@ import { SampleVariants } from './sample-variants';
 import { SlipsTable } from './slips-table';
 import { TypedField } from './typed-field';
 
+/** A slip by its name, or by its place where it has none yet. */
+function slipName(slips: DraftAnswer['slips'], index: number): string {
+  const name = slips[index]?.name.trim() ?? '';
+  return name === '' ? `slip ${String(index + 1)}` : name;
+}
+
 /** The key bench of one part: expression, sample variants by each method, tolerance and slips. */
 @Component({
   selector: 'app-part-bench',
@@ -93,7 +99,7 @@ export class PartBench {
       const value = valued(key);
       const number = numberOf(key);
       const values = (variant.parts[this.index()]?.slips ?? []).map((slip, index) => ({
-        name: slips[index]?.name || `slip ${String(index + 1)}`,
+        name: slipName(slips, index),
         value: numberOf(slip),
       }));
       return {
@@ -127,7 +133,7 @@ export class PartBench {
     if (key === null || band === null) return null;
     const slips = (this.samples.shown()?.parts[this.index()]?.slips ?? []).flatMap((slip, index) => {
       const value = numberOf(slip);
-      const name = this.part().answer.slips[index]?.name || `slip ${String(index + 1)}`;
+      const name = slipName(this.part().answer.slips, index);
       return value === null ? [] : [{ name, value }];
     });
     return { key, ...band, slips };

@@ -3,7 +3,7 @@ import {
   Component,
   CSP_NONCE,
   DestroyRef,
-  ElementRef,
+  type ElementRef,
   afterNextRender,
   effect,
   inject,
@@ -31,7 +31,6 @@ import {
   keymap,
   lineNumbers,
   placeholder,
-  type DecorationSet,
   type ViewUpdate,
 } from '@codemirror/view';
 import { tags } from '@lezer/highlight';
@@ -65,7 +64,7 @@ const finder = new MatchDecorator({
 
 const colours = ViewPlugin.define(
   (view) => ({
-    found: finder.createDeco(view) as DecorationSet,
+    found: finder.createDeco(view),
     update(update: ViewUpdate) {
       this.found =
         update.startState.facet(givensInForce) === update.state.facet(givensInForce)

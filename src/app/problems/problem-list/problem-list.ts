@@ -90,7 +90,10 @@ export default class ProblemList {
   constructor() {
     toObservable(this.typed)
       .pipe(skip(1), debounceTime(250), takeUntilDestroyed())
-      .subscribe((search) => this.show({ search: search?.trim() || null, page: null }));
+      .subscribe((typed) => {
+        const search = typed?.trim() ?? '';
+        this.show({ search: search === '' ? null : search, page: null });
+      });
   }
 
   /** Puts the filter into the address, from where it is read. */
@@ -137,7 +140,7 @@ export default class ProblemList {
       const ofTitle = error instanceof RequestFailure ? error.messageFor('title') : null;
       this.titleFault.set(ofTitle ?? '');
       if (!ofTitle)
-        this.failure.set((error instanceof RequestFailure && error.messageFor('text')) || sentenceOf(error));
+        this.failure.set((error instanceof RequestFailure ? error.messageFor('text') : null) ?? sentenceOf(error));
     } finally {
       this.isBusy.set(false);
     }
