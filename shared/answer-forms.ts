@@ -31,11 +31,7 @@ const fraction = (what: string) =>
     .min(0, `${what} must not be below 0.`)
     .max(1, `${what} must not be above 1.`);
 
-const amount = (what: string) =>
-  z
-    .number({ error: `${what} must be a number.` })
-    .positive(`${what} must be above 0.`)
-    .finite(`${what} must be finite.`);
+const amount = (what: string) => z.number({ error: `${what} must be a number.` }).positive(`${what} must be above 0.`);
 
 /** How far from the key a value may lie; where several are given the widest holds. */
 export const toleranceSchema = z
@@ -92,7 +88,7 @@ const variableName = z
     'i, e, pi and part_… cannot name a variable.',
   );
 
-const bound = z.number({ error: 'A bound of a range must be a number.' }).finite('A bound of a range must be finite.');
+const bound = z.number({ error: 'A bound of a range must be a number.' });
 
 /** The range a formula's variable is drawn from: an open interval of reals, or whole numbers from low to high. */
 export const variableRangeSchema = z.union(

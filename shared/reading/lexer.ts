@@ -281,7 +281,10 @@ class Lexer {
     const length = clean.length === [...run].length ? run.length : [...run].findIndex((c) => c in superscriptLetters);
     const end = this.subscriptEnd(start + Math.max(length, 1));
     const whole = this.text.slice(start, end);
-    if (this.options.known(whole) || ![...whole].some(isGreek)) return this.name(start, end);
+    if (this.options.known(whole) || ![...whole].some(isGreek)) {
+      this.name(start, end);
+      return;
+    }
     for (let from = start; from < end;) {
       const to = this.firstPiece(from, end);
       this.name(from, to);

@@ -50,15 +50,18 @@ function entry(parser: Parser, depth: number): Entry {
 /** Rows separated by semicolons, entries by commas, up to what closes them. */
 function rows(parser: Parser, depth: number): Rows {
   const at = parser.token.start;
-  const result: Entry[][] = [[]];
+  let row: Entry[] = [];
+  const result = [row];
   for (;;) {
-    result[result.length - 1]?.push(entry(parser, depth));
+    const last = entry(parser, depth);
+    row.push(last);
     if (parser.is('comma')) parser.take();
     else if (parser.is('semicolon')) {
       parser.take();
       if (parser.is('end') || parser.is('close')) break;
-      result.push([]);
-    } else if (!(opensRows(parser) && isRows(result[result.length - 1]?.at(-1) ?? ({ rows: [], at } as Rows)))) break;
+      row = [];
+      result.push(row);
+    } else if (!(isRows(last) && opensRows(parser))) break;
   }
   return { rows: result, at };
 }

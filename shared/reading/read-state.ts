@@ -3,7 +3,7 @@ import { dropLeadingName } from './dropped-name';
 import { contains, type Expression } from './expression';
 import type { Grammar } from './grammar';
 import { parseExpression } from './parser';
-import { negligible, printComplex, printNumber } from './print';
+import { negligible, printComplex } from './print';
 import { ReadingProblem } from './problem';
 import { evaluateNumber } from './quantity';
 import type { Reading } from './reading';
@@ -176,26 +176,24 @@ export function readState(text: string): Reading {
   if (!(norm > 1e-12 * scale) || !Number.isFinite(norm))
     throw new ReadingProblem('The state is zero or too large to be compared.', node.at);
   const terms = termsOf(state);
-  const shown = `norm ${printNumber(norm, 4)}`;
   return {
     kind: 'state',
     modes: state.modes,
     kets: state.kets,
     coherent: state.coherent,
     norm,
-    readAs: `${joinTerms(
+    readAs: joinTerms(
       terms,
       (amplitude) => printComplex(amplitude, 4),
       ({ plain }) => plain,
       '−',
-    )}, ${shown}`,
+    ),
     typeset: joinTerms(
       terms,
       (amplitude) => texComplex(amplitude),
       ({ tex }) => tex,
       '-',
     ),
-    note: shown,
     ...(undressed.dropped === undefined ? {} : { dropped: undressed.dropped }),
   };
 }

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 
 /** What was typed and is not acknowledged yet, as this browser keeps it. */
 const keptCopy = z.object({

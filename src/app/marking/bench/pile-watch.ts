@@ -93,7 +93,7 @@ export class PileWatch {
     try {
       const pile = await firstValueFrom(this.api.pile(pileId));
       const before = this.state();
-      if (!before || before.id !== pile.id || before.sequence <= pile.sequence) this.state.set(pile);
+      if (before?.id !== pile.id || before.sequence <= pile.sequence) this.state.set(pile);
       this.failure.set(null);
     } catch (error) {
       // Whatever it is, the page says it where the pile would be.

@@ -1,7 +1,7 @@
 import {
   ChangeDetectionStrategy,
   Component,
-  ElementRef,
+  type ElementRef,
   computed,
   inject,
   input,
@@ -41,7 +41,7 @@ export class Dock {
   readonly mayReturn = input(false);
 
   /** The keys are asked for. */
-  readonly keysAsked = output<void>();
+  readonly keysAsked = output();
 
   protected readonly asideProblem = signal('');
   protected readonly answer = computed<BenchAnswer | null>(() => this.hand.current());

@@ -63,11 +63,11 @@ export default class ReleasePage {
   protected readonly moment = computed(() => fullMomentOf(this.clock.now(), this.timeZone()));
   protected readonly releasedOn = computed(() => {
     const at = this.release()?.releasedAt;
-    return at == null ? '' : fullMomentOf(at, this.timeZone());
+    return at === null || at === undefined ? '' : fullMomentOf(at, this.timeZone());
   });
   protected readonly timeToTakeBack = computed(() => {
     const until = this.release()?.takeBackUntil;
-    const left = until == null ? 0 : until - this.clock.now();
+    const left = until === null || until === undefined ? 0 : until - this.clock.now();
     return left > 0 ? spanOf(left) : null;
   });
   protected readonly stages = computed<readonly StageMark[]>(() => {

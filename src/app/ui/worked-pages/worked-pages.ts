@@ -1,7 +1,7 @@
 import {
   ChangeDetectionStrategy,
   Component,
-  ElementRef,
+  type ElementRef,
   computed,
   effect,
   inject,
@@ -18,6 +18,7 @@ import { PdfPages } from './pdf-pages';
   selector: 'app-worked-pages',
   templateUrl: './worked-pages.html',
   styleUrl: './worked-pages.scss',
+  host: { '(document:keydown)': 'steer($event)' },
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class WorkedPages {
@@ -75,12 +76,10 @@ export class WorkedPages {
   }
 
   protected steer(event: KeyboardEvent): void {
+    if (!this.isLarge() || event.ctrlKey || event.metaKey || event.altKey) return;
     if (event.key === 'ArrowRight' || event.key === '.') this.turn(1);
     else if (event.key === 'ArrowLeft' || event.key === ',') this.turn(-1);
     else if (event.key === 'o') this.toggleLarge();
-    else if (event.key !== 'Escape') return;
-    // The page behind has a meaning of its own for these keys.
-    event.stopPropagation();
   }
 
   private draw(canvas: HTMLCanvasElement | undefined, width: number): void {
