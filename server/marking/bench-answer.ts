@@ -132,7 +132,7 @@ const remembered = new Map<string, readonly PartKeys[]>();
 
 /** The slips of a part in one variant, with their values. */
 export async function slipsOf(
-  context: Pick<Context, 'keys'>,
+  context: Pick<Context, 'keys' | 'log'>,
   found: FoundPile,
   variant: ReturnType<typeof variantOf>,
 ): Promise<BenchAnswer['slips']> {
@@ -141,11 +141,16 @@ export async function slipsOf(
   const name = `${variant.id} ${found.setProblem.revisionId}`;
   let outcome = remembered.get(name);
   if (!outcome) {
-    outcome = await evaluateVariantKeys(context.keys, found.content, variant.givens);
-    if (remembered.size >= mostRemembered) remembered.clear();
-    remembered.set(name, outcome);
+    try {
+      outcome = await evaluateVariantKeys(context.keys, found.content, variant.givens);
+      if (remembered.size >= mostRemembered) remembered.clear();
+      remembered.set(name, outcome);
+    } catch (error) {
+      // The pool of workers is down or overrun. An answer can be marked without seeing where its slips lie.
+      context.log.warn({ error: String(error) }, 'slips could not be evaluated for the light table');
+    }
   }
-  const values = outcome[found.partIndex]?.slips ?? [];
+  const values = outcome?.[found.partIndex]?.slips ?? [];
   return slips.map((slip, index) => ({
     name: slip.name ?? `slip ${String(index + 1)}`,
     value: values[index]?.key?.value ?? null,

@@ -2,7 +2,7 @@ import { and, asc, count, eq, inArray, isNotNull } from 'drizzle-orm';
 import type { Queryable } from '@drizzle/client';
 import { answers, piles, sets } from '@drizzle/schema';
 import type { SetPiles } from '@shared/marking';
-import { setStageNames, type SetStage } from '@shared/primitives';
+import { setStageNames } from '@shared/primitives';
 import { partMarks } from '@shared/problems';
 import { pilesOfSet, teamOf, type FoundPile } from './find-pile';
 import { activeHolds } from './holds';
@@ -16,7 +16,7 @@ export function listPiles(tx: Queryable, courseId: string, now: number): SetPile
   return tx
     .select()
     .from(sets)
-    .where(and(eq(sets.courseId, courseId), inArray(sets.stage, withPiles as SetStage[])))
+    .where(and(eq(sets.courseId, courseId), inArray(sets.stage, withPiles)))
     .orderBy(asc(sets.number))
     .all()
     .reverse()

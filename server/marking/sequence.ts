@@ -10,12 +10,12 @@ export function sequenceOf(tx: Queryable, pileId: string): number {
 
 /** The next number of a pile's facts; called once for each fact, in its transaction. */
 export function nextSequence(tx: Queryable, pileId: string): number {
-  const row = tx
+  const [row] = tx
     .update(piles)
     .set({ sequence: sql`${piles.sequence} + 1` })
     .where(eq(piles.id, pileId))
     .returning({ sequence: piles.sequence })
-    .get();
+    .all();
   if (!row) throw notFound('pile');
   return row.sequence;
 }

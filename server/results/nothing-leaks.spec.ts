@@ -168,7 +168,7 @@ describe('before the release, no key, slip, tolerance or guidance', () => {
     ];
     for (const act of acts) {
       const response = await act;
-      expectNoSecret(response.text, response.request.url as string);
+      expectNoSecret(response.text, response.request.url);
     }
   });
 

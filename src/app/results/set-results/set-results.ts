@@ -109,7 +109,9 @@ export default class SetResults {
   });
   protected readonly problem = computed(() => (this.results.error() ? sentenceOf(this.results.error()) : null));
   protected readonly at = computed(() => Math.max(0, this.page() - 1));
-  protected readonly named = computed(() => this.results.hasValue() && typeof this.results.value().items[0]?.name === 'string');
+  protected readonly named = computed(
+    () => this.results.hasValue() && typeof this.results.value().items[0]?.name === 'string',
+  );
   protected readonly rows = computed(() =>
     this.results.hasValue() ? this.results.value().items.slice(this.at() * pageSize, (this.at() + 1) * pageSize) : [],
   );
