@@ -76,7 +76,7 @@ export class WorkedPages {
   }
 
   protected steer(event: KeyboardEvent): void {
-    if (!this.isLarge() || event.ctrlKey || event.metaKey || event.altKey) return;
+    if (!this.isLarge() || event.defaultPrevented || event.ctrlKey || event.metaKey || event.altKey) return;
     if (event.key === 'ArrowRight' || event.key === '.') this.turn(1);
     else if (event.key === 'ArrowLeft' || event.key === ',') this.turn(-1);
     else if (event.key === 'o') this.toggleLarge();
