@@ -24,16 +24,22 @@ const ways: Readonly<Record<string, readonly (readonly string[])[]>> = {
   'a-field-that-dies-away b': [
     ['n(t) = n0 e^(−κt) + nb (1 − e^(−κt))', 'κt = {decay}', 'n0 = {alpha}²', 'n = {answer}'],
   ],
-  'the-noise-of-an-amplifier c': [
-    ['a → √G a + √(G−1) v†', 'Var x = G/2 + (G−1)/2', 'G = {G}', 'Var x = {answer}'],
-  ],
+  'the-noise-of-an-amplifier c': [['a → √G a + √(G−1) v†', 'Var x = G/2 + (G−1)/2', 'G = {G}', 'Var x = {answer}']],
 };
 
 /** The lines of one student's page. */
-export function workedLines(problem: string, label: string, givens: GivenValues, answer: string, way: number): string[] {
+export function workedLines(
+  problem: string,
+  label: string,
+  givens: GivenValues,
+  answer: string,
+  way: number,
+): string[] {
   const own = ways[`${problem} ${label}`] ?? [['by the formula of the notes', '= {answer}']];
   const lines = own[way % own.length] ?? [];
   return lines.map((line) =>
-    line.replace(/\{(\w+)\}/g, (_, name: string) => (name === 'answer' ? answer || '?' : (givens[name]?.printed ?? '?'))),
+    line.replace(/\{(\w+)\}/g, (_, name: string) =>
+      name === 'answer' ? answer || '?' : (givens[name]?.printed ?? '?'),
+    ),
   );
 }

@@ -48,7 +48,9 @@ function writeLine(
 ): number {
   let x = start.x;
   for (const sign of line) {
-    const font = /[\u0370-\u03ff\u221a\u2212\u00d7\u2265\u2248\u2192\u2329\u232a]/.test(sign) ? fonts.greek : fonts.latin;
+    const font = /[\u0370-\u03ff\u221a\u2212\u00d7\u2265\u2248\u2192\u2329\u232a]/.test(sign)
+      ? fonts.greek
+      : fonts.latin;
     const size = 19 + jitter(source, 1.2);
     const y = start.y + (x - start.x) * slope + jitter(source, 1);
     page.drawText(sign, { x, y, size, font, color: ink, rotate: degrees(jitter(source, 5)) });

@@ -139,7 +139,7 @@ function viewerIn(user: SignedIn, courseId: string) {
 }
 
 /** Who acts at a bench. @throws RequestError 404, 403 */
-function doerAt(tx: Queryable, user: SignedIn, pileId: string, benchId: string): Doer {
+export function doerAt(tx: Queryable, user: SignedIn, pileId: string, benchId: string): Doer {
   const found = findPile(tx, pileId);
   const { id } = membershipFor(user, 'mark', found.set.courseId);
   const seesAllMarks = can(user, 'see all marks', found.set.courseId);

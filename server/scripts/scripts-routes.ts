@@ -1,6 +1,7 @@
-import { scriptsRoutes } from '@shared/scripts';
+import { largestUpload, scriptsRoutes } from '@shared/scripts';
 import { membershipFor, type SignedIn } from '../access/policy';
 import type { Context } from '../context';
+import { receiveBody } from '../files/receive-body';
 import { sendFile } from '../files/send-file';
 import { notFound } from '../http/errors';
 import type { Serve } from '../http/serve';
@@ -45,9 +46,18 @@ export function addScriptsRoutes(serve: Serve, context: Context): void {
     saveAnswer(db, user, { answerId: params.answerId, text: body.text, version, idempotencyKey, now: clock.now() }),
   );
 
-  serve(scriptsRoutes.addPage, ({ user, params, request, idempotencyKey }) =>
-    addPage(context, user, params.answerId, request, idempotencyKey),
-  );
+  serve(scriptsRoutes.addPage, async ({ user, params, request, idempotencyKey }) => {
+    const page = await addPage(
+      context,
+      user,
+      params.answerId,
+      () => receiveBody(request, largestUpload),
+      idempotencyKey,
+    );
+    // A repeated page was not read from the request.
+    request.resume();
+    return page;
+  });
 
   serve(scriptsRoutes.removePage, ({ user, params }) => {
     removePage(context, user, params.pageId);

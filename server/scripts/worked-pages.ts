@@ -1,13 +1,11 @@
 import { createHash } from 'node:crypto';
 import { and, eq } from 'drizzle-orm';
-import type { Request } from 'express';
 import type { Queryable } from '@drizzle/client';
 import { answers, memberships, pages, piles, revisions, scripts, setProblems, sets } from '@drizzle/schema';
 import { partLabel } from '@shared/problems';
-import { largestUpload, mostPages, type SheetPage } from '@shared/scripts';
+import { mostPages, type SheetPage } from '@shared/scripts';
 import { can, type SignedIn } from '../access/policy';
 import type { Context } from '../context';
-import { receiveBody } from '../files/receive-body';
 import type { SentFile } from '../files/send-file';
 import { workedPageFile } from '../files/worked-page-file';
 import { conflict, notFound } from '../http/errors';
@@ -21,13 +19,14 @@ import { pagesOf, type PageRow } from './saved-answers';
  * Adds a worked page: the file is on the disk before its row, so that no row ever names a file that is not there. The same
  * key twice is one page.
  *
+ * @param receive brings the file; called only where one more is taken
  * @throws RequestError 404; 409 after closing, or where the part takes no page or no more; 413; 415
  */
 export async function addPage(
   context: Context,
   person: SignedIn,
   answerId: string,
-  request: Request,
+  receive: () => Promise<Buffer>,
   idempotencyKey: string,
 ): Promise<SheetPage> {
   const { db, clock, files } = context;
@@ -40,11 +39,8 @@ export async function addPage(
     return undefined;
   };
   const before = look();
-  if (before) {
-    request.resume();
-    return presentPage(before);
-  }
-  const file = await workedPageFile(await receiveBody(request, largestUpload));
+  if (before) return presentPage(before);
+  const file = await workedPageFile(await receive());
   const storageKey = await files.keep(file.bytes);
   try {
     const row = db.transaction(
