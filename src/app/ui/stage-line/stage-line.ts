@@ -11,6 +11,8 @@ export interface StageMark {
 
 const left = 8;
 const widestPitch = 104;
+/** Where the line is the head of a page. */
+const widestPitchOfPage = 148;
 const narrowestPitch = 30;
 
 /**
@@ -34,14 +36,21 @@ export class StageLine {
   readonly label = input('');
   /** Whether the stages' names stand above the line. */
   readonly names = input(false, { transform: booleanAttribute });
+  /** Whether it takes the whole width of a page. */
+  readonly wide = input(false, { transform: booleanAttribute });
 
   private readonly width = injectElementWidth(left + widestPitch * 8 + 40);
 
   private readonly pitch = computed(() => {
     const gaps = Math.max(1, this.stages().length - 1);
     const last = this.stages().at(-1);
-    const reserve = left + Math.max(16, textWidth(last?.date ?? '') + 2);
-    return Math.min(widestPitch, Math.max(narrowestPitch, (this.width() - reserve) / gaps));
+    const isNamed = this.names() || this.present() === gaps;
+    const reserve =
+      left + Math.max(16, textWidth(last?.date ?? '') + 2, isNamed ? textWidth(last?.name ?? '', 12, 600) + 2 : 0);
+    return Math.min(
+      this.wide() ? widestPitchOfPage : widestPitch,
+      Math.max(narrowestPitch, (this.width() - reserve) / gaps),
+    );
   });
 
   protected readonly top = computed(() => (this.names() ? 24 : 0));
