@@ -21,7 +21,7 @@ export class DemoClock implements Clock {
 
   /** Moves to a moment. */
   moveTo(moment: number): void {
-    this.moment = moment;
+    this.moment = Math.round(moment);
   }
 
   /** Moves on, never past the present. */

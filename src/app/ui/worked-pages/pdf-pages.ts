@@ -40,5 +40,14 @@ export class PdfPages {
 async function load(address: string): Promise<PDFDocumentProxy> {
   const pdf = await import('pdfjs-dist');
   pdf.GlobalWorkerOptions.workerSrc = '/pdf/pdf.worker.min.mjs';
-  return pdf.getDocument({ url: address, isEvalSupported: false, useSystemFonts: true, enableXfa: false }).promise;
+  return pdf.getDocument({
+    url: address,
+    isEvalSupported: false,
+    enableXfa: false,
+    // Fonts that a file uses without carrying them; they ship with the library.
+    standardFontDataUrl: '/pdf/standard_fonts/',
+    cMapUrl: '/pdf/cmaps/',
+    cMapPacked: true,
+    useSystemFonts: false,
+  }).promise;
 }
