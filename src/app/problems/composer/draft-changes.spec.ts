@@ -22,6 +22,8 @@ const empty = emptyDraft('A splitter', defaultConvention);
 
 describe('changes of a draft', () => {
   it('open each new part with its line in the statement', () => {
+    const opened = { ...empty, statement: 'A beam.\n(a) How bright?\n' };
+    expect(addPart(opened, newId).statement).toBe(opened.statement);
     const one = addPart({ ...empty, statement: 'A beam.\n' }, newId);
     const two = addPart(one, newId);
     expect(two.statement).toBe('A beam.\n(a)\n(b) ');

@@ -1,3 +1,4 @@
+import { splitStatement } from '@shared/statement';
 import {
   emptyCriterion,
   emptyGiven,
@@ -52,10 +53,12 @@ export function changePart(draft: ProblemDraft, index: number, change: Partial<D
 /** Adds a part, and the line that opens it. */
 export function addPart(draft: ProblemDraft, newId: () => string): ProblemDraft {
   const label = partLabel(draft.parts.length);
+  // Whoever wrote the statement first has opened the part there already.
+  const isOpened = splitStatement(draft.statement).parts.some((part) => part.label === label);
   const statement = draft.statement.replace(/\s+$/, '');
   return {
     ...draft,
-    statement: `${statement}${statement === '' ? '' : '\n'}(${label}) `,
+    statement: isOpened ? draft.statement : `${statement}${statement === '' ? '' : '\n'}(${label}) `,
     parts: [...draft.parts, emptyPart(newId(), newId())],
   };
 }
