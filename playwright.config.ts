@@ -22,6 +22,7 @@ export default defineConfig({
     ...devices['Desktop Chrome'],
     baseURL,
     viewport: { width: 1440, height: 900 },
+    actionTimeout: 15_000,
     locale: 'en-GB',
     timezoneId: 'Europe/Oslo',
     // Animations are tried by people; tests wait for what they end in.
