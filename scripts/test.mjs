@@ -146,7 +146,7 @@ if (missing) {
 } else {
   const browserReport = join(reports, 'browser.json');
   await runTests('Browser tests', [bin('@playwright', 'test', 'cli.js'), 'test'], browserReport, countPlaywright, {
-    PLAYWRIGHT_JSON_OUTPUT_FILE: browserReport,
+    env: { PLAYWRIGHT_JSON_OUTPUT_FILE: browserReport },
   });
 }
 
