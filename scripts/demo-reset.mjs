@@ -23,7 +23,7 @@ try {
     if (!process.argv.includes('--yes') && !(await agrees()))
       throw new Error('Nothing was changed. To reset without being asked: npm run demo:reset -- --yes');
     for (const end of ['', '-wal', '-shm']) rmSync(`${database}${end}`, { force: true });
-    rmSync(join(dataDir, 'files'), { recursive: true, force: true });
+    for (const folder of ['files', 'loading']) rmSync(join(dataDir, folder), { recursive: true, force: true });
   }
   await buildProgram(['server']);
   // A server fills an empty database when it starts; on a port that nobody knows, and no longer than that.

@@ -5,6 +5,10 @@ import type { FileStore } from './files/file-store';
 import type { KeyPool } from './keys';
 import type { Live } from './live/live';
 
+/** The names of the database and of the folder of files inside `DATA_DIR`. */
+export const databaseName = 'halfsilver.db';
+export const filesName = 'files';
+
 /** Tells the time; injected, so that tests can set it. */
 export interface Clock {
   /** UTC milliseconds. */

@@ -3,13 +3,12 @@ import { createServer, type Server } from 'node:http';
 import { join } from 'node:path';
 import { pino } from 'pino';
 import { openDatabase } from '@drizzle/client';
-import { users } from '@drizzle/schema';
 import { firstAdministratorLink } from './accounts/accounts-routes';
 import { dropOldGuesses } from './accounts/guesses';
 import { linkWith, makeToken, type TokenKind } from './accounts/tokens';
 import { createApp } from './app';
 import { readConfig, type Config } from './config';
-import { systemClock, type Context } from './context';
+import { databaseName, filesName, systemClock, type Context } from './context';
 import { createFileStore } from './files/file-store';
 import { createKeyPool } from './keys';
 import { createLive } from './live/live';
@@ -24,21 +23,17 @@ async function main(): Promise<void> {
   const config = readConfig(process.env);
   mkdirSync(config.dataDir, { recursive: true });
   const log = pino({ level: config.logLevel, base: null });
-  const database = openDatabase(join(config.dataDir, 'halfsilver.db'), 'migrations');
   const keys = createKeyPool({});
   const live = createLive();
-  const files = createFileStore(join(config.dataDir, 'files'));
-  const context: Context = { config, db: database.db, clock: systemClock, keys, files, live, log };
+  const parts = { config, clock: systemClock, keys, live, log };
+  if (config.demo) await showDemonstrationLoading(parts);
+  const database = openDatabase(join(config.dataDir, databaseName), 'migrations');
+  const files = createFileStore(join(config.dataDir, filesName));
+  const context: Context = { ...parts, db: database.db, files };
 
   const { app, sessions } = createApp(context, 'dist/client/browser');
   const server = createServer(app);
   live.attach(server, context, async (cookie) => (await sessions.read(cookie)).person);
-
-  if (isEmpty(context) && config.demo) {
-    const { loadDemonstration } = await import('../demo/load-demonstration');
-    await loadDemonstration(context, (line) => process.stdout.write(`\r${line}\u001b[K`));
-    process.stdout.write('\n');
-  }
 
   await listen(server, config);
   await announce(context, config);
@@ -103,8 +98,20 @@ async function onBeat(context: Context, transport: ReturnType<typeof smtpTranspo
   );
 }
 
-function isEmpty(context: Context): boolean {
-  return context.db.select({ id: users.id }).from(users).limit(1).get() === undefined;
+/** Loads the demonstration into an empty data folder, on one line that says how far it is. */
+async function showDemonstrationLoading(parts: Omit<Context, 'db' | 'files'>): Promise<void> {
+  const { fillDataFolder } = await import('../demo/fill-data-folder');
+  const terminal = process.stdout.isTTY;
+  let toldAt = 0;
+  const tell = (line: string): void => {
+    // A terminal shows one line that changes; elsewhere a line every few seconds is enough.
+    if (terminal) process.stdout.write(`\r${line}\u001b[K`);
+    else if (Date.now() - toldAt > 3_000) {
+      toldAt = Date.now();
+      process.stdout.write(`${line}\n`);
+    }
+  };
+  if ((await fillDataFolder(parts, tell)) && terminal) process.stdout.write('\n');
 }
 
 async function announce(context: Context, config: Config): Promise<void> {
