@@ -155,7 +155,7 @@ test('a problem is written, set, answered, marked by two at once, released and r
       await expect(page.getByRole('heading', { level: 1 })).toBeVisible();
       await expectAccessible(page);
       await page.getByRole('link', { name: /\(b\)/ }).first().click();
-      await expect(page.getByText('0 of 4 marked')).toBeVisible();
+      await expect(page.getByRole('status').filter({ hasText: '0 of 4 marked' })).toBeVisible();
       await expect(page.getByRole('article', { name: /in hand, held by you/ })).toBeVisible();
     }
     const codeOf = (page: Page) =>
@@ -165,7 +165,9 @@ test('a problem is written, set, answered, marked by two at once, released and r
 
     // Each sees the other's mark within a second, without reloading; four saves by two make four marks.
     const marked = (page: Page, count: number) =>
-      expect(page.getByText(`${String(count)} of 4 marked`)).toBeVisible({ timeout: 1_000 });
+      expect(page.getByRole('status').filter({ hasText: `${String(count)} of 4 marked` })).toBeVisible({
+        timeout: 1_000,
+      });
     await idris.getByRole('textbox', { name: 'Remark' }).fill('The mean is right; its Poisson weight is missing.');
     await idris.keyboard.press('Control+Enter');
     await marked(tamsin, 1);
