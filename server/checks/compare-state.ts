@@ -2,6 +2,7 @@ import type { AnswerSpecification } from '@shared/answer-forms';
 import { add, conjugate, modulus, multiply, zero } from '@shared/reading/complex';
 import type { ReadingOf } from '@shared/reading/reading';
 import { amplitudesOf } from '@shared/reading/superposition';
+import type { StateAmplitude } from '../keys/state-components';
 import { asState, KeyProblem, type ComputedKey, type StateKey } from './key-value';
 import { matched, type Match } from './match';
 
@@ -23,6 +24,7 @@ export function fidelityWithKey(reading: ReadingOf<'state'>, key: StateKey): num
     if (!(weight > 0)) throw new KeyProblem('The key is the zero vector.');
     return modulus(overlap) ** 2 / (norm * weight);
   }
+  if ('kets' in key) return fidelityWithEnsemble(reading, key.kets);
   let sum = 0;
   let trace = 0;
   for (const { row, column, re, im } of key.elements) {
@@ -32,6 +34,23 @@ export function fidelityWithKey(reading: ReadingOf<'state'>, key: StateKey): num
   }
   if (!(trace > 0)) throw new KeyProblem('The key is no state: its trace is not positive.');
   return sum / (norm * trace);
+}
+
+/** ⟨a|ρ|a⟩ for ρ = Σ|k⟩⟨k| of kets whose norms are their weights. */
+function fidelityWithEnsemble(reading: ReadingOf<'state'>, kets: readonly (readonly StateAmplitude[])[]): number {
+  const amplitude = amplitudesOf(reading);
+  let sum = 0;
+  let trace = 0;
+  for (const ket of kets) {
+    let overlap = zero;
+    for (const { photons, re, im } of ket) {
+      overlap = add(overlap, multiply({ re, im: -im }, amplitude(photons)));
+      trace += re * re + im * im;
+    }
+    sum += modulus(overlap) ** 2;
+  }
+  if (!(trace > 0)) throw new KeyProblem('The key is no state: its trace is not positive.');
+  return sum / (reading.norm ** 2 * trace);
 }
 
 /** Compares a state by fidelity, up to global phase and normalisation. */

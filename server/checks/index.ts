@@ -1,6 +1,6 @@
 export { checkAnswer, type CheckInput, type PartKeys } from './check-answer';
 export type { Check, Verdict } from './check';
-export { formulaPoints } from './formula-points';
+export { comparedPoints, formulaPoints } from './formula-points';
 export { KeyProblem, type ComputedKey, type FormulaKey, type PlainKey, type StateKey } from './key-value';
 export type { OtherKey } from './relation-of';
 export type { Relation } from './relation';

@@ -1,30 +1,11 @@
 import type { Complex } from '@shared/reading/complex';
+import type { StateComponents } from '../keys/state-components';
 
 /** A number, a complex number or a nested list of them, as the key language computes it. */
 export type PlainKey = number | Complex | readonly PlainKey[];
 
-/**
- * A state in a number basis: a pure state by its amplitudes, any other by its density matrix. What lies outside the
- * basis has been bounded where the state was computed.
- */
-export type StateKey =
-  | { readonly modes: 1 | 2; readonly amplitudes: readonly StateAmplitude[] }
-  | { readonly modes: 1 | 2; readonly elements: readonly StateElement[] };
-
-/** ⟨photons|ψ⟩. */
-export interface StateAmplitude {
-  readonly photons: readonly number[];
-  readonly re: number;
-  readonly im: number;
-}
-
-/** ⟨row|ρ|column⟩. */
-export interface StateElement {
-  readonly row: readonly number[];
-  readonly column: readonly number[];
-  readonly re: number;
-  readonly im: number;
-}
+/** A state in a number basis; what lies outside it is bounded where it is computed. */
+export type StateKey = StateComponents;
 
 /** A formula's key at the points of {@link formulaPoints}, in their order; null where it is undefined. */
 export interface FormulaKey {

@@ -1,7 +1,8 @@
 import { modulus, type Complex } from '@shared/reading/complex';
 import type { ReadingOf } from '@shared/reading/reading';
 import { fidelityWithKey } from './compare-state';
-import { asState, type ComputedKey, type StateAmplitude, type StateKey } from './key-value';
+import type { StateAmplitude } from '../keys/state-components';
+import { asState, type ComputedKey, type StateKey } from './key-value';
 import type { RelationMatch } from './relation';
 
 type PureKey = Extract<StateKey, { readonly amplitudes: readonly StateAmplitude[] }>;

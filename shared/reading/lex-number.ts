@@ -17,6 +17,8 @@ export interface WrittenNumber {
 const groupSpace = '[ \\u00a0\\u2007\\u2009\\u202f]';
 const spacedGroups = new RegExp(`^\\d{1,3}(?:${groupSpace}\\d{3})+(?![\\d^⁰¹²³⁴⁵⁶⁷⁸⁹⁻])`);
 const decimalGroups = new RegExp(`^\\d{3}(?:${groupSpace}\\d{3})+(?![\\d^.,⁰¹²³⁴⁵⁶⁷⁸⁹⁻])`);
+/** A thin space only ever groups, so that the last group may be short. */
+const thinGroups = /^\d{3}(?:[\u2009\u202f]\d{3})*[\u2009\u202f]\d{1,3}(?![\d^.,⁰¹²³⁴⁵⁶⁷⁸⁹⁻])/;
 const exponentPart = /^[eE]([-+\u2212\u2013\u2010\u2011]?)(\d+)/;
 
 const vulgarFractions: Readonly<Record<string, readonly [number, number]>> = {
@@ -80,7 +82,7 @@ function mantissa(text: string, start: number, comma: CommaRole): { digits: stri
   const decimalComma = comma === 'decimal' && separator === ',' && /\d/.test(text[end + 1] ?? '');
   if (separator === '.' || decimalComma) {
     const after = text.slice(end + 1);
-    const decimals = decimalGroups.exec(after)?.[0] ?? /^\d*/.exec(after)?.[0] ?? '';
+    const decimals = decimalGroups.exec(after)?.[0] ?? thinGroups.exec(after)?.[0] ?? /^\d*/.exec(after)?.[0] ?? '';
     digits += `.${decimals.replace(/\D/g, '')}`;
     end += 1 + decimals.length;
     const next = text[end] ?? '';

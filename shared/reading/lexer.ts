@@ -155,7 +155,7 @@ class Lexer {
     if (space.test(character)) {
       this.spaced = true;
       this.at = end;
-    } else if (startsNumber(this.text, start)) this.number(start);
+    } else if (startsNumber(this.text, start) || this.startsWithComma(start)) this.number(start);
     else if (superscripts.includes(character) || character in superscriptLetters) this.superscript(start);
     else if (character === '*' && this.text[end] === '*') this.push('operator', '^', start, end + 1);
     else if (minus.test(character)) this.push('operator', '-', start, end);
@@ -178,6 +178,14 @@ class Lexer {
   private isTimes(character: string, start: number): boolean {
     if (!/^[xX]$/.test(character) || this.tokens[this.tokens.length - 1]?.kind !== 'number') return false;
     return /^\s*[\d.½]/.test(this.text.slice(start + 1)) && !this.options.known(character);
+  }
+
+  /** `,5`: a decimal comma may begin a number where no value stands before it. */
+  private startsWithComma(start: number): boolean {
+    if (this.options.comma !== 'decimal' || this.separates() || !/^,\d/.test(this.text.slice(start, start + 2)))
+      return false;
+    const before = this.tokens[this.tokens.length - 1]?.kind;
+    return before === undefined || before === 'operator' || before === 'open' || before === 'semicolon';
   }
 
   private number(start: number): void {
