@@ -1,7 +1,8 @@
 import { mkdtempSync, rmSync } from 'node:fs';
-import { createServer } from 'node:net';
+
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
+import { freePort } from '../scripts/start-demonstration.mjs';
 import { startServer, type RunningServer } from '../scripts/start-server.mjs';
 import { test as base } from './fixtures';
 
@@ -56,19 +57,5 @@ export const test = base.extend<{ ownServer: OwnServer }>({
     rmSync(dataDir, { recursive: true, force: true });
   },
 });
-
-function freePort(): Promise<number> {
-  return new Promise((resolve, reject) => {
-    const probe = createServer();
-    probe.on('error', reject);
-    probe.listen(0, () => {
-      const address = probe.address();
-      probe.close(() => {
-        if (address && typeof address === 'object') resolve(address.port);
-        else reject(new Error('No free port was found.'));
-      });
-    });
-  });
-}
 
 export { expect, expectAccessible } from './fixtures';
