@@ -7,6 +7,9 @@ import { quote, ReadingProblem } from './problem';
 import { unitByName } from './units';
 import { unknownName } from './unknown-name';
 
+const isUnitPower = (node: Expression): boolean =>
+  node.type === 'unit' || (node.type === 'binary' && node.operator === '^' && node.left.type === 'unit');
+
 const deepest = 60;
 const mostNodes = 600;
 /** A recursive-descent parser with the precedences of `mathjs`: an implicit product binds tighter than a quotient. */
@@ -99,7 +102,11 @@ export class Parser {
     for (;;) {
       if (this.is('operator', '*') || this.is('operator', '/')) {
         const operator = this.take().text === '*' ? '*' : '/';
-        node = this.made(binary(operator, node, this.implicitProduct()));
+        const right = this.implicitProduct();
+        node =
+          operator === '/' && this.grammar.units
+            ? this.unitsApart(node, right)
+            : this.made(binary(operator, node, right));
       } else if (this.startsReciprocalUnit()) {
         this.take();
         this.take();
@@ -108,6 +115,22 @@ export class Parser {
         node = this.made(binary('*', node, this.quotient(), true));
       } else return node;
     }
+  }
+
+  /** `π/2 rad`: the unit at the end belongs to the whole quotient, where nothing above the line has one. */
+  private unitsApart(above: Expression, right: Expression): Expression {
+    const units: Expression[] = [];
+    let below = right;
+    while (below.type === 'binary' && below.implicit && below !== this.bracketed && isUnitPower(below.right)) {
+      units.unshift(below.right);
+      below = below.left;
+    }
+    if (units.length === 0 || contains(above, 'unit') || contains(below, 'unit'))
+      return this.made(binary('/', above, right));
+    return units.reduce<Expression>(
+      (product, unit) => this.made(binary('*', product, unit, true)),
+      this.made(binary('/', above, below)),
+    );
   }
 
   /** `7.65e6 1/s`: a one over a unit behind a number belongs to the unit. */
@@ -144,15 +167,11 @@ export class Parser {
     if (kind === 'name' || kind === 'open' || kind === 'command') return true;
     if (kind === 'operator') return text === '√';
     if (kind === 'bar') return this.grammar.kets || this.bars === 0;
-    if (kind === 'number') {
-      return (
-        before === this.bracketed ||
-        before.type === 'constant' ||
-        before.type === 'variable' ||
-        before.type === 'factorial'
-      );
-    }
-    return false;
+    if (kind !== 'number') return false;
+    const last = before.type === 'negative' ? before.argument : before;
+    return (
+      before === this.bracketed || last.type === 'constant' || last.type === 'variable' || last.type === 'factorial'
+    );
   }
 
   private signed(): Expression {
