@@ -414,7 +414,9 @@ export const marks = sqliteTable(
     index('marks_answer').on(table.answerId, table.at),
     uniqueIndex('marks_key').on(table.answerId, table.idempotencyKey),
     // However two markers race: an answer has one first mark of each kind, and a mark is replaced once.
-    uniqueIndex('marks_once').on(table.answerId, table.kind).where(sql`replaces_id is null`),
+    uniqueIndex('marks_once')
+      .on(table.answerId, table.kind)
+      .where(sql`replaces_id is null`),
     uniqueIndex('marks_replaced_once').on(table.replacesId),
   ],
 );

@@ -68,7 +68,7 @@ export function joinCourse(
     .from(memberships)
     .where(and(eq(memberships.courseId, courseId), eq(memberships.userId, userId)))
     .get();
-  if (here && here.removedAt === null)
+  if (here?.removedAt === null)
     throw conflict(`${found?.name ?? person.name} is in this course already, as ${here.role}.`);
   const membershipId = here?.id ?? newId();
   const place = { role: person.role, removedAt: null, ...benchTokens(tx, courseId, membershipId, person) };

@@ -63,7 +63,7 @@ export function readRoster(tx: Queryable, courseId: string, csv: string): Roster
         problems: [`Is in this course already, as ${person.role}; change the role on the page.`],
       };
     const outcome = person?.here ? 'already here' : person ? 'joins with their account' : 'new person';
-    return { ...row, email: address, outcome, problems: [] } as RosterRow;
+    return { ...row, email: address, outcome, problems: [] };
   });
 }
 

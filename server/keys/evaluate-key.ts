@@ -29,7 +29,7 @@ export function readGiven(name: string, given: GivenValue): Value {
   }
   if (typeof given === 'string') return quantity(name, given);
   if (Array.isArray(given)) return (given as readonly GivenValue[]).map((entry) => readGiven(name, entry));
-  if (given !== null && typeof given === 'object' && 're' in given && 'im' in given) {
+  if ('re' in given && 'im' in given) {
     if (Number.isFinite(given.re) && Number.isFinite(given.im)) return mathematics.complex(given.re, given.im);
   }
   throw new KeyError(`The given “${name}” is no number.`, null);

@@ -30,7 +30,7 @@ export async function sendDueLetters(
   transport: Transport | null,
   makeLink: (kind: string, userId: string) => string,
 ): Promise<number> {
-  const { db, clock, config, log } = context;
+  const { db, clock, log } = context;
   const due = db
     .select({ letter: letters, email: users.email })
     .from(letters)

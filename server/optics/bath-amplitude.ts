@@ -77,15 +77,15 @@ function evolve(
       termRe[0] = factor * sumIm;
       termIm[0] = -factor * sumRe;
       largest = Math.max(largest, Math.abs(termRe[0]), Math.abs(termIm[0]));
-      re[0]! += termRe[0];
+      re[0] += termRe[0];
       im[0]! += termIm[0];
       if (largest < 1e-18) break;
     }
   }
   const turn = centre * t;
   const amplitude = {
-    re: re[0]! * Math.cos(turn) + im[0]! * Math.sin(turn),
-    im: im[0]! * Math.cos(turn) - re[0]! * Math.sin(turn),
+    re: re[0] * Math.cos(turn) + im[0]! * Math.sin(turn),
+    im: im[0]! * Math.cos(turn) - re[0] * Math.sin(turn),
   };
   let bathWeight = 0;
   for (let k = 1; k <= size; k++) bathWeight += re[k]! * re[k]! + im[k]! * im[k]!;

@@ -12,9 +12,9 @@ export function readState(reader: ArgumentReader, index: number, modes: 1 | 2 | 
   const given = reader.at(index);
   const wanted = modes === 'any' ? 'a state' : modes === 1 ? 'a state of one mode' : 'a state of two modes';
   const hint = modes === 1 ? ' (`output(joint, mode)` is the state of one mode of a joint state)' : '';
-  if (!isState(given)) return reader.refuse(index, 'argument ' + (index + 1), `be ${wanted}`);
+  if (!isState(given)) return reader.refuse(index, `argument ${index + 1}`, `be ${wanted}`);
   if (modes !== 'any' && given.modes !== modes) {
-    return reader.refuse(index, 'argument ' + (index + 1), `be ${wanted}${given.modes === 2 ? hint : ''}`);
+    return reader.refuse(index, `argument ${index + 1}`, `be ${wanted}${given.modes === 2 ? hint : ''}`);
   }
   return given;
 }

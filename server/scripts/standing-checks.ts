@@ -26,7 +26,7 @@ export interface EnteringAnswer {
 export function enterPile(tx: Queryable, entering: EnteringAnswer): 'waits' | 'marked' | 'there already' {
   const { answerId, part, check, now } = entering;
   const row = tx.select().from(answers).where(eq(answers.id, answerId)).get();
-  if (!row || row.state !== null) return 'there already';
+  if (row?.state !== null) return 'there already';
   const version = row.version + 1;
   if (!check || !standsAlone(entering, check.result)) {
     tx.update(answers).set({ state: 'waits', version }).where(eq(answers.id, answerId)).run();

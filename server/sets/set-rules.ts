@@ -145,7 +145,7 @@ function putProblems(tx: Queryable, setId: string, chosen: readonly ChosenProble
   );
   for (const [index, each] of chosen.entries()) {
     const found = usable.get(each.revisionId);
-    if (!found || found.revision.problemId !== each.problemId)
+    if (found?.revision.problemId !== each.problemId)
       throw invalidField(['problems', index], 'There is no such revision of this problem.');
     const wasThere = before.some(({ setProblem }) => setProblem.problemId === each.problemId);
     if (!wasThere && found.status !== 'ready' && found.authorId !== userId)

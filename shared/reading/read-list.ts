@@ -12,7 +12,7 @@ const pairs: Readonly<Record<string, string>> = { '(': ')', '[': ']', '{': '}' }
 /** Whether one bracket encloses the whole text. */
 export function isBracketed(text: string): boolean {
   const trimmed = text.replace(/\\left|\\right|\\(?=[{}])/g, '').trim();
-  if (!(trimmed[0] !== undefined && trimmed[0] in pairs)) return false;
+  if (!(trimmed.charAt(0) in pairs)) return false;
   let depth = 0;
   for (const [index, character] of [...trimmed].entries()) {
     if ('([{'.includes(character)) depth += 1;

@@ -41,7 +41,7 @@ function factorsOf(node: Expression, exponent: number): Factors | undefined {
   if (node.operator === '^') {
     const power = wholeExponent(node.right);
     const inner = power === undefined ? undefined : factorsOf(node.left, exponent * power);
-    return inner && inner.numeric.length === 0 ? inner : undefined;
+    return inner?.numeric.length === 0 ? inner : undefined;
   }
   if (node.operator !== '*' && node.operator !== '/') return undefined;
   const left = factorsOf(node.left, exponent);

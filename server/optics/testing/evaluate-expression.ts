@@ -46,7 +46,7 @@ function evaluate(
   figures: ComparedValue[],
 ): SpecValue {
   const go = (inner: MathNode) => evaluate(inner, scope, convention, figures);
-  if (math.isConstantNode(node)) return Number(node.value);
+  if (math.isConstantNode(node)) return node.value;
   if (math.isParenthesisNode(node)) return go(node.content);
   if (math.isArrayNode(node)) return node.items.map(go);
   if (math.isSymbolNode(node)) {

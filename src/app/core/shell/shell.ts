@@ -4,7 +4,7 @@ import { MatButtonModule } from '@angular/material/button';
 import { MatIconModule } from '@angular/material/icon';
 import { MatMenuModule } from '@angular/material/menu';
 import {
-  ActivatedRouteSnapshot,
+  type ActivatedRouteSnapshot,
   NavigationEnd,
   Router,
   RouterLink,

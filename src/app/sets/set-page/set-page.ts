@@ -104,7 +104,7 @@ export default class SetPage {
   });
   protected readonly closes = computed(() => {
     const set = this.set();
-    if (!set || set.closesAt === null) return 'not set yet';
+    if (set?.closesAt == null) return 'not set yet';
     const left = set.closesAt - this.clock.now();
     return `${fullMomentOf(set.closesAt, this.zone())}${left > 0 ? `, in ${spanOf(left)}` : ''}`;
   });
