@@ -1,6 +1,6 @@
 import sharp from 'sharp';
 import { wrongMediaType } from '../http/errors';
-import type { WorkedPageFile } from './worked-page-file';
+import type { CleanFile } from './clean-file';
 
 /** Most pixels of an upload: a 64-megapixel telephone just fits. */
 const mostPixels = 70_000_000;
@@ -17,7 +17,7 @@ const longestEdge = 3000;
 export async function cleanImage(
   upload: Buffer,
   mediaType: 'image/jpeg' | 'image/png' | 'image/webp',
-): Promise<WorkedPageFile> {
+): Promise<CleanFile> {
   try {
     const upright = sharp(upload, { limitInputPixels: mostPixels, failOn: 'error' })
       .rotate()

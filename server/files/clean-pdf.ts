@@ -1,6 +1,6 @@
 import { PDFArray, PDFDict, PDFDocument, PDFName, PDFStream, type PDFObject } from 'pdf-lib';
 import { wrongMediaType } from '../http/errors';
-import type { WorkedPageFile } from './worked-page-file';
+import type { CleanFile } from './clean-file';
 
 /** Names in a PDF that make it do something, or carry other files. */
 const actingNames = [
@@ -20,7 +20,7 @@ const actingNames = [
  *
  * @throws RequestError 415 where it is encrypted, broken, too long, or carries scripts or other files
  */
-export async function cleanPdf(upload: Uint8Array, mostPages: number): Promise<WorkedPageFile> {
+export async function cleanPdf(upload: Uint8Array, mostPages: number): Promise<CleanFile> {
   const document = await open(upload);
   if (carriesScripts(document))
     throw wrongMediaType(

@@ -1,15 +1,9 @@
 import { fileTypeFromBuffer } from 'file-type';
-import { mostPages, type pageMediaTypes } from '@shared/scripts';
+import { mostPages } from '@shared/scripts';
 import { wrongMediaType } from '../http/errors';
 import { cleanImage } from './clean-image';
 import { cleanPdf } from './clean-pdf';
-
-/** A file as it is kept: what it is was found from its content, and what tells of its maker is gone. */
-export interface WorkedPageFile {
-  readonly bytes: Uint8Array;
-  readonly mediaType: (typeof pageMediaTypes)[number];
-  readonly pageCount: number;
-}
+import type { CleanFile } from './clean-file';
 
 /**
  * Makes of an upload what can be kept: its kind by content, never by name; a picture upright and without metadata; a PDF
@@ -17,7 +11,7 @@ export interface WorkedPageFile {
  *
  * @throws RequestError 415 with what to do instead
  */
-export async function workedPageFile(upload: Buffer): Promise<WorkedPageFile> {
+export async function workedPageFile(upload: Buffer): Promise<CleanFile> {
   const kind = (await fileTypeFromBuffer(upload))?.mime ?? '';
   switch (kind) {
     case 'application/pdf':
