@@ -25,7 +25,7 @@ const grounds = {
   mail: ['http', 'access', 'context', 'drizzle'],
   live: ['http', 'access', 'context', 'drizzle'],
   jobs: ['http', 'access', 'live', 'mail', 'record', 'context', 'drizzle'],
-  variants: ['keys', 'optics', 'context', 'drizzle'],
+  variants: ['keys', 'checks', 'optics', 'context', 'drizzle'],
   checks: ['keys', 'optics'],
   keys: ['optics'],
 };

@@ -79,7 +79,8 @@ const computed = {
 };
 
 const refusedNames = new Set(['i', 'e', 'pi']);
-const variableName = z
+/** The name of a formula's variable. */
+export const variableName = z
   .string()
   .regex(/^[A-Za-z][A-Za-z0-9_]*$/, 'A variable is named by a letter, then letters, digits or _.')
   .max(40, 'The name of a variable is at most 40 characters.')
@@ -101,6 +102,17 @@ export const variableRangeSchema = z.union(
   { error: 'A range is [low, high] or { "integers": [low, high] }, low before high.' },
 );
 export type VariableRange = z.infer<typeof variableRangeSchema>;
+
+/** How a formula's variable is printed and what else stands for it, where no given of its name says so. */
+export const variableWritingSchema = z.strictObject({
+  /** KaTeX, for example `\\bar n`. */
+  symbol: z.string().trim().min(1).max(60, 'A symbol is at most 60 characters.').optional(),
+  spellings: z
+    .array(z.string().trim().min(1).max(30, 'A spelling is at most 30 characters.'))
+    .max(12, 'A variable has at most 12 spellings.')
+    .optional(),
+});
+export type VariableWriting = z.infer<typeof variableWritingSchema>;
 
 const label = z
   .string()
@@ -160,6 +172,7 @@ const formulaAnswer = z.strictObject({
     .record(variableName, variableRangeSchema)
     .refine((variables) => Object.keys(variables).length > 0, 'A formula needs at least one variable.')
     .refine((variables) => Object.keys(variables).length <= 12, 'A formula has at most 12 variables.'),
+  symbols: z.record(variableName, variableWritingSchema).optional(),
   tolerance: toleranceSchema,
 });
 
@@ -231,7 +244,7 @@ export const defaultUnitFraction = 0.5;
 
 /**
  * What is printed beside the answer field of a part, and with it all that the reader may know: no key, tolerance or
- * slip. Symbols and spellings of a formula's variables come from the problem's givens, where it has some of that name.
+ * slip. Symbols and spellings of a formula's variables are its own, or else those of the problem's givens of that name.
  */
 export function answerField(
   specification: AnswerSpecification,
@@ -245,7 +258,11 @@ export function answerField(
     case 'formula':
       return {
         form: 'formula',
-        variables: Object.keys(specification.variables).map((name) => ({ name, ...variables.get(name) })),
+        variables: Object.keys(specification.variables).map((name) => ({
+          name,
+          ...variables.get(name),
+          ...specification.symbols?.[name],
+        })),
       };
     case 'choice':
       return {

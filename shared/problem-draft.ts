@@ -40,6 +40,23 @@ export type DraftGiven = z.infer<typeof draftGiven>;
 export const draftSlip = z.object({ name: short, expression: long, feedback: long, fraction: short });
 export type DraftSlip = z.infer<typeof draftSlip>;
 
+/** A formula's variable as it is typed. */
+export const draftVariable = z.object({
+  name: short,
+  low: short,
+  high: short,
+  integers: z.boolean(),
+  /** KaTeX; empty where the given of that name, or the name itself, says it. */
+  symbol: short,
+  /** Separated by commas. */
+  spellings: short,
+});
+export type DraftVariable = z.infer<typeof draftVariable>;
+
+/** An option of a choice as it is typed. */
+export const draftOption = z.object({ label: short, text: long, correct: z.boolean() });
+export type DraftOption = z.infer<typeof draftOption>;
+
 /** What a part expects, as it is typed. */
 export const draftAnswer = z.object({
   form: z.enum(AnswerForm),
@@ -49,8 +66,8 @@ export const draftAnswer = z.object({
   tolerance: z.object({ relative: short, absolute: short, significantFigures: short, totalVariation: short }),
   minimumFidelity: short,
   upToPhase: z.boolean().default(false),
-  variables: z.array(z.object({ name: short, low: short, high: short, integers: z.boolean() })).max(40),
-  options: z.array(z.object({ label: short, text: long, correct: z.boolean() })).max(60),
+  variables: z.array(draftVariable).max(40),
+  options: z.array(draftOption).max(60),
   several: z.boolean().default(false),
   slips: z.array(draftSlip).max(40),
   followThrough: short,
@@ -114,6 +131,16 @@ export function emptyGiven(name = ''): DraftGiven {
 /** A slip of which nothing has been typed. */
 export function emptySlip(): DraftSlip {
   return { name: '', expression: '', feedback: '', fraction: '0' };
+}
+
+/** A variable of a formula of which nothing has been typed. */
+export function emptyVariable(): DraftVariable {
+  return { name: '', low: '', high: '', integers: false, symbol: '', spellings: '' };
+}
+
+/** An option of a choice of which only the label is there. */
+export function emptyOption(label: string): DraftOption {
+  return { label, text: '', correct: false };
 }
 
 /** A criterion of which only kind and name are there; for accuracy marks the check's `right` is proposed. */

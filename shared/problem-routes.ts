@@ -27,7 +27,12 @@ export const keyFault = fieldProblem.omit({ path: true });
 /** What an expression came to in one variant. */
 export const sampledKey = z.union([
   z.object({
+    /** Of a state or a formula in words. */
     value: plainValue,
+    /** A state or a formula in KaTeX. */
+    typeset: z.string().optional(),
+    /** A formula's value at one of the points where it is compared, with the point. */
+    example: z.string().optional(),
     unit: z.string().optional(),
     method: z.string(),
     dimension: z.number().int().optional(),

@@ -1,5 +1,15 @@
 import { describe, expect, it } from 'vitest';
-import { emptyDraft, emptyGiven, emptyPart, emptySlip, type ProblemDraft } from './problem-draft';
+import {
+  emptyDraft,
+  emptyGiven,
+  emptyOption,
+  emptyPart,
+  emptySlip,
+  emptyVariable,
+  type DraftAnswer,
+  type DraftVariable,
+  type ProblemDraft,
+} from './problem-draft';
 import { defaultConvention } from './primitives';
 import { draftOf, readDraft } from './read-draft';
 import { readTypedList, readTypedNumber, typedDecimals } from './typed-number';
@@ -93,6 +103,84 @@ describe('readDraft', () => {
     const read = readDraft(buildDraft({ givens: [emptyGiven('broken'), buildDraft().givens[0]!] }));
     expect(read.content).toBeUndefined();
     expect(read.givens.map(({ index, given }) => [index, given.name])).toEqual([[1, 'nbar']]);
+  });
+});
+
+describe('answer forms', () => {
+  const withAnswer = (answer: Partial<DraftAnswer>) => {
+    const draft = buildDraft();
+    return { ...draft, parts: [{ ...draft.parts[0]!, answer: { ...draft.parts[0]!.answer, slips: [], ...answer } }] };
+  };
+  const answerOf = (answer: Partial<DraftAnswer>) => readDraft(withAnswer(answer)).content?.parts[0]?.answer;
+  const faultsOf = (answer: Partial<DraftAnswer>) =>
+    readDraft(withAnswer(answer)).faults.map(({ path, message }) => [path.slice(3).join('.'), message]);
+  const variable = (change: Partial<DraftVariable>): DraftVariable => ({ ...emptyVariable(), ...change });
+
+  it('reads each form, and the draft of it as the same', () => {
+    const forms: Partial<DraftAnswer>[] = [
+      { form: 'complex', upToPhase: true },
+      { form: 'list' },
+      { form: 'matrix' },
+      { form: 'distribution', tolerance: { ...buildDraft().parts[0]!.answer.tolerance, totalVariation: '2%' } },
+      { form: 'state', minimumFidelity: '0.99' },
+      {
+        form: 'formula',
+        variables: [
+          variable({ name: 'kappa', low: '0', high: '2', symbol: '\\kappa', spellings: 'k, κ' }),
+          variable({ name: 'n', low: '0', high: '5', integers: true }),
+        ],
+      },
+      { form: 'choice', options: [emptyOption('A'), { label: 'B', text: 'thermal', correct: true }] },
+      { form: 'worked' },
+    ];
+    for (const answer of forms) {
+      const { content, faults } = readDraft(withAnswer(answer));
+      expect(faults, answer.form).toEqual([]);
+      expect(readDraft(draftOf(content!)).content, answer.form).toEqual(content);
+    }
+    expect(answerOf(forms[5]!)).toMatchObject({
+      variables: { kappa: [0, 2], n: { integers: [0, 5] } },
+      symbols: { kappa: { symbol: '\\kappa', spellings: ['k', 'κ'] } },
+    });
+    expect(answerOf(forms[6]!)).toMatchObject({ options: ['A', { label: 'B', text: 'thermal' }], correct: ['B'] });
+  });
+
+  it.each<[Partial<DraftAnswer>, string, string]>([
+    [{ form: 'formula', variables: [variable({ name: 'x', high: '1' })] }, 'variables.0.low', 'lowest value of x'],
+    [
+      { form: 'formula', variables: [variable({ name: 'x', low: '2', high: '1' })] },
+      'variables.0.high',
+      'below its high',
+    ],
+    [
+      { form: 'formula', variables: [variable({ name: '2x', low: '0', high: '1' })] },
+      'variables.0.name',
+      'by a letter',
+    ],
+    [{ form: 'formula', variables: [variable({ low: '0', high: '1' })] }, 'variables.0.name', 'Name the variable'],
+    [{ form: 'formula', variables: [] }, 'variables', 'at least one variable'],
+    [{ form: 'choice', options: [emptyOption('A'), emptyOption('B C')] }, 'options.1.label', 'no spaces'],
+    [{ form: 'choice', options: [emptyOption('A'), emptyOption('B')] }, 'correct', 'Name the correct option'],
+    [{ form: 'state', minimumFidelity: 'much' }, 'minimumFidelity', 'is not a number'],
+    [{ form: 'state', minimumFidelity: '2' }, 'minimumFidelity', 'above 1'],
+    [{ form: 'distribution' }, 'tolerance.totalVariation', 'must be a number'],
+  ])('names what is wrong at its field: %j', (answer, path, words) => {
+    const faults = faultsOf(answer);
+    expect(faults.map(([at]) => at)).toContain(path);
+    expect(faults.find(([at]) => at === path)?.[1]).toContain(words);
+  });
+
+  it('names a variable that is there twice', () => {
+    const twice = [variable({ name: 'x', low: '0', high: '1' }), variable({ name: 'x', low: '0', high: '2' })];
+    expect(faultsOf({ form: 'formula', variables: twice })).toEqual([
+      ['variables.1.name', 'Another variable is called x already.'],
+    ]);
+  });
+
+  it('lets no worked answer stand without a person, and keeps the box', () => {
+    const draft = withAnswer({ form: 'worked' });
+    expect(draft.parts[0]?.standsAlone).toContain('right');
+    expect(readDraft(draft).content?.parts[0]?.standsAlone).toEqual(['unanswered']);
   });
 });
 

@@ -1,6 +1,13 @@
-import { optionLabel, type AnswerSpecification } from './answer-forms';
+import type * as z from 'zod';
+import {
+  optionLabel,
+  variableName,
+  variableRangeSchema,
+  type AnswerSpecification,
+  type VariableRange,
+} from './answer-forms';
 import type { FieldProblem } from './problem-details';
-import type { DraftAnswer, DraftGiven, DraftPart, ProblemDraft } from './problem-draft';
+import type { DraftAnswer, DraftGiven, DraftPart, DraftVariable, ProblemDraft } from './problem-draft';
 import { problemFaults } from './problem-faults';
 import { given, part, problemContent, type Given, type Part, type ProblemContent } from './problems';
 import { readTypedList, readTypedNumber, typedDecimals, typeNumber } from './typed-number';
@@ -24,6 +31,13 @@ class Faults {
   add(fault: FieldProblem): void {
     if (!this.list.some((each) => each.path.join('.') === fault.path.join('.') && each.position === fault.position))
       this.list.push(fault);
+  }
+
+  /** Whether something below a path is wrong already. */
+  hasBelow(path: Path): boolean {
+    return this.list.some(
+      (each) => each.path.length > path.length && path.every((step, index) => step === each.path[index]),
+    );
   }
 
   /** The number in a field; undefined, with a fault, where it is none; undefined without one where it is empty. */
@@ -53,11 +67,12 @@ export function readDraft(draft: ProblemDraft): ReadDraft {
   };
   const parsed = problemContent.safeParse(candidate);
   if (!parsed.success) {
-    for (const issue of parsed.error.issues)
-      faults.add({
-        path: issue.path.map((step) => (typeof step === 'symbol' ? String(step) : step)),
-        message: issue.message,
-      });
+    for (const issue of parsed.error.issues) {
+      const path = issue.path.map((step) => (typeof step === 'symbol' ? String(step) : step));
+      const place = placeInDraft(path, draft);
+      // A bound that is no number has been named at its own field.
+      if (!faults.hasBelow(place)) faults.add({ path: place, message: messageOf(issue) });
+    }
   } else {
     for (const fault of problemFaults(parsed.data)) faults.add(fault);
   }
@@ -71,6 +86,30 @@ export function readDraft(draft: ProblemDraft): ReadDraft {
   };
 }
 
+/** The name of an entry has its own rules, and their own words. */
+function messageOf(issue: z.core.$ZodIssue): string {
+  return (issue.code === 'invalid_key' ? issue.issues[0]?.message : undefined) ?? issue.message;
+}
+
+/** Where the draft has what stands at a path of the content: it lists variables and options that the content names. */
+function placeInDraft(path: Path, draft: ProblemDraft): Path {
+  const [area, index, answer, field, name, ...rest] = path;
+  if (area !== 'parts' || typeof index !== 'number' || answer !== 'answer') return path;
+  const typed = draft.parts[index]?.answer;
+  const at = (...steps: Path) => ['parts', index, 'answer', ...steps];
+  if ((field === 'variables' || field === 'symbols') && typeof name === 'string') {
+    const variable = typed?.variables.findIndex((each) => each.name.trim() === name) ?? -1;
+    if (variable < 0) return at('variables');
+    if (field === 'symbols') return at('variables', variable, rest[0] === 'spellings' ? 'spellings' : 'symbol');
+    const end = rest.find((step) => typeof step === 'number');
+    const isName = rest.length === 0 && !variableName.safeParse(name).success;
+    return at('variables', variable, isName ? 'name' : end === 0 ? 'low' : 'high');
+  }
+  if (field === 'options' && typeof name === 'number') return at('options', name, rest[0] ?? 'label');
+  if (field === 'correct') return at('correct');
+  return path;
+}
+
 /** The part at an index of a draft, where all of it is in order. */
 export function readDraftPart(draft: ProblemDraft, index: number): Part | undefined {
   const typed = draft.parts[index];
@@ -78,6 +117,17 @@ export function readDraftPart(draft: ProblemDraft, index: number): Part | undefi
   const faults = new Faults();
   const parsed = part.safeParse(candidatePart(typed, [], faults));
   return parsed.success && faults.list.length === 0 ? parsed.data : undefined;
+}
+
+/** The variables of a formula that are in order, by name, as far as they are typed. */
+export function readDraftVariables(typed: readonly DraftVariable[]): Readonly<Record<string, VariableRange>> {
+  const { variables } = candidateVariables(typed, [], new Faults());
+  return Object.fromEntries(
+    Object.entries(variables).flatMap(([name, range]) => {
+      const read = variableRangeSchema.safeParse(range);
+      return variableName.safeParse(name).success && read.success ? [[name, read.data]] : [];
+    }),
+  );
 }
 
 /** The words of a field that lists them with commas. */
@@ -124,6 +174,9 @@ function candidateGiven(typed: DraftGiven, path: Path, faults: Faults): unknown 
 function candidatePart(typed: DraftPart, path: Path, faults: Faults): unknown {
   return {
     ...typed,
+    // What is written in words is always marked by a person; the box is kept for when the form is another one again.
+    standsAlone:
+      typed.answer.form === 'worked' ? typed.standsAlone.filter((each) => each !== 'right') : typed.standsAlone,
     answer: candidateAnswer(typed.answer, [...path, 'answer'], faults),
     criteria: typed.criteria.map((each, index) => ({
       ...each,
@@ -182,17 +235,47 @@ function candidateAnswer(typed: DraftAnswer, path: Path, faults: Faults): unknow
       return {
         ...computed,
         tolerance,
-        variables: Object.fromEntries(
-          typed.variables.map(({ name, low, high, integers }, index) => {
-            const range = [number(low, 'variables', index, 'low'), number(high, 'variables', index, 'high')];
-            return [name.trim(), integers ? { integers: range } : range];
-          }),
-        ),
+        ...candidateVariables(typed.variables, [...path, 'variables'], faults),
       };
     case 'list':
     case 'matrix':
       return { ...computed, tolerance };
   }
+}
+
+/** A formula's variables by name, with their ranges and, where the author writes them otherwise, their symbols. */
+function candidateVariables(
+  typed: readonly DraftVariable[],
+  path: Path,
+  faults: Faults,
+): { readonly variables: Readonly<Record<string, unknown>>; readonly symbols?: unknown } {
+  const variables: Record<string, unknown> = {};
+  const symbols: Record<string, unknown> = {};
+  for (const [index, each] of typed.entries()) {
+    const name = each.name.trim();
+    if (name === '') {
+      faults.add({ path: [...path, index, 'name'], message: 'Name the variable, or remove it.' });
+      continue;
+    }
+    if (Object.hasOwn(variables, name)) {
+      faults.add({ path: [...path, index, 'name'], message: `Another variable is called ${name} already.` });
+      continue;
+    }
+    const bound = (end: 'low' | 'high') => {
+      if (each[end].trim() === '')
+        faults.add({ path: [...path, index, end], message: `Give the ${end}est value of ${name}.` });
+      return faults.number(each[end], [...path, index, end]);
+    };
+    const range = [bound('low'), bound('high')];
+    variables[name] = each.integers ? { integers: range } : range;
+    const spellings = splitWords(each.spellings);
+    const writing = {
+      ...present('symbol', each.symbol.trim()),
+      ...present('spellings', spellings.length > 0 ? spellings : undefined),
+    };
+    if (Object.keys(writing).length > 0) symbols[name] = writing;
+  }
+  return { variables, ...present('symbols', Object.keys(symbols).length > 0 ? symbols : undefined) };
 }
 
 /** The draft that reads as the given content: the way back of `readDraft`. */
@@ -266,7 +349,15 @@ function draftOfAnswer(answer: AnswerSpecification): DraftAnswer {
       answer.form === 'formula'
         ? Object.entries(answer.variables).map(([name, range]) => {
             const [low, high] = Array.isArray(range) ? range : range.integers;
-            return { name, low: typeNumber(low), high: typeNumber(high), integers: !Array.isArray(range) };
+            const writing = answer.symbols?.[name];
+            return {
+              name,
+              low: typeNumber(low),
+              high: typeNumber(high),
+              integers: !Array.isArray(range),
+              symbol: writing?.symbol ?? '',
+              spellings: (writing?.spellings ?? []).join(', '),
+            };
           })
         : [],
     options:

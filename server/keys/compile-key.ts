@@ -3,6 +3,7 @@ import { defaultConvention, type Convention } from '../optics/convention';
 import type { ComparedValue } from '../optics/methods';
 import { OpticsError } from '../optics/optics-error';
 import { isState } from '../optics/state';
+import { stateFunctions } from '../optics/states';
 import { KeyError } from './key-error';
 import { mathematics } from './mathematics';
 import { binaryOperators, truth, unaryOperators } from './operators';
@@ -30,7 +31,11 @@ export interface CompileOptions {
 
 interface Run extends Surroundings {
   readonly values: ReadonlyMap<string, Value>;
+  readonly look: Look | undefined;
 }
+
+/** Sees every question that is asked of a state of light, before it is answered. */
+export type Look = (name: string, values: readonly Value[]) => void;
 
 type Step = (run: Run) => Value;
 
@@ -40,7 +45,10 @@ export interface CompiledKey {
   /** The names in scope that it uses. */
   readonly uses: readonly string[];
   /** @throws KeyError where it has no value for these values */
-  run(values: ReadonlyMap<string, Value>): { readonly value: Value; readonly figures: readonly ComparedValue[] };
+  run(
+    values: ReadonlyMap<string, Value>,
+    look?: Look,
+  ): { readonly value: Value; readonly figures: readonly ComparedValue[] };
 }
 
 /**
@@ -66,10 +74,10 @@ export function compileKey(expression: string, options: CompileOptions): Compile
   return {
     expression,
     uses: [...compiler.uses],
-    run: (values) => {
+    run: (values, look) => {
       const figures: ComparedValue[] = [];
       const value = guarded(source.whole, undefined, () =>
-        step({ values, convention, note: (figure) => void figures.push(figure) }),
+        step({ values, look, convention, note: (figure) => void figures.push(figure) }),
       );
       return { value, figures };
     },
@@ -276,8 +284,10 @@ class Compiler {
     const plain = plainFunctions[name];
     if (!optics && !plain) throw new KeyError(unknownFunction(name), place, { functionName: name });
     const args = (node.args ?? []).map((arg) => this.step(arg));
+    const asks = optics !== undefined && !Object.hasOwn(stateFunctions, name);
     return (run) => {
       const values = args.map((arg) => arg(run));
+      if (asks && run.look && values.some(isState)) run.look(name, values);
       const act = (): Value => {
         if (optics) return optics(values, run);
         const state = values.find(isState);

@@ -3,5 +3,8 @@ export { evaluateKey, evaluateState, readGivens, type KeyResult } from './evalua
 export { KeyError, type KeyFault } from './key-error';
 export { createKeyPool, type KeyPool } from './key-pool';
 export { KeyEvaluator, type KeyOutcome, type KeyRequest } from './key-task';
+export { stateComponents, type StateAmplitude, type StateComponents } from './state-components';
 export { keySignatures, type KeySignature } from './signatures';
 export type { GivenValue, PlainValue, Value } from './value';
+export type { FormulaValues, Wanted, WrittenKey } from './written-key';
+export type { StatePicture } from './state-picture';

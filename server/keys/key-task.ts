@@ -3,17 +3,21 @@ import { compileKey, type CompiledKey } from './compile-key';
 import { evaluateKey, readGivens, type KeyResult } from './evaluate-key';
 import { KeyError, type KeyFault } from './key-error';
 import type { GivenValue } from './value';
+import { evaluateWanted, type Wanted, type WrittenKey } from './written-key';
 
 /** An expression to be evaluated, with the values of the names that it may use. */
 export interface KeyRequest {
   readonly expression: string;
   readonly givens: Readonly<Record<string, GivenValue>>;
   readonly convention: Convention;
+  /** What it is to come to; a number or a list where nothing is said. */
+  readonly wanted?: Wanted | undefined;
 }
 
 /** What an expression came to, or why it has no value. */
 export type KeyOutcome =
-  { readonly key: KeyResult; readonly fault?: undefined } | { readonly key?: undefined; readonly fault: KeyFault };
+  | { readonly key: KeyResult | WrittenKey; readonly fault?: undefined }
+  | { readonly key?: undefined; readonly fault: KeyFault };
 
 const mostKept = 256;
 
@@ -23,15 +27,18 @@ export class KeyEvaluator {
 
   evaluate(request: KeyRequest): KeyOutcome {
     try {
-      return { key: evaluateKey(this.compile(request), readGivens(request.givens)) };
+      const compiled = this.compile(request);
+      const givens = readGivens(request.givens);
+      return { key: request.wanted ? evaluateWanted(compiled, givens, request.wanted) : evaluateKey(compiled, givens) };
     } catch (error) {
       if (error instanceof KeyError) return { fault: error.toFault() };
       throw error;
     }
   }
 
-  private compile({ expression, givens, convention }: KeyRequest): CompiledKey {
-    const names = Object.keys(givens);
+  private compile({ expression, givens, convention, wanted }: KeyRequest): CompiledKey {
+    const variables = wanted?.kind === 'formula' ? Object.keys(wanted.points[0] ?? {}) : [];
+    const names = [...new Set([...Object.keys(givens), ...variables])];
     const { vacuumVariance, squeezingSign, splitterPhase } = convention;
     const identity = JSON.stringify([expression, names, vacuumVariance, squeezingSign, splitterPhase]);
     const kept = this.compiled.get(identity);

@@ -202,7 +202,14 @@ function readAnswer(fields: FileFields): DraftAnswer {
     minimumFidelity: fields.text('minimum fidelity'),
     upToPhase: fields.flag('up to phase'),
     variables: fields.entries('variables').map(([name, range]) => {
-      const variable = { name, low: range.text('from'), high: range.text('to'), integers: range.flag('whole') };
+      const variable = {
+        name,
+        low: range.text('from'),
+        high: range.text('to'),
+        integers: range.flag('whole'),
+        symbol: range.text('symbol'),
+        spellings: range.words('spellings'),
+      };
       range.end();
       return variable;
     }),

@@ -1,6 +1,7 @@
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import { problems, record, revisions } from '@drizzle/schema';
+import type { DraftAnswer } from '@shared/problem-draft';
 import type { ProblemDetail } from '@shared/problem-routes';
 import { buildDraft, buildPart } from '../testing/build-draft';
 import { createHarness, type Harness } from '../testing/harness';
@@ -256,6 +257,30 @@ describe('samples', () => {
       path: ['givens', 2, 'expression'],
       message: 'These givens are derived from each other in a circle: p → q → p.',
     });
+  });
+
+  it('shows states in Dirac notation, formulas typeset with a value, lists as they are', async () => {
+    const tolerance = { relative: '1%', absolute: '', significantFigures: '', totalVariation: '2%' };
+    const variable = { name: 't', low: '0', high: '2', integers: false, symbol: '', spellings: '' };
+    const answers: Partial<DraftAnswer>[] = [
+      { form: 'state', minimumFidelity: '0.99', key: '(ket(1, 0) + i*ket(0, 1))/sqrt(2)', slips: [] },
+      { form: 'formula', variables: [variable], key: 'nbar*exp(-t)', slips: [] },
+      { form: 'distribution', tolerance, key: 'photonDistribution(coherent(sqrt(nbar)), 3)', slips: [] },
+    ];
+    const statement = '$\\val{nbar}$, $\\val{T}$\n(a) One.\n(b) Two.\n(c) Three.';
+    const draft = buildDraft({ statement, parts: answers.map((answer) => buildPart(answer)) });
+    const { body } = await lead.post('/api/problems/sample').send({ draft, shown: 1 }).expect(200);
+    expect(body.faults).toEqual([]);
+    const [state, formula, distribution] = body.variants[0].parts.map((part: { key: unknown }) => part.key);
+    expect(state).toMatchObject({ value: '0.7071i |0,1⟩ + 0.7071 |1,0⟩', method: 'number basis' });
+    expect(state.typeset).toContain('|1,0\\rangle');
+    expect(state).not.toHaveProperty('compared');
+    // nbar = 2.0 is printed, t stays a variable.
+    expect(formula.typeset).toBe('{2.0}\\cdot\\exp\\left(-t\\right)');
+    expect(formula.example).toMatch(/^\d\.\d+ at t = \d\.\d+$/);
+    expect(distribution.value).toHaveLength(4);
+    const problem = await save(await begin('Forms'), draft);
+    await revise(problem);
   });
 
   it('bounds how much is asked for at once', async () => {

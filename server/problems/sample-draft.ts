@@ -1,12 +1,16 @@
 import type { FieldProblem } from '@shared/problem-details';
-import type { ProblemDraft } from '@shared/problem-draft';
+import type { DraftAnswer, ProblemDraft } from '@shared/problem-draft';
 import type { ProblemSample, SampledKey } from '@shared/problem-routes';
-import { readDraft } from '@shared/read-draft';
+import { readDraft, readDraftVariables } from '@shared/read-draft';
+import type { GivenValues } from '@shared/variants';
+import { comparedPoints, formulaPoints } from '../checks';
 import { areNumbered, countVariants, drawNumbers, plainGivensOf } from '../variants/draw-givens';
 import { deriveGivens } from '../variants/derive-givens';
 import type { Keys } from '../variants/evaluate-outcomes';
 import { evaluateKeys, type PartExpressions } from '../variants/evaluate-variant-keys';
-import type { KeyOutcome } from '../variants/key-outcome';
+import { presentKey, type KeyOutcome } from '../variants/key-outcome';
+import { printFormulaPoint } from './formula-point';
+import { typesetExpression } from './typeset-expression';
 
 interface SampleOptions {
   readonly count: number;
@@ -44,10 +48,11 @@ export async function sampleDraft(keys: Keys, draft: ProblemDraft, options: Samp
     variants: derived.map((variant, index) => ({
       number: numbered ? (numbers[index] ?? null) : null,
       givens: variant.givens,
-      parts: (results[index] ?? []).map(({ key, slips }) => ({
-        key: key && presentOutcome(key),
-        slips: slips.map(presentOutcome),
-      })),
+      parts: (results[index] ?? []).map(({ key, slips }, place) => {
+        const part = draft.parts[place];
+        const present = (outcome: KeyOutcome) => presentOutcome(outcome, part, draft, variant.givens);
+        return { key: key && present(key), slips: slips.map(present) };
+      }),
     })),
     faults: [...read.faults, ...derivationFaults(derived, read.givens)],
   };
@@ -71,7 +76,15 @@ function draftExpressions(part: ProblemDraft['parts'][number]): PartExpressions 
   return {
     key: answer.key.trim() === '' ? null : answer.key,
     slips: answer.slips.map((slip) => slip.expression),
+    wanted: draftWanted(answer),
   };
+}
+
+function draftWanted(answer: DraftAnswer): PartExpressions['wanted'] {
+  if (answer.form === 'state') return { kind: 'state' };
+  if (answer.form !== 'formula') return undefined;
+  const points = formulaPoints(readDraftVariables(answer.variables));
+  return { kind: 'formula', points, enough: comparedPoints };
 }
 
 function derivationFaults(
@@ -88,6 +101,27 @@ function derivationFaults(
   }));
 }
 
-function presentOutcome(outcome: KeyOutcome): SampledKey {
-  return outcome.fault ? { fault: outcome.fault } : outcome.key;
+function presentOutcome(
+  outcome: KeyOutcome,
+  part: ProblemDraft['parts'][number] | undefined,
+  draft: ProblemDraft,
+  givens: GivenValues,
+): SampledKey {
+  if (outcome.fault) return { fault: outcome.fault };
+  const { key } = outcome;
+  const shown = presentKey(key);
+  if (typeof key.value !== 'string' || !part) return shown;
+  if (part.answer.form !== 'formula') return 'typeset' in key ? { ...shown, typeset: key.typeset } : shown;
+  const { variables } = part.answer;
+  const typeset = typesetExpression(key.value, {
+    values: givens,
+    symbols: new Map(
+      [...draft.givens, ...variables]
+        .filter(({ symbol }) => symbol.trim() !== '')
+        .map(({ name, symbol }) => [name.trim(), symbol.trim()]),
+    ),
+    variables: new Set(variables.map(({ name }) => name.trim())),
+  });
+  const values = 'compared' in key && key.compared && 'atPoints' in key.compared ? key.compared.atPoints : [];
+  return { ...shown, typeset, example: printFormulaPoint(formulaPoints(readDraftVariables(variables)), values) };
 }

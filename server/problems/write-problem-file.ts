@@ -132,9 +132,9 @@ function writeAnswer(answer: DraftAnswer): Entries {
     'minimum fidelity': answer.minimumFidelity,
     'up to phase': answer.upToPhase,
     variables: Object.fromEntries(
-      answer.variables.map(({ name, low, high, integers }) => [
+      answer.variables.map(({ name, low, high, integers, symbol, spellings }) => [
         name,
-        withoutEmpty({ from: low, to: high, whole: integers }),
+        withoutEmpty({ from: low, to: high, whole: integers, symbol, spellings }),
       ]),
     ),
     options: answer.options.map((option) => withoutEmpty(option)),

@@ -7,7 +7,7 @@ import { checkAnswer, KeyProblem, type Check, type ComputedKey, type PartKeys as
 import type { Keys } from '../variants/evaluate-outcomes';
 import { evaluateVariantKeys, evaluateWithEarlier, partName, type PartKeys } from '../variants/evaluate-variant-keys';
 import type { GivenValue } from '../keys';
-import type { KeyOutcome, Scope } from '../variants/key-outcome';
+import { presentKey, type KeyOutcome, type Scope } from '../variants/key-outcome';
 
 /** What was handed in for a part. */
 export interface HandedIn {
@@ -54,7 +54,7 @@ function checkPart(
   const key = computed[index]?.key?.key;
   try {
     const check = checkAnswer({ part: part.answer, text, ...keysOf(part, index, computed, own) });
-    return present(part, check, key ?? null);
+    return present(part, check, key ? presentKey(key) : null);
   } catch (error) {
     if (error instanceof KeyProblem) return null;
     throw error;
@@ -100,7 +100,7 @@ async function ownKeys(
   if (used.length === 0) return undefined;
   const scope: Record<string, GivenValue> = {};
   for (const each of used) {
-    const value = ownValue(content.parts[each], earlier[each], computed[each]?.key?.key);
+    const value = ownValue(content.parts[each], earlier[each], computed[each]?.key?.key?.unit);
     if (value === undefined) return undefined;
     scope[partName(each)] = value;
   }
@@ -123,20 +123,21 @@ function earlierUsedBy(answer: ComputedSpecification, index: number): number[] {
 function ownValue(
   part: Part | undefined,
   result: CheckResult | null | undefined,
-  key: VariantKey | undefined,
+  unitOfKey: string | undefined,
 ): GivenValue | undefined {
   const value = result?.value;
   if (value === null || value === undefined) return undefined;
-  if (typeof value !== 'number') return value as GivenValue;
+  if (typeof value !== 'number') return value;
   // A value is compared in the part's unit where it names one, otherwise in the key's.
-  const unit = part?.answer.form === 'number' ? (part.answer.unit ?? key?.unit) : key?.unit;
-  return unit === undefined || key?.unit === undefined ? value : `${String(value)} ${unit}`;
+  const unit = part?.answer.form === 'number' ? (part.answer.unit ?? unitOfKey) : unitOfKey;
+  return unit === undefined || unitOfKey === undefined ? value : `${String(value)} ${unit}`;
 }
 
 function compared(outcome: KeyOutcome | null | undefined): ComputedKey | undefined {
   const key = outcome?.key;
-  if (!key || typeof key.value === 'string') return undefined;
-  return { value: key.value as ComputedKey['value'], unit: key.unit };
+  if (!key) return undefined;
+  if (typeof key.value !== 'string') return { value: key.value, unit: key.unit };
+  return 'compared' in key && key.compared ? { value: key.compared } : undefined;
 }
 
 function present(

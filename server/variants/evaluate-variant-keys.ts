@@ -1,7 +1,9 @@
-import { isComputed } from '@shared/answer-forms';
+import { isComputed, type AnswerSpecification } from '@shared/answer-forms';
 import { partLabel, type Part, type ProblemContent } from '@shared/problems';
 import type { Convention } from '@shared/primitives';
 import type { GivenValues } from '@shared/variants';
+import { comparedPoints, formulaPoints } from '../checks/formula-points';
+import type { Wanted } from '../keys';
 import { evaluateOutcomes, type Keys } from './evaluate-outcomes';
 import { scopeOf, scopeValueOf, type KeyOutcome, type Scope } from './key-outcome';
 
@@ -9,6 +11,8 @@ import { scopeOf, scopeValueOf, type KeyOutcome, type Scope } from './key-outcom
 export interface PartExpressions {
   readonly key: string | null;
   readonly slips: readonly string[];
+  /** What they are to come to, where that is more than a number or a list. */
+  readonly wanted?: Wanted | undefined;
 }
 
 /** What a part's expressions came to in one variant; the key is null where a part has none. */
@@ -20,7 +24,15 @@ export interface PartKeys {
 /** The expressions of a part of a problem. */
 export function expressionsOf(part: Pick<Part, 'answer'>): PartExpressions {
   if (!isComputed(part.answer)) return { key: null, slips: [] };
-  return { key: part.answer.key, slips: (part.answer.slips ?? []).map((slip) => slip.expression) };
+  const { key, slips = [] } = part.answer;
+  return { key, slips: slips.map((slip) => slip.expression), wanted: wantedOf(part.answer) };
+}
+
+/** What the expressions of a part are to come to: a state, or a formula's values at the points where it is compared. */
+export function wantedOf(answer: AnswerSpecification): Wanted | undefined {
+  if (answer.form === 'state') return { kind: 'state' };
+  if (answer.form !== 'formula') return undefined;
+  return { kind: 'formula', points: formulaPoints(answer.variables), enough: comparedPoints };
 }
 
 /** The name under which later parts use the value of the part at an index. */
@@ -50,7 +62,12 @@ export async function evaluateKeys(
     const outcomes = await evaluateOutcomes(
       keys,
       scopes.flatMap((scope) =>
-        expressions.map((expression) => ({ expression, givens: { ...scope }, convention: itsConvention })),
+        expressions.map((expression) => ({
+          expression,
+          givens: { ...scope },
+          convention: itsConvention,
+          wanted: part.wanted,
+        })),
       ),
       deadline,
     );
@@ -58,7 +75,8 @@ export async function evaluateKeys(
       const own = outcomes.slice(variant * expressions.length, (variant + 1) * expressions.length);
       const key = part.key === null ? null : (own[0] ?? null);
       results[variant]?.push({ key, slips: part.key === null ? own : own.slice(1) });
-      if (key?.key) scope[partName(index)] = scopeValueOf(key.key);
+      const value = key?.key && scopeValueOf(key.key);
+      if (value !== undefined) scope[partName(index)] = value;
     }
   }
   return results;
@@ -88,13 +106,14 @@ export async function evaluateWithEarlier(
 ): Promise<PartKeys> {
   const part = content.parts[partIndex];
   if (!part) return { key: null, slips: [] };
-  const { key, slips } = expressionsOf(part);
+  const { key, slips, wanted } = expressionsOf(part);
   const outcomes = await evaluateOutcomes(
     keys,
     [...(key === null ? [] : [key]), ...slips].map((expression) => ({
       expression,
       givens: { ...scopeOf(givens), ...earlier },
       convention: content.convention,
+      wanted,
     })),
   );
   return key === null ? { key: null, slips: outcomes } : { key: outcomes[0] ?? null, slips: outcomes.slice(1) };

@@ -1,6 +1,6 @@
 import type { VariantKey } from '@shared/checks';
 import type { GivenValues } from '@shared/variants';
-import type { GivenValue } from '../keys';
+import type { GivenValue, KeyResult, WrittenKey } from '../keys';
 
 export type { KeyFault, KeyOutcome, KeyRequest } from '../keys';
 
@@ -14,9 +14,22 @@ export function scopeOf(givens: GivenValues): Scope {
   );
 }
 
-/** A key's value as a later part's expression gets it. */
-export function scopeValueOf(key: Pick<VariantKey, 'value' | 'unit'>): GivenValue {
+/** A key's value as a later part's expression gets it; undefined for a state or a formula, which no expression can name. */
+export function scopeValueOf(key: Pick<KeyResult | WrittenKey, 'value' | 'unit'>): GivenValue | undefined {
+  if (typeof key.value === 'string') return undefined;
   return typeof key.value === 'number' ? withUnit(key.value, key.unit) : key.value;
+}
+
+/** A key as it is kept and shown: of a state or a formula in words, without what answers are compared with. */
+export function presentKey(key: KeyResult | WrittenKey): VariantKey {
+  if (typeof key.value !== 'string') return { ...key, value: key.value };
+  const { value, method, dimension, agreesTo } = key;
+  return {
+    value,
+    method,
+    ...(dimension === undefined ? {} : { dimension }),
+    ...(agreesTo === undefined ? {} : { agreesTo }),
+  };
 }
 
 function withUnit(value: number, unit: string | undefined): GivenValue {
