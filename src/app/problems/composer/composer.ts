@@ -17,6 +17,7 @@ import { MatIconModule } from '@angular/material/icon';
 import { MatMenuModule } from '@angular/material/menu';
 import { Router, RouterLink } from '@angular/router';
 import { catchError, firstValueFrom, fromEvent, of } from 'rxjs';
+import type { DraftAnswer } from '@shared/problem-draft';
 import type { KeyLanguage } from '@shared/problem-routes';
 import { partLabel, type ProblemStatus } from '@shared/problems';
 import { secondOf } from '@shared/times';
@@ -261,7 +262,8 @@ export default class Composer {
 
   private faultsOf(index: number): number {
     const draft = this.open.draft();
-    const isBegun = (draft?.parts[index]?.answer.key.trim() ?? '') !== '' || this.open.showsAll();
+    const answer = draft?.parts[index]?.answer;
+    const isBegun = answer !== undefined && (isWritten(answer) || this.open.showsAll());
     if (!isBegun) return 0;
     const typed = this.open.faults().filter((fault) => fault.path[0] === 'parts' && fault.path[1] === index);
     const failing = this.samples.keyFaults()[index] !== null && this.samples.keyFaults()[index] !== undefined;
@@ -340,4 +342,10 @@ export default class Composer {
       this.notice.set(sentenceOf(error));
     }
   }
+}
+
+/** Whether an author has begun to say what the right answer is. */
+function isWritten({ form, key, options }: DraftAnswer): boolean {
+  if (form === 'worked') return true;
+  return form === 'choice' ? options.some(({ text }) => text.trim() !== '') : key.trim() !== '';
 }

@@ -11,6 +11,10 @@ export interface FaultPlace {
 
 const fieldWords: Readonly<Record<string, string>> = {
   key: 'key',
+  variables: 'variables',
+  options: 'options',
+  correct: 'correct option',
+  minimumFidelity: 'fidelity',
   unit: 'unit',
   tolerance: 'tolerance',
   slips: 'slip',

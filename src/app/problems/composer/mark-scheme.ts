@@ -19,6 +19,8 @@ const kindWords: Readonly<Record<CriterionKind, string>> = {
 
 /** The verdicts for which a criterion can be proposed. */
 const proposing: readonly Verdict[] = ['right', 'unit', 'follow-through', 'slip'];
+/** Of a choice there is no unit, no follow-through and no slip. */
+const proposingForChoice: readonly Verdict[] = ['right'];
 
 /** The mark scheme of a part: its criteria, and what stands without a person. */
 @Component({
@@ -35,7 +37,7 @@ export class MarkScheme {
   readonly part = input.required<DraftPart>();
 
   protected readonly kinds = Object.entries(kindWords) as [CriterionKind, string][];
-  protected readonly verdicts = proposing;
+  protected readonly verdicts = computed(() => (this.part().answer.form === 'choice' ? proposingForChoice : proposing));
   protected readonly label = computed(() => partLabel(this.index()));
   /** Criteria whose guidance is open although nothing is written there yet. */
   protected readonly opened = linkedSignal<string, ReadonlySet<string>>({

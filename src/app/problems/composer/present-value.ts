@@ -8,6 +8,11 @@ export function valued(key: SampledKey | null | undefined): ValuedKey | null {
   return key && 'method' in key ? key : null;
 }
 
+/** What a key came to; null where it has no value. */
+export function valueOf(key: SampledKey | null | undefined): unknown {
+  return valued(key)?.value ?? null;
+}
+
 /** The number that a key came to; null for anything else. */
 export function numberOf(key: SampledKey | null | undefined): number | null {
   const value = valued(key)?.value;

@@ -1,5 +1,6 @@
 import { emptyAnswer } from '@shared/problem-draft';
 import { rightBand, slipStanding } from './right-band';
+import { passesAsRight } from './value-match';
 
 const tolerance = (change: object) => ({ ...emptyAnswer().tolerance, relative: '', ...change });
 
@@ -23,10 +24,11 @@ describe('rightBand', () => {
 });
 
 describe('slipStanding', () => {
-  const two = tolerance({ relative: '2%' });
+  const answer = { ...emptyAnswer(), tolerance: tolerance({ relative: '2%' }) };
+  const passes = (key: unknown, value: unknown) => passesAsRight(key, value, answer);
 
   it('names a slip that passes as right', () => {
-    const standing = slipStanding(0.5, [{ name: 'T for R', value: 0.505 }], two);
+    const standing = slipStanding(0.5, [{ name: 'T for R', value: 0.505 }], passes);
     expect(standing).toEqual({ words: '“T for R” passes as right', needsLook: true });
   });
 
@@ -35,12 +37,12 @@ describe('slipStanding', () => {
       { name: 'one', value: 0.2 },
       { name: 'other', value: 0.201 },
     ];
-    expect(slipStanding(0.5, slips, two)?.words).toBe('“one” equals “other”');
+    expect(slipStanding(0.5, slips, passes)?.words).toBe('“one” equals “other”');
   });
 
   it('says that all is well, or that a slip has no value', () => {
-    expect(slipStanding(0.5, [{ name: 'one', value: 0.2 }], two)?.words).toBe('well apart');
-    expect(slipStanding(0.5, [{ name: 'one', value: null }], two)?.needsLook).toBe(true);
-    expect(slipStanding(0.5, [], two)).toBeNull();
+    expect(slipStanding(0.5, [{ name: 'one', value: 0.2 }], passes)?.words).toBe('well apart');
+    expect(slipStanding(0.5, [{ name: 'one', value: null }], passes)?.needsLook).toBe(true);
+    expect(slipStanding(0.5, [], passes)).toBeNull();
   });
 });

@@ -29,7 +29,7 @@ export function rightBand(key: number, tolerance: DraftAnswer['tolerance']): Rig
 export interface SlipValue {
   readonly name: string;
   /** Null where it has none. */
-  readonly value: number | null;
+  readonly value: unknown;
 }
 
 /** How the slips of one variant stand to its key and to each other. */
@@ -39,21 +39,22 @@ export interface SlipStanding {
   readonly needsLook: boolean;
 }
 
-/** Says whether a slip would pass as right, or two slips cannot be told apart. */
+/**
+ * Says whether a slip would pass as right, or two slips cannot be told apart.
+ *
+ * @param passes whether a value would be right where the key is another
+ */
 export function slipStanding(
-  key: number,
+  key: unknown,
   slips: readonly SlipValue[],
-  tolerance: DraftAnswer['tolerance'],
+  passes: (key: unknown, value: unknown) => boolean,
 ): SlipStanding | null {
   if (slips.length === 0) return null;
-  const band = rightBand(key, tolerance);
-  const inBand = slips.find(({ value }) => value !== null && band && value >= band.low && value <= band.high);
+  const inBand = slips.find(({ value }) => value !== null && passes(key, value));
   if (inBand) return { words: `“${inBand.name}” passes as right`, needsLook: true };
   for (const [index, one] of slips.entries()) {
-    const around = one.value === null ? null : rightBand(one.value, tolerance);
-    const twin = slips
-      .slice(index + 1)
-      .find(({ value }) => value !== null && around && value >= around.low && value <= around.high);
+    if (one.value === null) continue;
+    const twin = slips.slice(index + 1).find(({ value }) => value !== null && passes(one.value, value));
     if (twin) return { words: `“${one.name}” equals “${twin.name}”`, needsLook: true };
   }
   if (slips.some(({ value }) => value === null)) return { words: 'a slip has no value', needsLook: true };

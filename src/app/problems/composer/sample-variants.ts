@@ -105,8 +105,13 @@ export class SampleVariants {
 /** What of a draft the samples depend on: text, marks and feedback do not count. */
 function whatMatters(draft: ProblemDraft): unknown {
   return [
-    draft.givens.map(({ symbol: _, spellings: __, ...given }) => given),
-    draft.parts.map(({ answer }) => [answer.form, answer.key, answer.slips.map((slip) => slip.expression)]),
+    draft.givens.map(({ spellings: _, ...given }) => given),
+    draft.parts.map(({ answer }) => [
+      answer.form,
+      answer.key,
+      answer.slips.map((slip) => slip.expression),
+      answer.form === 'formula' ? answer.variables : [],
+    ]),
     draft.convention,
   ];
 }

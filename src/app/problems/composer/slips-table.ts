@@ -5,6 +5,7 @@ import { MatTooltipModule } from '@angular/material/tooltip';
 import type { DraftPart, DraftSlip } from '@shared/problem-draft';
 import { addSlip, changeSlip, removeSlip } from './draft-changes';
 import { ExpressionEditor, type ExpressionFault } from './expression-editor';
+import { KeyValue } from './key-value';
 import type { KeyNames } from './key-language';
 import { OpenProblem } from './open-problem';
 import { textOfValue, valued } from './present-value';
@@ -14,7 +15,7 @@ import { TypedField } from './typed-field';
 /** The slips of a part: name, expression with its value in the shown variant, fraction of the marks, feedback. */
 @Component({
   selector: 'app-slips-table',
-  imports: [ExpressionEditor, MatButtonModule, MatIconModule, MatTooltipModule, TypedField],
+  imports: [ExpressionEditor, KeyValue, MatButtonModule, MatIconModule, MatTooltipModule, TypedField],
   templateUrl: './slips-table.html',
   styleUrl: './slips-table.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -33,7 +34,8 @@ export class SlipsTable {
       const value = valued(sampled);
       return {
         slip,
-        value: value ? textOfValue(value.value, 4) : '–',
+        value,
+        number: value && typeof value.value === 'number' ? textOfValue(value.value, 4) : '',
         faults: this.expressionFaults(slip, index),
       };
     }),
