@@ -15,9 +15,13 @@ export class OwnServer {
     private readonly env: Readonly<Record<string, string>>,
   ) {}
 
-  /** Starts it on the data that it has. */
-  async start(): Promise<void> {
-    this.running = await startServer({ ...this.env });
+  /**
+   * Starts it on the data that it has.
+   *
+   * @param env settings beside those of every test's server
+   */
+  async start(env: Readonly<Record<string, string>> = {}): Promise<void> {
+    this.running = await startServer({ ...this.env, ...env });
   }
 
   /** Stops it as Ctrl-C would. */
