@@ -4,6 +4,7 @@ import { timeOf } from '@shared/times';
 import { AnswerField, type TypedField } from '../../ui/answer-field/answer-field';
 import { FormulaText } from '../../ui/formula-text/formula-text';
 import type { PrintedGivens } from '../../ui/formula-text/printed-given';
+import { WorkedText } from '../../ui/worked-text/worked-text';
 import { ChoiceField } from '../choice-field/choice-field';
 import { PageFiles } from '../page-files/page-files';
 import type { PartInHand } from '../sheet-keeper';
@@ -11,7 +12,7 @@ import type { PartInHand } from '../sheet-keeper';
 /** One part of a sheet: what is asked, the answer as it is typed and read, worked pages. */
 @Component({
   selector: 'app-sheet-part',
-  imports: [AnswerField, ChoiceField, FormulaText, MatButtonModule, PageFiles],
+  imports: [AnswerField, ChoiceField, FormulaText, MatButtonModule, PageFiles, WorkedText],
   templateUrl: './sheet-part.html',
   styleUrl: './sheet-part.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -40,7 +41,7 @@ export class SheetPart {
   /** The field as it is typed into; null for a choice and for words. */
   protected readonly typed = computed<TypedField | null>(() => {
     const { field } = this.part();
-    return field.form === 'choice' || field.form === 'worked' ? null : (field as TypedField);
+    return field.form === 'choice' || field.form === 'worked' ? null : field;
   });
   protected readonly isSeveral = computed(() => {
     const { field } = this.part();
@@ -50,15 +51,4 @@ export class SheetPart {
     const at = this.keeper().theirs()?.savedAt;
     return at == null ? '' : timeOf(at, this.timeZone());
   });
-
-  protected write(event: Event): void {
-    const text = (event.target as HTMLTextAreaElement).value;
-    this.keeper().type(text);
-    this.readWords(text);
-  }
-
-  private readWords(text: string): void {
-    const kept = text.trim();
-    this.inHand().takeReading(kept === '' ? { kind: 'empty' } : { kind: 'worked', text: kept, readAs: kept });
-  }
 }

@@ -1,0 +1,34 @@
+import { TestBed } from '@angular/core/testing';
+import { EntryBars } from './entry-bars';
+
+async function show(inputs: Readonly<Record<string, unknown>>) {
+  const fixture = TestBed.createComponent(EntryBars);
+  for (const [name, value] of Object.entries(inputs)) fixture.componentRef.setInput(name, value);
+  await fixture.whenStable();
+  return fixture.nativeElement as HTMLElement;
+}
+
+describe('EntryBars', () => {
+  it('draws an entry each, those below zero downwards, and says them', async () => {
+    const element = await show({ entries: [1, -0.5] });
+    const [up, down] = [...element.querySelectorAll('rect')].map((bar) => ({
+      y: Number(bar.getAttribute('y')),
+      height: Number(bar.getAttribute('height')),
+    }));
+    expect(up!.y + up!.height).toBeCloseTo(down!.y, 6);
+    expect(up!.height).toBeCloseTo(2 * down!.height, 6);
+    expect(element.querySelector('svg')?.getAttribute('aria-label')).toBe('1: 1; 2: −0.5');
+  });
+
+  it('adds up probabilities, counted from no photon', async () => {
+    const element = await show({ entries: [0.5, 0.25], probabilities: true, first: 0 });
+    expect(element.textContent).toContain('2 entries, sum 0.75');
+    expect(element.querySelector('svg')?.getAttribute('aria-label')).toContain('0: 0.5');
+  });
+
+  it('has its place before anything is typed', async () => {
+    const element = await show({ entries: [], probabilities: true });
+    expect(element.querySelectorAll('rect')).toHaveLength(0);
+    expect(element.textContent).toContain('drawn as you type');
+  });
+});
