@@ -1,4 +1,4 @@
-import type { Figure, FigureValue } from './figures';
+import type { Figure, FigureKind, FigureValue } from './figures';
 import { MethodDoesNotApply, StateVanishes } from './method-does-not-apply';
 import { isValue, type MethodName, type MethodOutcome, type MethodValue } from './methods';
 import { figureOfMoments, isMomentFigure } from './moments/moment-figures';
@@ -10,8 +10,24 @@ import { abs } from './complex';
 
 /** A method must expect at least this relative accuracy of itself … */
 const RELATIVE = 1e-10;
-/** … or this absolute one. */
+/** … or this absolute one … */
 const ABSOLUTE = 1e-13;
+/** … or this, where the figure is a difference of numbers of the size of 1 and may vanish. */
+const ABSOLUTE_OF_DIFFERENCES = 1e-12;
+const differences: ReadonlySet<FigureKind> = new Set([
+  'photonVariance',
+  'mandelQ',
+  'fanoFactor',
+  'quadratureVariance',
+  'covariance',
+  'entropy',
+  'logNegativity',
+]);
+
+interface Tolerance {
+  readonly relative: number;
+  readonly absolute: number;
+}
 
 interface Found {
   readonly value: FigureValue;
@@ -21,14 +37,19 @@ interface Found {
 }
 
 /** One method's way to a figure. */
-function attempt(method: MethodName, find: () => Found, tolerance: number, vanished: StateVanishes[]): MethodOutcome {
+function attempt(
+  method: MethodName,
+  find: () => Found,
+  tolerance: Tolerance,
+  vanished: StateVanishes[],
+): MethodOutcome {
   try {
     const { value, error, dimension, outsideWeight } = find();
     const scale = scaleOf(value);
     if (!Number.isFinite(scale) || Number.isNaN(error)) {
       return { method, notApplicable: 'the value is beyond the range of numbers' };
     }
-    if (error > Math.max(tolerance * scale, ABSOLUTE)) {
+    if (error > Math.max(tolerance.relative * scale, tolerance.absolute)) {
       return { method, notApplicable: `only accurate to about ${error.toExponential(0)} here` };
     }
     const found: MethodValue = {
@@ -75,7 +96,10 @@ export interface MethodChoice {
  */
 export function figureByMethods(figure: Figure, choice: MethodChoice = {}): readonly MethodOutcome[] {
   const wanted = choice.methods ?? ['phase space', 'number basis', 'moments'];
-  const tolerance = figure.kind === 'wignerNegativity' ? 1e-6 : RELATIVE;
+  const tolerance = {
+    relative: figure.kind === 'wignerNegativity' ? 1e-6 : RELATIVE,
+    absolute: differences.has(figure.kind) ? ABSOLUTE_OF_DIFFERENCES : ABSOLUTE,
+  };
   const outcomes: MethodOutcome[] = [];
   const vanished: StateVanishes[] = [];
   if (wanted.includes('phase space'))

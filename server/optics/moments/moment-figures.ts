@@ -97,9 +97,9 @@ export function figureOfMoments(figure: MomentFigure, moment: MomentSource): Fig
 
 const real = ({ value, error }: Moment) => ({ value: value.re, error });
 
-/** A mean photon number that something is divided by. */
-function divisor(name: string, mean: { value: number; error: number }, what: string): void {
-  if (mean.value > 16 * mean.error && mean.value > 0) return;
+/** Refuses to divide by a mean photon number that vanishes. @throws OpticsError */
+export function checkMean(name: string, mean: number, error: number, what = 'the mean photon number'): void {
+  if (mean > 16 * error && mean > 0) return;
   throw new OpticsError(`is not defined where ${what} vanishes`, {
     functionName: name,
     allowed: 'a state with photons',
@@ -116,7 +116,7 @@ function varianceOf(moment: MomentSource) {
 
 function spreadOf(kind: 'mandelQ' | 'fanoFactor', moment: MomentSource) {
   const mean = real(moment(1, 1));
-  divisor(kind, mean, 'the mean photon number');
+  checkMean(kind, mean.value, mean.error);
   const second = real(moment(2, 2));
   const ratio = second.value / mean.value;
   const value = kind === 'mandelQ' ? ratio - mean.value : ratio - mean.value + 1;
@@ -127,7 +127,7 @@ function spreadOf(kind: 'mandelQ' | 'fanoFactor', moment: MomentSource) {
 
 function correlation(name: string, moment: MomentSource, order: number) {
   const mean = real(moment(1, 1));
-  divisor(name, mean, 'the mean photon number');
+  checkMean(name, mean.value, mean.error);
   const high = real(moment(order, order));
   const power = mean.value ** order;
   const value = high.value / power;
@@ -138,8 +138,8 @@ function correlation(name: string, moment: MomentSource, order: number) {
 function crossCorrelation(moment: MomentSource) {
   const first = real(moment(1, 1, 0, 0));
   const second = real(moment(0, 0, 1, 1));
-  divisor('g2Cross', first, 'the mean photon number of mode 1');
-  divisor('g2Cross', second, 'the mean photon number of mode 2');
+  checkMean('g2Cross', first.value, first.error, 'the mean photon number of mode 1');
+  checkMean('g2Cross', second.value, second.error, 'the mean photon number of mode 2');
   const both = real(moment(1, 1, 1, 1));
   const product = first.value * second.value;
   const value = both.value / product;
@@ -151,7 +151,7 @@ function visibilityOf(moment: MomentSource) {
   const first = real(moment(1, 1, 0, 0));
   const second = real(moment(0, 0, 1, 1));
   const total = { value: first.value + second.value, error: first.error + second.error };
-  divisor('visibility', total, 'the mean photon number of both modes');
+  checkMean('visibility', total.value, total.error, 'the mean photon number of both modes');
   const field = moment(1, 0, 0, 1);
   const value = (2 * abs(field.value)) / total.value;
   return { value, error: (2 * field.error + value * total.error) / total.value + 4 * EPS * value };

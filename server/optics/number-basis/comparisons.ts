@@ -2,11 +2,12 @@ import { abs2, type Complex } from '../complex';
 import { MethodDoesNotApply } from '../method-does-not-apply';
 import type { FigureEstimate } from '../moments/moment-figures';
 import type { State } from '../state';
-import { checkJointSize, eachAmplitude, innerProductOf, sliceOf, weightOf, type JointKet } from './joint-ket';
+import { checkJointSize, innerProductOf, sliceOf, weightOf, type JointKet } from './joint-ket';
 import { ensembleOf, jointState, ketsOf } from './joint-states';
-import { hermitianEigenvalues, singularValues } from './linear-algebra';
-import { asKet, numberState, type Resolution } from './number-states';
+import { singularValues } from './linear-algebra';
+import { asKet, beforeMixing, numberState, type Resolution } from './number-states';
 import { diagonalOf, simplest, type NumberState } from './one-mode';
+import { transposedNorm } from './transposed-norm';
 
 const EPS = 2 ** -52;
 /** Largest matrices whose eigenvalues or singular values are found here in time. */
@@ -50,7 +51,7 @@ export function entropyOf(given: NumberState): Truncated {
     rounding += EPS * weight * (8 + Math.abs(Math.log(weight)));
   }
   const lost = outside > 0 ? outside * (1 - Math.log(outside) + Math.log(levels)) : 0;
-  const noisy = noise > 0 ? noise * levels * (1 - Math.log(noise)) : 0;
+  const noisy = noise > 0 ? noise * Math.sqrt(levels) * (1 - Math.log(noise)) : 0;
   const left = state.kind === 'density' ? 1e-16 * 40 : 0;
   return result(value, rounding + noisy + left, lost, levels, outside);
 }
@@ -92,7 +93,7 @@ export function fidelityOf(givenLeft: NumberState, givenRight: NumberState): Tru
     let value = 0;
     for (const part of kets) value += abs2(innerOf(part, ket));
     const rounding = EPS * 32 * value + 4 * noise * Math.sqrt(value) + 4 * noise * noise;
-    return result(value, rounding, crossing(value, left.outside, right.outside), dimension, outside);
+    return result(value, rounding, crossing(value, left, right), dimension, outside);
   }
   if (left.kind === 'diagonal' && right.kind === 'diagonal') {
     let root = 0;
@@ -107,14 +108,17 @@ export function fidelityOf(givenLeft: NumberState, givenRight: NumberState): Tru
   return result(
     value,
     EPS * 64 * value + floor + 4 * noise,
-    Math.sqrt(left.outside * right.outside) * 4 + 4 * outside,
+    2 * Math.sqrt(value) * tailOf(left, right) + Math.sqrt(left.outside * right.outside) * 4 + 4 * outside,
     dimension,
     outside,
   );
 }
 
-/** An overlap of tails that are both outside: at most the geometric mean of their weights. */
-const crossing = (value: number, a: number, b: number): number => 2 * Math.sqrt(value * a * b) + a * b;
+/** An overlap of tails: at most the geometric mean of their weights. */
+function crossing(value: number, left: NumberState, right: NumberState): number {
+  const tails = Math.sqrt(left.outside * right.outside) + tailOf(left, right);
+  return 2 * Math.sqrt(value) * tails + tails * tails;
+}
 
 /** Where only one of two distributions reaches on, the rest of the sum is at most the root of what is outside. */
 function tailOf(left: NumberState, right: NumberState): number {
@@ -220,10 +224,11 @@ export function jointPurity(state: State, resolution: Resolution): Truncated {
   return result(value, EPS * 64 * value + 8 * noise, 2 * outside, levels, outside);
 }
 
-/** Fidelity of two modes. */
+/** Fidelity of two modes. An amplitude that is left out of one state shows in proportion to itself. */
 export function jointFidelity(left: State, right: State, resolution: Resolution): Truncated {
-  const one = ensembleOf(left, resolution);
-  const two = ensembleOf(right, resolution);
+  const finer = beforeMixing(resolution);
+  const [one, two] = [ensembleOf(left, finer), ensembleOf(right, finer)].sort((a, b) => a.kets.length - b.kets.length);
+  if (one === undefined || two === undefined) throw new MethodDoesNotApply('no states');
   const dimension = Math.max(one.levels, two.levels);
   const outside = one.outside + two.outside;
   const noise = one.noise + two.noise;
@@ -232,7 +237,8 @@ export function jointFidelity(left: State, right: State, resolution: Resolution)
   if (one.kets.length === 1 || two.kets.length === 1) {
     let value = 0;
     for (const a of one.kets) for (const b of two.kets) value += abs2(innerProductOf(a, b));
-    return result(value, EPS * 64 * value + 8 * noise, 4 * outside, dimension, outside);
+    const hidden = 2 * Math.sqrt(value * outside) + outside;
+    return result(value, EPS * 64 * value + 8 * noise, hidden, dimension, outside);
   }
   checkColumns(Math.min(one.kets.length, two.kets.length));
   const columns = one.kets.map((a) => {
@@ -246,7 +252,7 @@ export function jointFidelity(left: State, right: State, resolution: Resolution)
     return { re, im };
   });
   const root = singularValues(columns).reduce((sum, s) => sum + s, 0);
-  return result(root * root, EPS * 256 * root * root + 16 * noise, 8 * outside, dimension, outside);
+  return result(root * root, EPS * 256 * root * root + 16 * noise, 4 * root * Math.sqrt(outside), dimension, outside);
 }
 
 /** log₂‖ρ^{T₂}‖₁: of a ket from its Schmidt coefficients, of an ensemble block by block of what is coupled. */
@@ -303,65 +309,4 @@ function schmidtSum(ket: JointKet, levels: number): number {
   }
   checkColumns(columns.length);
   return singularValues(columns).reduce((sum, s) => sum + s, 0);
-}
-
-/** ‖ρ^{T₂}‖₁: entries are collected sparsely, and what hangs together is diagonalised block by block. */
-function transposedNorm(kets: readonly JointKet[], levels: number): number {
-  const entries = new Map<number, Complex>();
-  const side = levels * levels;
-  for (const ket of kets) {
-    const list: { readonly n: number; readonly m: number; readonly re: number; readonly im: number }[] = [];
-    eachAmplitude(ket, (n, m, re, im) => list.push({ n, m, re, im }));
-    if (entries.size + list.length ** 2 > 3e6) throw new MethodDoesNotApply('the transposed state would be too large');
-    for (const a of list) {
-      for (const b of list) {
-        // ρ_{(n,m),(n',m')} stands at row (n, m') and column (n', m) of ρ^{T₂}.
-        const row = a.n * levels + b.m;
-        const column = b.n * levels + a.m;
-        const key = row * side + column;
-        const old = entries.get(key);
-        const re = a.re * b.re + a.im * b.im + (old?.re ?? 0);
-        const im = a.im * b.re - a.re * b.im + (old?.im ?? 0);
-        entries.set(key, { re, im });
-      }
-    }
-  }
-  const parent = new Map<number, number>();
-  const find = (x: number): number => {
-    let root = x;
-    while ((parent.get(root) ?? root) !== root) root = parent.get(root) ?? root;
-    parent.set(x, root);
-    return root;
-  };
-  for (const [key, value] of entries) {
-    if (value.re === 0 && value.im === 0) continue;
-    const row = Math.floor(key / side);
-    const column = key % side;
-    parent.set(find(row), find(column));
-    if (!parent.has(row)) parent.set(row, row);
-  }
-  const groups = new Map<number, number[]>();
-  for (const index of new Set([...entries.keys()].flatMap((key) => [Math.floor(key / side), key % side]))) {
-    const root = find(index);
-    const group = groups.get(root);
-    if (group === undefined) groups.set(root, [index]);
-    else group.push(index);
-  }
-  let norm = 0;
-  for (const group of groups.values()) {
-    const size = group.length;
-    checkColumns(size / 2);
-    const re = new Float64Array(size * size);
-    const im = new Float64Array(size * size);
-    group.forEach((row, i) => {
-      group.forEach((column, j) => {
-        const value = entries.get(row * side + column);
-        if (value === undefined) return;
-        re[i * size + j] = value.re;
-        im[i * size + j] = value.im;
-      });
-    });
-    for (const eigenvalue of hermitianEigenvalues(size, re, im)) norm += Math.abs(eigenvalue);
-  }
-  return norm;
 }

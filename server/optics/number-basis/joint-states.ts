@@ -19,7 +19,15 @@ import {
   type JointKet,
 } from './joint-ket';
 import { factorOf } from './linear-algebra';
-import { asLossAndGain, numberState, resolve, type Conditioned, type Resolution } from './number-states';
+import {
+  asLossAndGain,
+  beforeMixing,
+  mixedIn,
+  numberState,
+  resolve,
+  type Conditioned,
+  type Resolution,
+} from './number-states';
 import { checkDensityLevels, diagonalOf, simplest, type NumberState } from './one-mode';
 
 /** Two modes that know nothing of each other. */
@@ -139,14 +147,14 @@ function build(given: State, resolution: Resolution): JointState {
       };
     }
     case 'displaced': {
-      const inner = ensembleOf(state.state, resolution);
+      const inner = ensembleOf(state.state, beforeMixing(resolution));
       const { levels, outside } = resolve(state, resolution);
       checkUnitary(inner, levels);
       if (abs2(state.alpha) === 0) return inner;
       return onMode(inner, state.mode, displacement(state.alpha, inner.levels, levels), levels, outside);
     }
     case 'squeeze': {
-      const inner = ensembleOf(state.state, resolution);
+      const inner = ensembleOf(state.state, beforeMixing(resolution));
       const { levels, outside } = resolve(state, resolution);
       checkUnitary(inner, levels);
       if (state.r === 0) return inner;
@@ -154,9 +162,10 @@ function build(given: State, resolution: Resolution): JointState {
     }
     case 'twoModeSqueeze': {
       // Two squeezers between two balanced splitters.
-      const inner = ensembleOf(state.state, resolution);
+      const finer = beforeMixing(resolution);
+      const inner = ensembleOf(state.state, finer);
       if (state.r === 0) return inner;
-      const { levels, outside } = resolve(state, resolution);
+      const { levels, outside } = resolve(state, finer);
       checkUnitary(inner, levels);
       const mixed = { ...inner, kets: splitKets(inner.kets, 0.5, complex(1)) };
       // In between the two modes are as wide as the result is: the total bound holds for both.
@@ -246,7 +255,7 @@ function onMode(inner: Ensemble, mode: 1 | 2, unitary: NumberUnitary, levels: nu
     kets: inner.kets.map((ket) => applyToMode(ket, mode, unitary, levels)),
     levels,
     noise: inner.noise + 4 * EPS,
-    outside: outside + inner.outside,
+    outside: outside + mixedIn(inner.outside),
   };
 }
 
@@ -277,8 +286,9 @@ export function ensembleOf(state: State, resolution: Resolution): Ensemble {
     kind: 'ensemble',
     kets,
     levels,
-    noise: joint.first.noise + joint.second.noise,
-    outside: size.outside + joint.first.outside + joint.second.outside + first.rest + second.rest,
+    // What the factors leave over is rounding, not weight at high numbers.
+    noise: joint.first.noise + joint.second.noise + first.rest + second.rest,
+    outside: size.outside + joint.first.outside + joint.second.outside,
   };
   multipliedOut.set(joint, made);
   return made;

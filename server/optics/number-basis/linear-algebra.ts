@@ -120,44 +120,32 @@ export function singularValues(columns: readonly { readonly re: Float64Array; re
 /**
  * Eigenvalues of a Hermitian matrix: Householder's reflections to three diagonals, then QL steps with shifts.
  *
- * A complex matrix A + iB is taken as the real one [[A, −B], [B, A]], whose eigenvalues are the same, each twice.
- * @param re real part, row by row
- * @param im imaginary part
+ * Source: Golub and Van Loan, Matrix Computations, sections 8.3.1 and 8.3.3, in words of our own.
+ * @param re real part, row by row; used up
+ * @param im imaginary part; used up
  * @returns the eigenvalues, each to about 1e-16 of the largest
  */
 export function hermitianEigenvalues(size: number, re: Float64Array, im: Float64Array): Float64Array {
-  if (im.every((value) => value === 0)) return symmetricEigenvalues(size, re.slice());
-  const double = 2 * size;
-  const wide = new Float64Array(double * double);
-  for (let i = 0; i < size; i++) {
-    for (let j = 0; j < size; j++) {
-      const [a, b] = [re[i * size + j]!, im[i * size + j]!];
-      wide[i * double + j] = a;
-      wide[(i + size) * double + j + size] = a;
-      wide[i * double + j + size] = -b;
-      wide[(i + size) * double + j] = b;
-    }
-  }
-  const twice = symmetricEigenvalues(double, wide).sort();
-  return Float64Array.from({ length: size }, (_, k) => (twice[2 * k]! + twice[2 * k + 1]!) / 2);
+  const off = im.every((value) => value === 0) ? reflectReal(size, re) : reflectComplex(size, re, im);
+  const diagonal = Float64Array.from({ length: size }, (_, k) => re[k * size + k]!);
+  return tridiagonalEigenvalues(diagonal, off);
 }
 
-/** Eigenvalues of a real symmetric matrix; the matrix is used up. */
-function symmetricEigenvalues(size: number, a: Float64Array): Float64Array {
-  const diagonal = new Float64Array(size);
+/** Brings a real symmetric matrix to three diagonals; the main one stays in place, the one beside it is returned. */
+function reflectReal(size: number, a: Float64Array): Float64Array {
   const off = new Float64Array(size + 1);
   const v = new Float64Array(size);
   const w = new Float64Array(size);
   for (let k = 0; k < size - 2; k++) {
-    // Reflect column k below the diagonal onto its first entry.
+    // Reflect row k right of the diagonal onto its first entry.
     let norm = 0;
-    for (let i = k + 1; i < size; i++) norm += a[i * size + k]! ** 2;
-    const first = a[(k + 1) * size + k]!;
-    const rest = norm - first * first;
-    if (rest <= 1e-300) continue;
+    for (let i = k + 1; i < size; i++) norm += a[k * size + i]! ** 2;
+    const first = a[k * size + k + 1]!;
+    off[k] = first;
+    if (norm - first * first <= 1e-300) continue;
     const alpha = first > 0 ? -Math.sqrt(norm) : Math.sqrt(norm);
     const scale = 1 / (norm - first * alpha);
-    for (let i = k + 1; i < size; i++) v[i] = a[i * size + k]!;
+    for (let i = k + 1; i < size; i++) v[i] = a[k * size + i]!;
     v[k + 1]! -= alpha;
     let inner = 0;
     for (let i = k + 1; i < size; i++) {
@@ -172,12 +160,74 @@ function symmetricEigenvalues(size: number, a: Float64Array): Float64Array {
       const [vi, wi] = [v[i]!, w[i]!];
       for (let j = k + 1; j < size; j++) a[i * size + j]! -= vi * w[j]! + wi * v[j]!;
     }
-    a[(k + 1) * size + k] = alpha;
+    off[k] = alpha;
   }
-  for (let k = 0; k < size; k++) {
-    diagonal[k] = a[k * size + k]!;
-    off[k] = k + 1 < size ? a[(k + 1) * size + k]! : 0;
+  if (size > 1) off[size - 2] = a[(size - 2) * size + size - 1]!;
+  return off;
+}
+
+/** The same for a complex Hermitian matrix; phases beside the main diagonal do not change eigenvalues and are dropped. */
+function reflectComplex(size: number, re: Float64Array, im: Float64Array): Float64Array {
+  const off = new Float64Array(size + 1);
+  const vr = new Float64Array(size);
+  const vi = new Float64Array(size);
+  const wr = new Float64Array(size);
+  const wi = new Float64Array(size);
+  for (let k = 0; k < size - 2; k++) {
+    // Column k below the diagonal is the conjugate of row k.
+    let norm = 0;
+    for (let i = k + 1; i < size; i++) norm += re[k * size + i]! ** 2 + im[k * size + i]! ** 2;
+    const firstRe = re[k * size + k + 1]!;
+    const firstIm = -im[k * size + k + 1]!;
+    const first = Math.hypot(firstRe, firstIm);
+    off[k] = first;
+    if (norm - first * first <= 1e-300) continue;
+    const root = Math.sqrt(norm);
+    const [phaseRe, phaseIm] = first === 0 ? [1, 0] : [firstRe / first, firstIm / first];
+    const scale = 1 / (norm + first * root);
+    for (let i = k + 1; i < size; i++) {
+      vr[i] = re[k * size + i]!;
+      vi[i] = -im[k * size + i]!;
+    }
+    vr[k + 1]! += phaseRe * root;
+    vi[k + 1]! += phaseIm * root;
+    let inner = 0;
+    for (let i = k + 1; i < size; i++) {
+      let a = 0;
+      let b = 0;
+      for (let j = k + 1, at = i * size + k + 1; j < size; j++, at++) {
+        a += re[at]! * vr[j]! - im[at]! * vi[j]!;
+        b += re[at]! * vi[j]! + im[at]! * vr[j]!;
+      }
+      wr[i] = a * scale;
+      wi[i] = b * scale;
+      inner += wr[i]! * vr[i]! + wi[i]! * vi[i]!;
+    }
+    const half = (inner * scale) / 2;
+    for (let i = k + 1; i < size; i++) {
+      wr[i]! -= half * vr[i]!;
+      wi[i]! -= half * vi[i]!;
+    }
+    for (let i = k + 1; i < size; i++) {
+      const [a, b, c, d] = [vr[i]!, vi[i]!, wr[i]!, wi[i]!];
+      for (let j = k + 1, at = i * size + k + 1; j < size; j++, at++) {
+        // A − v w† − w v†.
+        re[at]! -= a * wr[j]! + b * wi[j]! + c * vr[j]! + d * vi[j]!;
+        im[at]! -= b * wr[j]! - a * wi[j]! + d * vr[j]! - c * vi[j]!;
+      }
+    }
+    off[k] = root;
   }
+  if (size > 1) {
+    const at = (size - 2) * size + size - 1;
+    off[size - 2] = Math.hypot(re[at]!, im[at]!);
+  }
+  return off;
+}
+
+/** Eigenvalues of a real symmetric matrix of three diagonals; `off` holds one entry more than it uses. */
+function tridiagonalEigenvalues(diagonal: Float64Array, off: Float64Array): Float64Array {
+  const size = diagonal.length;
   for (let low = 0; low < size; low++) {
     for (let round = 0; round < 200; round++) {
       let m = low;

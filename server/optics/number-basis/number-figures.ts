@@ -3,7 +3,13 @@ import { quadratureScale } from '../convention';
 import type { Figure } from '../figures';
 import { gaussianOf } from '../gaussian/gaussian-state';
 import { MethodDoesNotApply } from '../method-does-not-apply';
-import { figureOfMoments, isMomentFigure, type FigureEstimate, type Moment } from '../moments/moment-figures';
+import {
+  checkMean,
+  figureOfMoments,
+  isMomentFigure,
+  type FigureEstimate,
+  type Moment,
+} from '../moments/moment-figures';
 import { poisson } from '../special/distributions';
 import { fallingFactorial } from '../special/factorials';
 import type { State } from '../state';
@@ -27,6 +33,8 @@ const EPS = 2 ** -52;
 /** A value's truncation error may be this part of it; otherwise the basis is made larger. */
 const WANTED = 1e-13;
 const MOST_ATTEMPTS = 4;
+/** The trace norm of a transposed state feels the root of the weight outside. */
+const NEGATIVITY_LOG_WEIGHT = Math.log(1e-26);
 
 /**
  * A figure in a number basis; the basis grows until what is outside does not show in the value.
@@ -35,7 +43,10 @@ const MOST_ATTEMPTS = 4;
  * @throws OpticsError where the figure is not defined
  */
 export function numberFigure(figure: Figure): NumberFigure {
-  let resolution: Resolution = { ...defaultResolution, least: leastLevels(figure) };
+  let resolution: Resolution = {
+    logWeight: figure.kind === 'logNegativity' ? NEGATIVITY_LOG_WEIGHT : defaultResolution.logWeight,
+    least: leastLevels(figure),
+  };
   if (asksForEntries(figure)) {
     const { value, error, dimension } = evaluate(figure, { ...resolution, logWeight: 0 });
     return { value, error, dimension, outsideWeight: 0 };
@@ -46,8 +57,10 @@ export function numberFigure(figure: Figure): NumberFigure {
     if (found.truncation <= WANTED * size || found.truncation === 0 || found.truncation < 1e-300) break;
     const shrink = size === 0 ? 1e-16 : Math.max(1e-60, (WANTED * size) / found.truncation);
     resolution = { ...resolution, logWeight: resolution.logWeight + Math.log(shrink / 4) };
+    const before = found.truncation;
     try {
       found = evaluate(figure, resolution);
+      if (found.truncation > before / 2) break;
     } catch (error) {
       if (error instanceof MethodDoesNotApply) break;
       throw error;
@@ -137,6 +150,10 @@ function evaluate(figure: Figure, resolution: Resolution): Truncated {
       const diagonal = numberDiagonal(state, resolution);
       return probabilityOf(diagonal, figure.n);
     }
+    case 'photonVariance':
+    case 'mandelQ':
+    case 'fanoFactor':
+      return spreadOf(figure, numberDiagonal(state, resolution));
     case 'photonDistribution': {
       const diagonal = numberDiagonal(state, resolution);
       const value = Array.from({ length: figure.nmax + 1 }, (_, n) => diagonal.p[n] ?? 0);
@@ -219,7 +236,7 @@ function evaluate(figure: Figure, resolution: Resolution): Truncated {
       return entropyOf(numberState(state, resolution));
     case 'fidelity':
       if (state.modes === 2) return jointFidelity(state, figure.other, resolution);
-      return fidelityOf(numberState(state, resolution), numberState(figure.other, resolution));
+      return fidelityOf(...bothAtOnce(state, figure.other, resolution));
     case 'overlap':
       return overlapOf(state, figure.other, resolution);
     case 'logNegativity':
@@ -249,6 +266,15 @@ function evaluate(figure: Figure, resolution: Resolution): Truncated {
       if (isMomentFigure(figure)) return momentFigure(figure, resolution);
       throw new MethodDoesNotApply('no sum over photon numbers');
   }
+}
+
+/** Two states of one mode in the wider basis of both, so that neither ends where the other still has weight. */
+function bothAtOnce(state: State, other: State, resolution: Resolution): readonly [NumberState, NumberState] {
+  const left = numberState(state, resolution);
+  const right = numberState(other, resolution);
+  if (left.levels === right.levels) return [left, right];
+  const wide = { ...resolution, least: Math.max(left.levels, right.levels) };
+  return left.levels < right.levels ? [numberState(state, wide), right] : [left, numberState(other, wide)];
 }
 
 /** Entries inside the basis are exact up to what a lossy or amplified state would still have got from outside. */
@@ -314,6 +340,30 @@ function timesOf(first: Truncated, second: Truncated): Truncated {
     dimension: Math.max(first.dimension, second.dimension),
     outsideWeight: first.outsideWeight + second.outsideWeight,
   };
+}
+
+type Spread = Extract<Figure, { readonly kind: 'photonVariance' | 'mandelQ' | 'fanoFactor' }>;
+
+/** Var n about the mean, so that a state of one number has none to the last digit; Q and F from it. */
+function spreadOf({ kind }: Spread, diagonal: NumberDiagonal): Truncated {
+  const { levels, noise, outside } = diagonal;
+  const mean = diagonalMoment(diagonal, 1);
+  const centre = mean.value.re;
+  let variance = 0;
+  let noisy = 0;
+  for (let n = 0; n < levels; n++) {
+    const p = diagonal.p[n]!;
+    const square = (n - centre) ** 2;
+    variance += p * square;
+    if (noise > 0) noisy += noise * (2 * Math.sqrt(Math.abs(p)) + noise) * square;
+  }
+  const rounding = 16 * EPS * variance + noisy + mean.error ** 2;
+  const beyond = 4 * outside * (levels + 10) ** 2;
+  if (kind === 'photonVariance') return of(diagonal, variance, rounding, beyond);
+  checkMean(kind, centre, mean.error);
+  const fano = variance / centre;
+  const error = rounding / centre + fano * (mean.error / centre) + 4 * EPS * (1 + fano);
+  return of(diagonal, kind === 'fanoFactor' ? fano : fano - 1, error, beyond / centre);
 }
 
 type Condition = Extract<Figure, { readonly kind: 'heraldProbability' | 'clickProbability' }>;

@@ -27,6 +27,15 @@ export interface Resolution {
 
 export const defaultResolution: Resolution = { logWeight: DEFAULT_LOG_WEIGHT, least: 1 };
 
+/**
+ * How finely a state is to be built that a displacement or squeezer then mixes over all numbers: an amplitude that is
+ * left out shows in the result in proportion to itself, not to its square.
+ */
+export const beforeMixing = ({ logWeight }: Resolution): Resolution => ({ logWeight: 2 * logWeight, least: 1 });
+
+/** The weight that may be hidden in a result by what was left outside before it was mixed. */
+export const mixedIn = (outside: number): number => Math.sqrt(outside);
+
 const EPS = 2 ** -52;
 
 const cache = new WeakMap<State, Map<string, NumberState>>();
@@ -79,14 +88,14 @@ function build(state: State, resolution: Resolution): NumberState {
     case 'cat':
       return catKet(state.alpha, state.theta, resolve(state, resolution));
     case 'displaced': {
-      const inner = numberState(state.state, resolution);
+      const inner = numberState(state.state, beforeMixing(resolution));
       if (abs2(state.alpha) === 0) return inner;
       const { levels, outside } = resolve(state, resolution);
       checkUnitaryWork(inner, levels);
       return transform(inner, displacement(state.alpha, inner.levels, levels), outside);
     }
     case 'squeeze': {
-      const inner = numberState(state.state, resolution);
+      const inner = numberState(state.state, beforeMixing(resolution));
       if (state.r === 0) return inner;
       const { levels, outside } = resolve(state, resolution);
       checkUnitaryWork(inner, levels);
@@ -265,7 +274,7 @@ function transform(inner: NumberState, unitary: NumberUnitary, outside: number):
     for (let n = 0; n < inner.levels; n++) if (inner.re[n] !== 0 || inner.im[n] !== 0) terms++;
     // One column keeps its own digits; a sum of several has noise of the size of its terms.
     const noise = terms > 1 ? 4 * EPS + inner.noise : inner.noise;
-    return { kind: 'ket', levels, re, im, noise, outside: outside + inner.outside };
+    return { kind: 'ket', levels, re, im, noise, outside: outside + mixedIn(inner.outside) };
   }
   checkDensityLevels(levels);
   // U ρ U†: columns of ρ first, then rows by the conjugate.
@@ -294,7 +303,7 @@ function transform(inner: NumberState, unitary: NumberUnitary, outside: number):
     }
   }
   const noise = 4 * EPS + inner.noise;
-  return { kind: 'density', levels, re: outRe, im: outIm, noise, outside: outside + inner.outside };
+  return { kind: 'density', levels, re: outRe, im: outIm, noise, outside: outside + mixedIn(inner.outside) };
 }
 
 function mix(

@@ -20,7 +20,7 @@ import { logFactorial } from '../special/factorials';
 import type { State } from '../state';
 import { withoutPhases } from '../without-phases';
 import { gaussianNegativity, negativityOf } from '../wigner-negativity';
-import { atZero, outerToSources } from './form';
+import { outerToSources } from './form';
 import { allAtZero, innerProduct, sumOfForms } from './form-products';
 import { ketForms } from './ket-forms';
 import { noCounts, operatorForms, project, traceOut } from './operator-forms';
@@ -102,8 +102,8 @@ export function phaseSpaceFigure(figure: Figure): PhaseSpaceEstimate {
     case 'logNegativity':
       return gaussianLogNegativity(gaussian(state), state.pure);
     case 'heraldProbability': {
-      const other = figure.mode === 1 ? 2 : 1;
-      const { value, error } = expectation(state, (form) => traceOutOne(project(form, figure.mode, figure.n), other));
+      // After one mode was projected on, only the other's variables are left: they are put to 0.
+      const { value, error } = expectation(state, (form) => allAtZero(project(form, figure.mode, figure.n)));
       return { value: value.re, error };
     }
     case 'clickProbability': {
@@ -117,12 +117,6 @@ export function phaseSpaceFigure(figure: Figure): PhaseSpaceEstimate {
       throw new MethodDoesNotApply('no closed form');
   }
 }
-
-/** After one mode was projected on, only the other's two variables are outer: they are put to 0. */
-const traceOutOne = (form: Parameters<typeof atZero>[0], mode: 1 | 2) => {
-  void mode;
-  return allAtZero(form);
-};
 
 function gaussian(state: State): GaussianState {
   const found = gaussianOf(state);
