@@ -16,6 +16,7 @@ const subjects = [
   'accounts',
   'record',
   'files',
+  'corrections',
 ];
 
 /** What subjects stand on; each folder with those that it may use. */

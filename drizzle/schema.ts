@@ -1,6 +1,8 @@
 import { sql } from 'drizzle-orm';
 import { check, index, integer, real, sqliteTable, text, uniqueIndex } from 'drizzle-orm/sqlite-core';
+import type { AuditFinding, PartAudit } from '@shared/audit';
 import type { AnswerDigest, CheckResult } from '@shared/checks';
+import type { CorrectionStep } from '@shared/corrections';
 import type { MarkedCriterion } from '@shared/marking';
 import type { ProblemDraft } from '@shared/problem-draft';
 import type { ProblemContent } from '@shared/problems';
@@ -209,6 +211,8 @@ export const setProblems = sqliteTable(
     revisionId: text()
       .notNull()
       .references(() => revisions.id),
+    /** The correction whose keys, tolerances and slips hold instead of the revision's; null where none was made. */
+    correctionId: text(),
   },
   (table) => [
     index('set_problems_set').on(table.setId, table.position),
@@ -293,6 +297,8 @@ export const answers = sqliteTable(
     standingMarkId: text(),
     setAsideReason: text(),
     setAsideById: text().references(() => memberships.id),
+    /** Why a mark that a person gave deserves another look; the mark stands meanwhile. */
+    anotherLook: text(),
     version: version(),
   },
   (table) => [
@@ -439,6 +445,125 @@ export const holds = sqliteTable(
     expiresAt: time().notNull(),
   },
   (table) => [index('holds_holder').on(table.membershipId, table.benchId)],
+);
+
+// ------------------------------------------------------------------------------------- audits, corrections, long work
+
+/** Work that takes long. One process claims a row; what it claimed and left is taken up again. */
+export const jobs = sqliteTable(
+  'jobs',
+  {
+    id: id(),
+    /** Names what is to be done; `server/jobs/job-kinds.ts` knows how. */
+    kind: text().notNull(),
+    input: text({ mode: 'json' }).$type<unknown>().notNull(),
+    state: text({ enum: ['queued', 'running', 'done', 'failed', 'cancelled'] })
+      .notNull()
+      .default('queued'),
+    /** How much of how much; in what unit the kind says. */
+    done: integer().notNull().default(0),
+    total: integer().notNull().default(0),
+    /** Why it failed, in a sentence. */
+    problem: text(),
+    startedById: text()
+      .notNull()
+      .references(() => users.id),
+    /** Null for work on the bank, which belongs to the team. */
+    courseId: text().references(() => courses.id),
+    cancelAsked: integer({ mode: 'boolean' }).notNull().default(false),
+    /** The process that runs it, and when that process last said so. */
+    claimedBy: text(),
+    aliveAt: time(),
+    attempts: integer().notNull().default(0),
+    createdAt: time().notNull(),
+    finishedAt: time(),
+  },
+  (table) => [index('jobs_waiting').on(table.state, table.createdAt)],
+);
+
+/** What a key audit found in some content of a problem, which a digest names. Append-only: the newest counts. */
+export const audits = sqliteTable(
+  'audits',
+  {
+    id: id(),
+    problemId: text()
+      .notNull()
+      .references(() => problems.id),
+    /** SHA-256 of the content. */
+    digest: text().notNull(),
+    jobId: text()
+      .notNull()
+      .references(() => jobs.id),
+    variants: integer().notNull(),
+    findings: text({ mode: 'json' }).$type<readonly AuditFinding[]>().notNull(),
+    parts: text({ mode: 'json' }).$type<readonly PartAudit[]>().notNull(),
+    at: time().notNull(),
+  },
+  (table) => [index('audits_content').on(table.problemId, table.digest, table.at)],
+);
+
+/** Changes of key, tolerance or slips of a revision that was answered. Statement and givens are the revision's for ever. */
+export const corrections = sqliteTable(
+  'corrections',
+  {
+    id: id(),
+    revisionId: text()
+      .notNull()
+      .references(() => revisions.id),
+    partId: text().notNull(),
+    /** The revision's content with this correction and those before it. */
+    content: text({ mode: 'json' }).$type<ProblemContent>().notNull(),
+    /** The correction that it builds on; null for the revision itself. */
+    basedOnId: text(),
+    /** The course in which it was asked for. */
+    courseId: text()
+      .notNull()
+      .references(() => courses.id),
+    /** For the record. */
+    reason: text().notNull(),
+    /** What students read in their feedback. */
+    note: text().notNull(),
+    state: text({ enum: ['proposed', 'confirmed', 'made', 'withdrawn'] })
+      .notNull()
+      .default('proposed'),
+    byId: text()
+      .notNull()
+      .references(() => users.id),
+    createdAt: time().notNull(),
+    madeAt: time(),
+    previewJobId: text().references(() => jobs.id),
+    jobId: text().references(() => jobs.id),
+    idempotencyKey: text().notNull(),
+    version: version(),
+  },
+  (table) => [
+    index('corrections_revision').on(table.revisionId, table.createdAt),
+    uniqueIndex('corrections_key').on(table.revisionId, table.idempotencyKey),
+  ],
+);
+
+/** Answers whose verdict or marks a correction would change, or changed. */
+export const correctionChanges = sqliteTable(
+  'correction_changes',
+  {
+    id: id(),
+    correctionId: text()
+      .notNull()
+      .references(() => corrections.id),
+    answerId: text()
+      .notNull()
+      .references(() => answers.id),
+    before: text({ mode: 'json' }).$type<CorrectionStep>().notNull(),
+    after: text({ mode: 'json' }).$type<CorrectionStep>().notNull(),
+    /** What becomes of the mark: `correctionDeeds` in `shared/corrections.ts`. */
+    deed: text({
+      enum: ['mark replaced', 'mark given', 'returned to the pile', 'another look', 'check alone'],
+    }).notNull(),
+  },
+  (table) => [
+    uniqueIndex('correction_changes_answer').on(table.correctionId, table.answerId),
+    index('correction_changes_of').on(table.answerId),
+  ],
 );
 
 // ---------------------------------------------------------------------------------------------------- mail and record

@@ -7,6 +7,7 @@ import type { Context } from './context';
 import { addCourseRoutes } from './courses/courses-routes';
 import { addDeskRoutes } from './desk/desk-routes';
 import { addProblemRoutes } from './problems/problems-routes';
+import { addJobRoutes } from './jobs/job-routes';
 import { addRecordRoutes } from './record/record-routes';
 import { contentPolicy } from './http/content-policy';
 import { notFound } from './http/errors';
@@ -89,6 +90,7 @@ export function createApp(context: Context, clientFolder?: string): Application 
   addCourseRoutes(serve, context);
   addDeskRoutes(serve, context);
   addProblemRoutes(serve, context);
+  addJobRoutes(serve, context);
   addRecordRoutes(serve, context);
   addSetsRoutes(serve, context);
   addScriptsRoutes(serve, context);

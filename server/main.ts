@@ -12,6 +12,7 @@ import { databaseName, filesName, systemClock, type Context } from './context';
 import { createFileStore } from './files/file-store';
 import { createKeyPool } from './keys';
 import { createLive } from './live/live';
+import { leaveJobs, workJobs } from './jobs/work-jobs';
 import { sweepHolds } from './marking/marking-routes';
 import { runClockStages } from './sets/run-clock-stages';
 import { sendDueLetters, smtpTransport } from './mail/post-office';
@@ -57,6 +58,7 @@ async function main(): Promise<void> {
     if (stopping) return;
     stopping = true;
     clearInterval(beat);
+    leaveJobs(context);
     live.close();
     server.closeIdleConnections();
     server.close(() => {
@@ -92,6 +94,7 @@ function listen(server: Server, { port, host }: Config): Promise<void> {
 async function onBeat(context: Context, transport: ReturnType<typeof smtpTransport> | null): Promise<void> {
   dropOldGuesses(context.db, context.clock.now());
   sweepHolds(context);
+  void workJobs(context);
   await runClockStages(context);
   await sendDueLetters(context, transport, (kind, userId) =>
     linkWith(context.config.origin, makeToken(context.db, kind as TokenKind, userId, context.clock.now()).secret),

@@ -1,4 +1,5 @@
 import * as z from 'zod';
+import { jobState } from './jobs';
 import { identifier, setStage } from './primitives';
 
 /** Where the live connection is found on the server. */
@@ -51,6 +52,8 @@ export const liveEvents = {
   presenceChanged: z.object({ pileId: identifier, present: z.array(presence) }),
   /** A set entered a stage. */
   stageChanged: z.object({ courseId: identifier, setId: identifier, stage: setStage }),
+  /** Long work went on, or ended. It is told to who started it. */
+  jobMoved: z.object({ jobId: identifier, state: jobState, done: z.number().int(), total: z.number().int() }),
 } as const;
 
 /** The names of live events. */

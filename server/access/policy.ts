@@ -44,6 +44,7 @@ export const policy = {
   'read piles': ['lead', 'marker'],
   mark: ['lead', 'marker'],
   'see all marks': ['lead'],
+  'correct keys': ['lead'],
   release: ['lead'],
   'read the record': ['lead'],
 } as const satisfies Readonly<Record<string, readonly Who[]>>;

@@ -16,7 +16,7 @@ import {
 import type { SignedIn } from '../access/policy';
 import type { Config } from '../config';
 import { isSameOrigin } from '../http/same-origin';
-import { roomOfCourse, seatAt } from './rooms';
+import { personRoom, roomOfCourse, seatAt } from './rooms';
 
 /** Finds the person behind a `Cookie` header. */
 export type Authenticate = (cookieHeader: string) => Promise<SignedIn | null>;
@@ -99,6 +99,7 @@ export function createLive(): Live {
   function connect(socket: LiveSocket, world: World, authenticate: Authenticate): void {
     socket.data.benches = new Map();
     socket.data.courses = new Set();
+    void socket.join(personRoom(socket.data.person.id));
     const whoNow = () => authenticate(socket.handshake.headers.cookie ?? '');
 
     socket.on('watchPile', (wish, acknowledge) => {

@@ -7,6 +7,9 @@ import { can, type SignedIn } from '../access/policy';
 export const pileRoom = (pileId: string) => `pile:${pileId}`;
 export const pileMarksRoom = (pileId: string) => `pile:${pileId}:marks`;
 
+/** All open connections of one person. */
+export const personRoom = (userId: string) => `person:${userId}`;
+
 /** The teaching team's and the students' news of a course. */
 export const teamRoom = (courseId: string) => `course:${courseId}:team`;
 export const studentsRoom = (courseId: string) => `course:${courseId}:students`;

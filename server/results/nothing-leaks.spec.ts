@@ -102,6 +102,8 @@ function addressesOf(built: ReturnType<typeof plantedSet>): string[] {
     number: ['1'],
     membershipId: [built.handedIn[0]?.student.membershipId ?? '', built.marker.membershipId],
     userId: [built.marker.id],
+    jobId: [newId()],
+    correctionId: [newId()],
     pageId: [newId()],
     stage: setStageNames,
   };
