@@ -68,26 +68,6 @@ export const problemSample = z.object({
 });
 export type ProblemSample = z.infer<typeof problemSample>;
 
-/** A name that expressions may use, for completion and signature help. */
-export const keySignature = z.object({
-  name: z.string(),
-  /** For example `photonProbability(state, n)`. */
-  signature: z.string(),
-  summary: z.string(),
-});
-export type KeySignature = z.infer<typeof keySignature>;
-
-/** The names that key expressions may use. */
-export const keyLanguage = z.object({
-  /** Functions that know of light, with their arguments. */
-  signatures: z.array(keySignature),
-  /** Names of mathematical functions. */
-  functions: z.array(z.string()),
-  /** Names of physical constants. */
-  constants: z.array(z.string()),
-});
-export type KeyLanguage = z.infer<typeof keyLanguage>;
-
 const problemParams = z.object({ problemId: identifier });
 const begun = z.object({
   /** The course whose convention the problem is written under. */
@@ -211,11 +191,5 @@ export const problemRoutes = {
     summary: 'The draft, where nothing in it is wrong, or else the latest revision, as a problem file',
     params: problemParams,
     response: z.object({ name: z.string(), text: z.string() }),
-  }),
-  keyLanguage: defineRoute({
-    method: 'GET',
-    path: '/key-language',
-    summary: 'The names that key expressions may use',
-    response: keyLanguage,
   }),
 };

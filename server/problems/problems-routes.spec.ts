@@ -3,6 +3,7 @@ import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import { problems, record, revisions } from '@drizzle/schema';
 import type { DraftAnswer } from '@shared/problem-draft';
 import type { ProblemDetail } from '@shared/problem-routes';
+import { defaultConvention } from '@shared/primitives';
 import { buildDraft, buildPart } from '../testing/build-draft';
 import { createHarness, type Harness } from '../testing/harness';
 
@@ -427,11 +428,58 @@ describe('copies and files', () => {
 });
 
 describe('the key language', () => {
-  it('is listed for those who write keys', async () => {
+  it('is described for those who write keys, with examples that were run', async () => {
     const { body } = await lead.get('/api/key-language').expect(200);
-    const names = body.signatures.map((each: { name: string }) => each.name);
-    expect(names).toEqual(expect.arrayContaining(['coherent', 'beamSplitter', 'photonProbability']));
-    expect(body.functions).toEqual(expect.arrayContaining(['sqrt', 'exp']));
-    expect(body.constants).toContain('boltzmann');
+    const find = (name: string) => body.functions.find((each: { name: string }) => each.name === name);
+    expect(find('lose')).toMatchObject({
+      makes: 'state',
+      group: 'Operations',
+      arguments: [{ name: 'state' }, { name: 'eta', domain: '0 to 1' }],
+    });
+    expect(find('photonProbability').example).toMatchObject({
+      expression: 'photonProbability(coherent(2), 3)',
+      // e^{−4} 4³/3!
+      value: expect.closeTo((Math.exp(-4) * 64) / 6, 14) as number,
+      agreesTo: expect.any(Number) as number,
+    });
+    expect(find('noon').example.typeset).toContain('\\rangle');
+    expect(find('sqrt')).toMatchObject({ makes: 'arithmetic' });
+    expect(body.functions.filter((each: { example: unknown }) => each.example === null)).toEqual([]);
+    expect(body.constants).toContainEqual({ name: 'boltzmann', value: 1.380649e-23, unit: 'J K^-1' });
+  });
+});
+
+describe('pictures of keys', () => {
+  const picture = (who: typeof lead, change: object = {}) =>
+    who.post('/api/key-picture').send({
+      expression: 'photonProbability(lose(coherent(sqrt(nbar)), T), 1)',
+      givens: { nbar: { value: 4, printed: '4.0' }, T: { value: 0.5, printed: '0.50' } },
+      convention: defaultConvention,
+      ...change,
+    });
+
+  it('show the state in a key', async () => {
+    const { body } = await picture(lead).expect(200);
+    expect(body.why).toBe('');
+    expect(body.picture).toMatchObject({ modes: 1, asked: 1, mean: expect.closeTo(2, 10) as number });
+    expect(body.picture.wigner.values).toHaveLength(body.picture.wigner.points ** 2);
+    expect(body.picture.path.passages).toEqual(['lose']);
+  });
+
+  it('use the values of earlier parts, with their units', async () => {
+    const expression = 'meanPhotons(damp(coherent(2), part_a, 1 s))';
+    const { body } = await picture(lead, { expression, earlier: { part_a: '2 s^-1' } }).expect(200);
+    expect(body.picture.mean).toBeCloseTo(4 * Math.exp(-2), 10);
+  });
+
+  it('say why there is none', async () => {
+    const { body } = await picture(lead, { expression: 'nbar*T' }).expect(200);
+    expect(body).toEqual({ picture: null, why: 'No state of light is asked here.' });
+    await picture(lead, { expression: '' }).expect(400);
+  });
+
+  it('are for those who write keys', async () => {
+    await picture(student).expect(403);
+    await picture(marker).expect(403);
   });
 });

@@ -2,6 +2,8 @@ import { eq } from 'drizzle-orm';
 import type { Queryable } from '@drizzle/client';
 import { courses } from '@drizzle/schema';
 import type { Convention } from '@shared/primitives';
+import { keyLanguageRoute } from '@shared/key-language';
+import { keyPictureRoute } from '@shared/key-picture';
 import { problemRoutes as routes } from '@shared/problem-routes';
 import { readDraft } from '@shared/read-draft';
 import { demand, membershipFor, type SignedIn } from '../access/policy';
@@ -9,9 +11,9 @@ import type { Context } from '../context';
 import { conventionOf } from '../courses/convention';
 import { conflict, invalidField, notFound } from '../http/errors';
 import type { Serve } from '../http/serve';
-import { keySignatures } from '../keys';
-import { physicalConstants } from '../keys/physical-constants';
-import { plainFunctions } from '../keys/plain-functions';
+import { createKeyLanguage } from './key-language';
+import { drawKey } from './key-picture';
+import { auditForUse } from './audit-rules';
 import { ProblemFileError, readProblemFile } from './problem-file';
 import { writeProblemFile } from './write-problem-file';
 import { latestRevision, listProblems, listRevisions, presentRevision } from './problem-queries';
@@ -30,6 +32,7 @@ import { sampleDraft } from './sample-draft';
 /** The bank: problems, their drafts and revisions. */
 export function addProblemRoutes(serve: Serve, context: Context): void {
   const { db, keys, clock } = context;
+  const keyLanguage = createKeyLanguage(keys);
   const deed = (user: { readonly id: string }) => ({ personId: user.id, now: clock.now() });
 
   serve(routes.problems, ({ user, query }) => {
@@ -89,9 +92,11 @@ export function addProblemRoutes(serve: Serve, context: Context): void {
     return presentRevision(found);
   });
 
-  serve(routes.setProblemStatus, ({ user, params, body, version }) => {
+  serve(routes.setProblemStatus, async ({ user, params, body, version }) => {
     demand(user, 'write problems');
-    return setProblemStatus(db, keys, params.problemId, { status: body.status, version }, deed(user));
+    demandProblem(db, params.problemId, user.id);
+    if (body.status === 'ready') await auditForUse(context, params.problemId, user.id);
+    return setProblemStatus(db, params.problemId, { status: body.status, version }, deed(user));
   });
 
   serve(routes.copyProblem, ({ user, params }) => {
@@ -108,13 +113,14 @@ export function addProblemRoutes(serve: Serve, context: Context): void {
     return { name: fileName(content.title), text: writeProblemFile(content) };
   });
 
-  serve(routes.keyLanguage, ({ user }) => {
+  serve(keyPictureRoute, ({ user, body }) => {
     demand(user, 'write problems');
-    return {
-      signatures: keySignatures.map(({ name, signature, summary }) => ({ name, signature, summary })),
-      functions: Object.keys(plainFunctions),
-      constants: Object.keys(physicalConstants),
-    };
+    return drawKey(keys, body);
+  });
+
+  serve(keyLanguageRoute, ({ user }) => {
+    demand(user, 'write problems');
+    return keyLanguage();
   });
 }
 

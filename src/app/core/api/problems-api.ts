@@ -1,7 +1,10 @@
 import { Injectable, inject } from '@angular/core';
+import { keyLanguageRoute } from '@shared/key-language';
+import { keyPictureRoute } from '@shared/key-picture';
 import type { ProblemDraft } from '@shared/problem-draft';
 import { problemRoutes } from '@shared/problem-routes';
 import type { ProblemStatus } from '@shared/problems';
+import type * as z from 'zod';
 import { ApiClient } from './api-client';
 
 /** The bank: problems, their drafts and revisions. */
@@ -58,6 +61,10 @@ export class ProblemsApi {
   }
 
   keyLanguage() {
-    return this.api.call(problemRoutes.keyLanguage);
+    return this.api.call(keyLanguageRoute);
+  }
+
+  keyPicture(body: z.input<(typeof keyPictureRoute)['body']>) {
+    return this.api.call(keyPictureRoute, { body });
   }
 }

@@ -17,8 +17,8 @@ import { MatIconModule } from '@angular/material/icon';
 import { MatMenuModule } from '@angular/material/menu';
 import { Router, RouterLink } from '@angular/router';
 import { catchError, firstValueFrom, fromEvent, of } from 'rxjs';
+import type { KeyLanguage } from '@shared/key-language';
 import type { DraftAnswer } from '@shared/problem-draft';
-import type { KeyLanguage } from '@shared/problem-routes';
 import { partLabel, type ProblemStatus } from '@shared/problems';
 import { secondOf } from '@shared/times';
 import { readTypedNumber, typeNumber } from '@shared/typed-number';
@@ -35,6 +35,7 @@ import type { ExpressionFault } from './expression-editor';
 import { faultPlace } from './fault-place';
 import { GivensTable } from './givens-table';
 import type { KeyNames } from './key-language';
+import { KeyPictures } from './key-pictures';
 import { MarkScheme } from './mark-scheme';
 import { OpenProblem } from './open-problem';
 import { PartBench } from './part-bench';
@@ -55,7 +56,7 @@ const statusDeeds: Readonly<Record<ProblemStatus, string>> = {
   retired: 'Retire',
 };
 
-const noLanguage: KeyLanguage = { signatures: [], functions: [], constants: [] };
+const noLanguage: KeyLanguage = { functions: [], constants: [] };
 
 /** A problem as it is written: statement beside what a student sees; below, givens and parts, one at a time. */
 @Component({
@@ -65,6 +66,7 @@ const noLanguage: KeyLanguage = { signatures: [], functions: [], constants: [] }
     ErrorState,
     FormulaText,
     GivensTable,
+    KeyPictures,
     LoadingBars,
     MarkScheme,
     MatButtonModule,
@@ -102,10 +104,6 @@ export default class Composer {
   /** Without the server's list the editor works, it only completes less. */
   private readonly language = toSignal(this.api.keyLanguage().pipe(catchError(() => of(noLanguage))), {
     initialValue: noLanguage,
-  });
-  private readonly functions = computed(() => {
-    const { signatures, functions } = this.language();
-    return [...signatures, ...functions.map((name) => ({ name, signature: `${name}(x)`, summary: '' }))];
   });
   protected readonly isSaving = signal(false);
   protected readonly showsRevisions = signal(false);
@@ -160,8 +158,11 @@ export default class Composer {
     const earlier = (draft?.parts ?? [])
       .slice(0, Math.max(0, this.partIndex()))
       .map((part, index) => ({ name: `part_${partLabel(index)}`, detail: part.heading.trim() || 'earlier part' }));
-    const constants = this.language().constants.map((name) => ({ name, detail: 'constant' }));
-    return { values: [...givens, ...earlier], constants, functions: this.functions() };
+    const constants = this.language().constants.map(({ name, value, unit }) => ({
+      name,
+      detail: `${String(value)} ${unit}`,
+    }));
+    return { values: [...givens, ...earlier], constants, functions: this.language().functions };
   });
 
   protected readonly namedGivens = computed<readonly NamedGiven[]>(() =>

@@ -51,6 +51,8 @@ export function editorLook(nonce: string | null): Extension {
       '.cm-signature': { padding: '4px 12px', fontFamily: 'var(--mono)', fontSize: '12px', lineHeight: '20px' },
       '.cm-signature b': { color: 'var(--line)' },
       '.cm-signature p': { fontFamily: 'var(--ui)', color: 'var(--silver-4)', maxWidth: '420px' },
+      '.cm-signature .cm-described p, .cm-completionInfo p': { margin: '0 0 4px' },
+      '.cm-described .formula': { fontSize: '16px', color: 'var(--ink)' },
       '.cm-diagnostic': { padding: '4px 12px', border: '0' },
       '.cm-placeholder': { color: 'var(--silver-4)' },
     }),

@@ -17,7 +17,8 @@ import { setDiagnostics, type Diagnostic } from '@codemirror/lint';
 import { Compartment, EditorState } from '@codemirror/state';
 import { EditorView, keymap, placeholder } from '@codemirror/view';
 import { editorLook } from './editor-look';
-import { keyLanguage, keyNames, type KeyNames } from './key-language';
+import { Typesetter } from '../../ui/formula-text/typesetter';
+import { formulaSetter, keyLanguage, keyNames, type KeyNames } from './key-language';
 
 /** What is wrong with an expression, and at which character. */
 export interface ExpressionFault {
@@ -41,6 +42,7 @@ let instances = 0;
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class ExpressionEditor {
+  private readonly typesetter = inject(Typesetter);
   private readonly nonce = inject(CSP_NONCE, { optional: true });
   private readonly box = viewChild.required<ElementRef<HTMLElement>>('box');
   private readonly namesInForce = new Compartment();
@@ -93,6 +95,9 @@ export class ExpressionEditor {
           this.editable.of(EditorView.editable.of(!this.disabled())),
           this.attributes.of(EditorView.contentAttributes.of(this.contentAttributes())),
           keyLanguage(),
+          formulaSetter.of((source) => this.setFormula(source)),
+          // Help with a function shows its formula, so the program that sets it comes with the cursor.
+          EditorView.domEventHandlers({ focus: () => void this.typesetter.load() }),
           history(),
           EditorView.lineWrapping,
           placeholder(this.hint()),
@@ -103,6 +108,12 @@ export class ExpressionEditor {
         ],
       }),
     });
+  }
+
+  private setFormula(source: string): readonly Node[] {
+    const setting = { givens: {}, showGivens: false, figures: {}, inline: true };
+    const blocks = this.typesetter.typesetting()?.typeset(`$${source}$`, setting, []) ?? [];
+    return blocks.flatMap(({ nodes }) => nodes);
   }
 
   private contentAttributes(): Record<string, string> {

@@ -17,7 +17,7 @@ import {
   type Tooltip,
   type ViewUpdate,
 } from '@codemirror/view';
-import type { KeySignature } from '@shared/problem-routes';
+import type { KeyFunction } from '@shared/key-language';
 
 /** What an expression may name. */
 export interface KeyNames {
@@ -25,8 +25,14 @@ export interface KeyNames {
   readonly values: readonly { readonly name: string; readonly detail: string }[];
   /** Physical constants. */
   readonly constants?: readonly { readonly name: string; readonly detail: string }[];
-  readonly functions: readonly KeySignature[];
+  readonly functions: readonly KeyFunction[];
 }
+
+/** Sets a formula into nodes; empty while the program for it is on its way. */
+export type SetFormula = (source: string) => readonly Node[];
+
+/** How formulas are set in what the editor shows. */
+export const formulaSetter = Facet.define<SetFormula, SetFormula>({ combine: (values) => values[0] ?? (() => []) });
 
 /** The names in force in an editor. */
 export const keyNames = Facet.define<KeyNames, KeyNames>({
@@ -75,20 +81,23 @@ function complete(context: CompletionContext): CompletionResult | null {
   const options: Completion[] = [
     ...names.values.map(({ name, detail }) => ({ label: name, detail, boost: 2, type: 'variable' })),
     ...(names.constants ?? []).map(({ name, detail }) => ({ label: name, detail, boost: -1, type: 'constant' })),
-    ...names.functions.map(({ name, signature, summary }) => ({
-      label: name,
-      detail: signature.slice(name.length),
-      ...(summary ? { info: summary } : {}),
-      type: 'function',
-      // The brackets are written too, with the cursor between them where there is something to write.
-      apply: (view: EditorView, _: Completion, from: number, to: number) => {
-        const isCalled = view.state.sliceDoc(to, to + 1) === '(';
-        const isConstant = !signature.includes('(');
-        const insert = isCalled || isConstant ? name : `${name}()`;
-        const inside = !isCalled && !isConstant && !signature.includes('()') ? 1 : 0;
-        view.dispatch({ changes: { from, to, insert }, selection: { anchor: from + insert.length - inside } });
-      },
-    })),
+    ...names.functions.map((each) => {
+      const { name, signature } = each;
+      return {
+        label: name,
+        detail: signature.slice(name.length),
+        info: () => describeFunction(each, context.state.facet(formulaSetter)),
+        type: 'function',
+        // The brackets are written too, with the cursor between them where there is something to write.
+        apply: (view: EditorView, _: Completion, from: number, to: number) => {
+          const isCalled = view.state.sliceDoc(to, to + 1) === '(';
+          const isConstant = !signature.includes('(');
+          const insert = isCalled || isConstant ? name : `${name}()`;
+          const inside = !isCalled && !isConstant && !signature.includes('()') ? 1 : 0;
+          view.dispatch({ changes: { from, to, insert }, selection: { anchor: from + insert.length - inside } });
+        },
+      };
+    }),
   ];
   return { from: word?.from ?? context.pos, options, validFor: /^[A-Za-z0-9_]*$/ };
 }
@@ -140,11 +149,11 @@ function signatureTooltip(state: EditorState): Tooltip | null {
   return {
     pos: head,
     above: true,
-    create: () => ({ dom: signatureDom(found, argument) }),
+    create: ({ state: now }) => ({ dom: signatureDom(found, argument, now.facet(formulaSetter)) }),
   };
 }
 
-function signatureDom(found: KeySignature, argument: number): HTMLElement {
+function signatureDom(found: KeyFunction, argument: number, setFormula: SetFormula): HTMLElement {
   const dom = document.createElement('div');
   dom.className = 'cm-signature';
   const [, name = found.name, list = ''] = /^([^(]*)\(([^)]*)\)/.exec(found.signature) ?? [];
@@ -156,9 +165,29 @@ function signatureDom(found: KeySignature, argument: number): HTMLElement {
     dom.append(part);
   }
   dom.append(')');
+  const [own] = found.arguments.slice(argument, argument + 1);
+  if (own?.domain) {
+    const domain = document.createElement('p');
+    domain.textContent = `${own.name}: ${own.domain}${own.otherwise === undefined ? '' : `; ${own.otherwise} where left out`}`;
+    dom.append(domain);
+  }
+  dom.append(describeFunction(found, setFormula));
+  return dom;
+}
+
+/** A function's one line, and its formula. */
+function describeFunction({ summary, formula }: KeyFunction, setFormula: SetFormula): HTMLElement {
+  const dom = document.createElement('div');
+  dom.className = 'cm-described';
   const words = document.createElement('p');
-  words.textContent = found.summary;
+  words.textContent = summary;
   dom.append(words);
+  const nodes = formula === '' ? [] : setFormula(formula);
+  if (nodes.length > 0) {
+    const set = document.createElement('p');
+    set.append(...nodes);
+    dom.append(set);
+  }
   return dom;
 }
 

@@ -1,4 +1,5 @@
 import { ChangeDetectionStrategy, Component, computed, inject, input } from '@angular/core';
+import { RouterLink } from '@angular/router';
 import type { AnswerForm } from '@shared/answer-forms';
 import type { DraftAnswer, DraftPart } from '@shared/problem-draft';
 import { partLabel } from '@shared/problems';
@@ -25,6 +26,7 @@ import { TypedField } from './typed-field';
     ChoiceOptions,
     ExpressionEditor,
     FormulaVariables,
+    RouterLink,
     SampleTable,
     SlipsTable,
     ToleranceFields,

@@ -14,8 +14,10 @@ const foot = 20;
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class ProbabilityBars {
-  /** P(0), P(1), … */
+  /** P(first), P(first + 1), … */
   readonly probabilities = input.required<readonly number[]>();
+  /** The photon number of the first bar. */
+  readonly first = input(0);
   /** The photon number of the key, drawn in the line's colour. */
   readonly highlight = input<number | null>(null);
   /** What the distribution is of: `P(n) at output 2`. */
@@ -28,7 +30,7 @@ export class ProbabilityBars {
     const all = this.probabilities().map((p) => (Number.isFinite(p) && p > 0 ? p : 0));
     const highest = Math.max(0, ...all);
     let count = all.length;
-    const keep = Math.max(8, (this.highlight() ?? 0) + 1);
+    const keep = Math.max(8, (this.highlight() ?? 0) - this.first() + 1);
     while (count > keep && (all[count - 1] ?? 0) < highest / 1000) count--;
     return all.slice(0, count);
   });
@@ -46,16 +48,17 @@ export class ProbabilityBars {
       levels: scale.ticks
         .filter((tick) => tick.at < base - 1 && tick.at >= top - 5)
         .map((tick) => ({ ...tick, text: tick.text.replace(/^0\./, '.'), line: `M${left} ${tick.at}H${width}` })),
-      bars: bars.map((p, n) => {
+      bars: bars.map((p, at) => {
+        const n = at + this.first();
         const y = Math.min(scale.place(p), p > 0 ? base - 0.6 : base);
         return {
           n,
-          x: left + n * step + step * 0.22,
+          x: left + at * step + step * 0.22,
           width: step * 0.56,
           y,
           height: base - y,
-          middle: left + (n + 0.5) * step,
-          numbered: n % every === 0 || n === this.highlight(),
+          middle: left + (at + 0.5) * step,
+          numbered: at % every === 0 || n === this.highlight(),
           highlighted: n === this.highlight(),
         };
       }),
@@ -64,7 +67,7 @@ export class ProbabilityBars {
 
   protected readonly sentence = computed(() => {
     const bars = this.shown();
-    const words = bars.slice(0, 12).map((p, n) => `${n}: ${printNumber(p, 3)}`);
+    const words = bars.slice(0, 12).map((p, at) => `${at + this.first()}: ${printNumber(p, 3)}`);
     return `${this.label()}. ${words.join('; ')}${bars.length > 12 ? '; and further' : ''}`;
   });
 }

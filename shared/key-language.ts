@@ -1,0 +1,61 @@
+import * as z from 'zod';
+import { plainValue } from './checks';
+import { defineRoute } from './route';
+
+/** An argument of a function of the key language. */
+export const keyArgument = z.object({
+  name: z.string(),
+  /** What it is where it is left out; absent where it cannot be. */
+  otherwise: z.string().optional(),
+  /** What it may be, in words. */
+  domain: z.string(),
+});
+export type KeyArgument = z.infer<typeof keyArgument>;
+
+/** A function of the key language, as completion, help with arguments and its page describe it. */
+export const keyFunction = z.object({
+  name: z.string(),
+  /** For example `photonProbability(state, n)`. */
+  signature: z.string(),
+  /** One line. */
+  summary: z.string(),
+  /** KaTeX; empty where a word says it better. */
+  formula: z.string(),
+  /** The heading under which it stands. */
+  group: z.string(),
+  /** Whether it makes a state, asks something of one, or does neither. */
+  makes: z.enum(['state', 'figure', 'arithmetic']),
+  arguments: z.array(keyArgument).readonly(),
+  /** An expression that was run, with what it came to. */
+  example: z
+    .object({
+      expression: z.string(),
+      value: plainValue,
+      unit: z.string().optional(),
+      typeset: z.string().optional(),
+      method: z.string(),
+      agreesTo: z.number().optional(),
+    })
+    .nullable(),
+});
+export type KeyFunction = z.infer<typeof keyFunction>;
+
+/** A physical constant. */
+export const keyConstant = z.object({ name: z.string(), value: z.number(), unit: z.string() });
+export type KeyConstant = z.infer<typeof keyConstant>;
+
+/** All names that key expressions may use. */
+export const keyLanguage = z.object({
+  /** In the order of the page. */
+  functions: z.array(keyFunction).readonly(),
+  constants: z.array(keyConstant).readonly(),
+});
+export type KeyLanguage = z.infer<typeof keyLanguage>;
+
+/** The key language, described from its own registrations. */
+export const keyLanguageRoute = defineRoute({
+  method: 'GET',
+  path: '/key-language',
+  summary: 'The functions and constants of key expressions, with formulas, domains and examples that were run',
+  response: keyLanguage,
+});
