@@ -8,6 +8,7 @@ import { hashPassword } from '../server/accounts/secrets';
 import type { Context } from '../server/context';
 import { joinCourse } from '../server/courses/members';
 import { newId } from '../server/http/new-id';
+import { auditForUse } from '../server/problems/audit-rules';
 import { readProblemFile } from '../server/problems/problem-file';
 import { createFromContent, makeRevision, setProblemStatus } from '../server/problems/problem-rules';
 import { administrator, demonstrationPassword, lead, markers, students, type DemonstrationPerson } from './accounts';
@@ -81,7 +82,8 @@ export async function addProblems(
     const deed = { personId: author.id, now: clock.now() };
     const { id: problemId, version } = createFromContent(db, content, deed);
     const revised = await makeRevision(db, keys, problemId, { reason: 'First wording', version }, deed);
-    await setProblemStatus(db, keys, problemId, { status, version: revised.version }, deed);
+    if (status === 'ready') await auditForUse(context, problemId, author.id);
+    setProblemStatus(db, problemId, { status, version: revised.version }, deed);
     if (!revised.latestRevision) throw new Error('A revision that was made is not there.');
     made.push({ name: basename(file, '.md'), problemId, revisionId: revised.latestRevision.id, content });
   }

@@ -6,6 +6,7 @@ import { createSessions, type Sessions } from './accounts/sessions';
 import type { Context } from './context';
 import { addCourseRoutes } from './courses/courses-routes';
 import { addDeskRoutes } from './desk/desk-routes';
+import { addAuditRoutes } from './problems/audit-routes';
 import { addProblemRoutes } from './problems/problems-routes';
 import { addJobRoutes } from './jobs/job-routes';
 import { addRecordRoutes } from './record/record-routes';
@@ -90,6 +91,7 @@ export function createApp(context: Context, clientFolder?: string): Application 
   addCourseRoutes(serve, context);
   addDeskRoutes(serve, context);
   addProblemRoutes(serve, context);
+  addAuditRoutes(serve, context);
   addJobRoutes(serve, context);
   addRecordRoutes(serve, context);
   addSetsRoutes(serve, context);

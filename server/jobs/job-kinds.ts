@@ -11,7 +11,7 @@ export interface JobAtWork<Input> {
    * Says how far it is; ends the job with {@link JobCancelled} where somebody cancelled it. Between two calls as little as
    * a second should pass.
    */
-  progress(done: number, total: number): void;
+  readonly progress: (done: number, total: number) => void;
 }
 
 /** A kind of long work. Running it twice must come to the same as running it once: after a restart it begins anew. */

@@ -72,12 +72,12 @@ export function noteProgress(
   claimant: string,
   at: { readonly done: number; readonly total: number; readonly now: number },
 ): boolean {
-  const row = tx
+  const [row] = tx
     .update(jobs)
     .set({ done: at.done, total: at.total, aliveAt: at.now })
     .where(and(eq(jobs.id, jobId), eq(jobs.claimedBy, claimant), eq(jobs.state, 'running')))
     .returning()
-    .get();
+    .all();
   return row !== undefined && !row.cancelAsked;
 }
 

@@ -10,6 +10,7 @@ import { conflict, invalidInput, notFound, stale } from '../http/errors';
 import { newId } from '../http/new-id';
 import { enter } from '../record/enter';
 import type { Keys } from '../variants/evaluate-outcomes';
+import { demandCleanAudit } from './audit-rules';
 import { keyFaults } from './key-faults';
 import { findProblem, latestRevision, presentSummary, type ProblemRow } from './problem-queries';
 
@@ -186,22 +187,15 @@ async function demandContent(keys: Keys, draft: ProblemDraft): Promise<ProblemCo
 /**
  * Puts a problem in another state.
  *
- * @throws RequestError 404; 412; 409 where that state does not follow, where there is no revision, or where a key of
- *   the latest revision fails
+ * @throws RequestError 404; 412; 409 where that state does not follow, where there is no revision, or where the key audit of
+ *   the latest revision found something that stops use, or was not made (`auditForUse` makes it)
  */
-export async function setProblemStatus(
+export function setProblemStatus(
   db: Database,
-  keys: Keys,
   problemId: string,
   change: { readonly status: ProblemStatus; readonly version: number },
   deed: Deed,
-): Promise<ProblemDetail> {
-  demandCurrent(db, problemId, change.version, deed.personId);
-  if (change.status === 'ready') {
-    const latest = latestRevision(db, problemId);
-    const wrong = latest ? await keyFaults(keys, latest.content) : [];
-    if (wrong.length > 0) throw conflict(`The problem cannot be ready: ${wrong[0]?.message ?? ''}`, { fields: wrong });
-  }
+): ProblemDetail {
   return db.transaction(
     (tx) => {
       const row = demandCurrent(tx, problemId, change.version, deed.personId);
@@ -213,6 +207,8 @@ export async function setProblemStatus(
             : `A problem that is ${row.status} cannot become ${change.status}${change.status === 'draft' && row.authorId !== deed.personId ? ' by anyone but its author' : ''}.`,
         );
       }
+      const revision = latestRevision(tx, problemId);
+      if (change.status === 'ready' && revision) demandCleanAudit(tx, problemId, revision.content);
       tx.update(problems)
         .set({ status: change.status, version: row.version + 1 })
         .where(eq(problems.id, problemId))

@@ -1,0 +1,23 @@
+import { auditRoutes } from '@shared/audit';
+import { demand } from '../access/policy';
+import type { Context } from '../context';
+import type { Serve } from '../http/serve';
+import { auditStateOf, beginAudit } from './audit-rules';
+import { demandProblem } from './problem-rules';
+
+/** The key audit of a problem's draft. */
+export function addAuditRoutes(serve: Serve, context: Context): void {
+  const { db } = context;
+
+  serve(auditRoutes.audit, ({ user, params }) => {
+    demand(user, 'read problems');
+    const { draft } = demandProblem(db, params.problemId, user.id);
+    return auditStateOf(db, params.problemId, draft);
+  });
+
+  serve(auditRoutes.beginAudit, ({ user, params, body }) => {
+    demand(user, 'write problems');
+    const { draft } = demandProblem(db, params.problemId, user.id);
+    return beginAudit(context, params.problemId, body.draft ?? draft, user.id);
+  });
+}
