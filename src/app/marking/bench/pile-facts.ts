@@ -10,7 +10,7 @@ export type AfterFact = { readonly pile: Pile } | 'fetch again';
  */
 export function takeFact(pile: Pile, fact: Fact): AfterFact {
   if (fact.name === 'stageChanged') return fact.body.setId === pile.setId ? 'fetch again' : { pile };
-  if (fact.body.pileId !== pile.id) return { pile };
+  if (fact.name === 'jobMoved' || fact.body.pileId !== pile.id) return { pile };
   if (fact.name === 'presenceChanged') return { pile: { ...pile, present: fact.body.present } };
   const { sequence } = fact.body;
   if (sequence <= pile.sequence) return { pile };
@@ -18,7 +18,7 @@ export function takeFact(pile: Pile, fact: Fact): AfterFact {
   return { pile: { ...pile, sequence, answers: answersAfter(pile, fact) } };
 }
 
-type AnswerFact = Exclude<Fact, { name: 'stageChanged' | 'presenceChanged' | 'pileChanged' }>;
+type AnswerFact = Exclude<Fact, { name: 'stageChanged' | 'presenceChanged' | 'pileChanged' | 'jobMoved' }>;
 
 function answersAfter(pile: Pile, fact: AnswerFact): PileAnswer[] {
   switch (fact.name) {
