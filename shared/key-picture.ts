@@ -14,8 +14,10 @@ export const statePicture = z.object({
   mode: z.union([z.literal(1), z.literal(2)]),
   /** ⟨n⟩. */
   mean: z.number(),
-  /** P(n) from n = first on; a long tail of next to nothing is left out. */
-  bars: z.object({ first: z.number().int(), probabilities: z.array(z.number()).readonly() }).nullable(),
+  /** P(n) for n = first, first + step …; where next to nothing is likely is left out. */
+  bars: z
+    .object({ first: z.number().int(), step: z.number().int(), probabilities: z.array(z.number()).readonly() })
+    .nullable(),
   /** The Wigner function on a square grid, in the quadratures of the convention. */
   wigner: z
     .object({

@@ -75,6 +75,15 @@ describe('pictureOf', () => {
     expect(() => draw('1 + 1')).toThrow('No state of light');
   });
 
+  it('shows a broad distribution where it is, in steps', () => {
+    const { bars } = draw('meanPhotons(coherent(50))');
+    const { first, step, probabilities } = bars!;
+    expect(step).toBeGreaterThan(1);
+    expect(first).toBeGreaterThan(2200);
+    const highest = probabilities.indexOf(Math.max(...probabilities));
+    expect(Math.abs(first + highest * step - 2500)).toBeLessThan(2 * step);
+  });
+
   it('has no Wigner function to show where it would take too long, and bars all the same', () => {
     const picture = draw('meanPhotons(thermal(400))');
     expect(picture.bars).not.toBeNull();

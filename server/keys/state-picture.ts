@@ -21,9 +21,11 @@ export interface PictureWanted {
   readonly mode: Mode;
 }
 
-/** P(n), n = first, first + 1, …; a long tail of next to nothing is left out. */
+/** P(n), n = first, first + step, …; where next to nothing is likely is left out. */
 export interface PictureBars {
   readonly first: number;
+  /** More than 1 where the distribution is too broad for a bar each. */
+  readonly step: number;
   readonly probabilities: readonly number[];
 }
 
@@ -64,6 +66,8 @@ const finest = 121;
 const coarse = 41;
 /** Milliseconds that the fine picture may take. */
 const patience = 600;
+/** The largest photon number that a distribution lists. */
+const largestListed = 9_999;
 /** Bars that are shown at most. */
 const mostBars = 64;
 
@@ -129,7 +133,7 @@ function figure(name: FigureOfState, state: State, convention: Convention, ...mo
 function barsOf(state: State, mean: number, convention: Convention): PictureBars {
   const variance = Number(figure('photonVariance', state, convention));
   const reach = Math.ceil(mean + 7 * Math.sqrt(Math.max(variance, 0)) + 4);
-  const listed = figure('photonDistribution', state, convention, Math.min(reach, 2_000));
+  const listed = figure('photonDistribution', state, convention, Math.min(reach, largestListed));
   const all = Array.isArray(listed) ? (listed as readonly number[]) : [];
   const most = Math.max(...all, 0);
   const shows = (p: number | undefined) => (p ?? 0) > most / 500;
@@ -137,7 +141,8 @@ function barsOf(state: State, mean: number, convention: Convention): PictureBars
   while (end > 8 && !shows(all[end - 1])) end--;
   let first = 0;
   if (end > mostBars) while (first < end - mostBars && !shows(all[first])) first++;
-  return { first, probabilities: all.slice(first, Math.min(end, first + mostBars)) };
+  const step = Math.ceil((end - first) / mostBars);
+  return { first, step, probabilities: all.slice(first, end).filter((_, index) => index % step === 0) };
 }
 
 /** A grid in the quadratures of the engine (vacuum variance 1/2). */
@@ -234,7 +239,8 @@ function boxAround({ xs, ps, values }: Grid): Box {
 
 function pathOf(state: State, convention: Convention): StatePicture['path'] {
   const path = amplitudePath(state);
-  if (!path) return null;
+  // Losses alone show in the other pictures; a path is for what moves in time or gains.
+  if (!path || path.passages.every((passage) => passage === 'lose')) return null;
   const factor = quadratureScale(convention);
   return {
     passages: path.passages,

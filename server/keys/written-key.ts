@@ -39,20 +39,13 @@ export function evaluateWanted(compiled: CompiledKey, values: ReadonlyMap<string
     case 'state': {
       const compared = stateComponents(evaluateState(compiled, values));
       const { plain, typeset } = stateText(compared);
-      const dimension = dimensionOf(compared);
-      return { value: plain, typeset, method: 'number basis', dimension, compared };
+      return { value: plain, typeset, method: 'number basis', compared };
     }
     case 'formula':
       return evaluateFormula(compiled, values, wanted);
     case 'picture':
       return { value: '', method: 'number basis', picture: pictureOf(compiled, values, wanted) };
   }
-}
-
-function dimensionOf(state: StateComponents): number {
-  if ('amplitudes' in state) return state.amplitudes.length;
-  if ('elements' in state) return new Set(state.elements.map(({ row }) => row.join())).size;
-  return Math.max(0, ...state.kets.map((ket) => ket.length));
 }
 
 function evaluateFormula(

@@ -41,7 +41,8 @@ export function typesetExpression(expression: string, naming: Naming): string {
 }
 
 function setNode(node: Looked, options: object, naming: Naming): string | undefined {
-  if (node.type === 'SymbolNode') return setName(node.name ?? '', naming);
+  // The library writes `\\cdot` right before what follows, so that a name needs room before it.
+  if (node.type === 'SymbolNode') return ` ${setName(node.name ?? '', naming)}`;
   if (node.type !== 'FunctionNode') return undefined;
   const name = node.fn?.name ?? '';
   // The library knows how to set arithmetic; what knows of light is set by name.
@@ -50,7 +51,7 @@ function setNode(node: Looked, options: object, naming: Naming): string | undefi
   return `\\operatorname{${name}}\\left(${args.join(',\\,')}\\right)`;
 }
 
-function setName(name: string, { values, symbols, variables }: Naming): string | undefined {
+function setName(name: string, { values, symbols, variables }: Naming): string {
   const value = variables.has(name) || !Object.hasOwn(values, name) ? undefined : values[name];
   if (value) {
     const unit = value.unit === undefined ? '' : `\\,\\mathrm{${value.unit}}`;

@@ -4,6 +4,11 @@ import { keepBeforeLeaving } from './composer/keep-before-leaving';
 const routes: Routes = [
   { path: '', pathMatch: 'full', title: 'Problems', loadComponent: () => import('./problem-list/problem-list') },
   {
+    path: 'key-language',
+    title: 'The key language',
+    loadComponent: () => import('./key-language/key-language'),
+  },
+  {
     path: ':problemId',
     title: 'Problem',
     canDeactivate: [keepBeforeLeaving],

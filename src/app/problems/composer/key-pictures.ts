@@ -43,6 +43,7 @@ export class KeyPictures {
   readonly names = input.required<KeyNames>();
 
   protected readonly label = computed(() => partLabel(this.index()));
+  protected readonly modes = [1, 2] as const;
   protected readonly mode = linkedSignal<string, 1 | 2>({ source: () => this.part().id, computation: () => 1 });
   private readonly drawn = signal<{ readonly partId: string; readonly picture: StatePicture | null } | null>(null);
   protected readonly why = signal('');

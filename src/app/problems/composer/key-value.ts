@@ -17,7 +17,7 @@ const figures = 5;
         >{{ plain() }}</span
       >
       @if (key().example; as example) {
-        <span class="example">{{ example }}</span>
+        <span class="example below">{{ example }}</span>
       }
     } @else if (grid(); as shown) {
       <span class="cdk-visually-hidden">{{ plain() }}</span>
@@ -78,6 +78,11 @@ const figures = 5;
       margin-left: 8px;
       font: var(--t-12);
       color: var(--silver-4);
+
+      &.below {
+        display: block;
+        margin: 0 0 4px;
+      }
     }
   `,
   changeDetection: ChangeDetectionStrategy.OnPush,

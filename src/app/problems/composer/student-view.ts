@@ -35,6 +35,10 @@ export class StudentView {
       return `${typeNumber(sum)} ${sum === 1 ? 'mark' : 'marks'}`;
     }),
   );
+  /** What students choose among; null for a part that is no choice. */
+  protected readonly options = computed(() =>
+    this.parts().map(({ answer }) => (answer.form === 'choice' && answer.options.length > 0 ? answer.options : null)),
+  );
   protected readonly where = computed(() => {
     const count = this.samples.sample()?.count;
     const number = this.samples.shown()?.number;

@@ -23,7 +23,7 @@ describe('AmplitudePath', () => {
 
   it('draws circles to scale and keeps all of them inside', async () => {
     const circles = [...(await show()).querySelectorAll('circle:not(.dot)')].map((circle) => ({
-      x: Number(circle.getAttribute('cx')) - 26,
+      x: Number(circle.getAttribute('cx')) - 38,
       y: Number(circle.getAttribute('cy')),
       r: Number(circle.getAttribute('r')),
     }));

@@ -9,7 +9,7 @@ export interface PathStep {
   readonly spread: number;
 }
 
-const left = 26;
+const left = 38;
 const foot = 34;
 /** Circles on the way, between the first and the last. */
 const between = 4;
@@ -31,7 +31,7 @@ const between = 4;
         <text text-anchor="end" [attr.x]="d.left - 6" [attr.y]="tick.at + 4">{{ tick.text }}</text>
       }
       <text class="name" text-anchor="middle" [attr.x]="d.left + size() / 2" [attr.y]="size() + 31">x</text>
-      <text class="name" text-anchor="middle" x="6" [attr.y]="size() / 2 + 4">p</text>
+      <text class="name" text-anchor="middle" x="5" [attr.y]="size() / 2 + 4">p</text>
       @for (circle of d.circles; track $index) {
         <circle
           [class.start]="$first"

@@ -18,6 +18,8 @@ export class ProbabilityBars {
   readonly probabilities = input.required<readonly number[]>();
   /** The photon number of the first bar. */
   readonly first = input(0);
+  /** From one bar's photon number to the next. */
+  readonly step = input(1);
   /** The photon number of the key, drawn in the line's colour. */
   readonly highlight = input<number | null>(null);
   /** What the distribution is of: `P(n) at output 2`. */
@@ -30,7 +32,7 @@ export class ProbabilityBars {
     const all = this.probabilities().map((p) => (Number.isFinite(p) && p > 0 ? p : 0));
     const highest = Math.max(0, ...all);
     let count = all.length;
-    const keep = Math.max(8, (this.highlight() ?? 0) - this.first() + 1);
+    const keep = Math.max(8, ((this.highlight() ?? 0) - this.first()) / this.step() + 1);
     while (count > keep && (all[count - 1] ?? 0) < highest / 1000) count--;
     return all.slice(0, count);
   });
@@ -41,7 +43,9 @@ export class ProbabilityBars {
     const highest = Math.max(...bars, 1e-300);
     const scale = linearScale([0, highest / 1.06], base, top);
     const step = (width - left) / Math.max(1, bars.length);
-    const every = Math.max(1, Math.ceil(18 / step));
+    // Longer numbers need more room.
+    const digits = String(this.first() + this.step() * bars.length).length;
+    const every = Math.max(1, Math.ceil((digits > 2 ? 8 * digits + 6 : 18) / step));
     return {
       base,
       baseLine: `M${left} ${base + 0.5}H${width}`,
@@ -49,7 +53,7 @@ export class ProbabilityBars {
         .filter((tick) => tick.at < base - 1 && tick.at >= top - 5)
         .map((tick) => ({ ...tick, text: tick.text.replace(/^0\./, '.'), line: `M${left} ${tick.at}H${width}` })),
       bars: bars.map((p, at) => {
-        const n = at + this.first();
+        const n = at * this.step() + this.first();
         const y = Math.min(scale.place(p), p > 0 ? base - 0.6 : base);
         return {
           n,
@@ -67,7 +71,7 @@ export class ProbabilityBars {
 
   protected readonly sentence = computed(() => {
     const bars = this.shown();
-    const words = bars.slice(0, 12).map((p, at) => `${at + this.first()}: ${printNumber(p, 3)}`);
+    const words = bars.slice(0, 12).map((p, at) => `${at * this.step() + this.first()}: ${printNumber(p, 3)}`);
     return `${this.label()}. ${words.join('; ')}${bars.length > 12 ? '; and further' : ''}`;
   });
 }

@@ -26,7 +26,7 @@ export interface WignerGrid {
   readonly most: number;
 }
 
-const left = 26;
+const left = 38;
 const foot = 34;
 const barHeight = 8;
 
@@ -59,7 +59,7 @@ const barHeight = 8;
             <text text-anchor="end" [attr.x]="d.left - 6" [attr.y]="tick.at + 4">{{ tick.text }}</text>
           }
           <text class="name" text-anchor="middle" [attr.x]="d.left + size() / 2" [attr.y]="size() + 31">x</text>
-          <text class="name" text-anchor="middle" x="6" [attr.y]="size() / 2 + 4">p</text>
+          <text class="name" text-anchor="middle" x="5" [attr.y]="size() / 2 + 4">p</text>
         }
       </svg>
     </div>
