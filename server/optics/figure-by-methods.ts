@@ -22,6 +22,11 @@ const differences: ReadonlySet<FigureKind> = new Set([
   'covariance',
   'entropy',
   'logNegativity',
+  'atomInversion',
+  'parity',
+  'characteristic',
+  'wigner',
+  'overlap',
 ]);
 
 interface Tolerance {
@@ -67,6 +72,12 @@ function attempt(
   }
 }
 
+function toleranceOf(kind: FigureKind): Tolerance {
+  // An integral over what lies between zero lines, found numerically.
+  if (kind === 'wignerNegativity') return { relative: 1e-6, absolute: 1e-8 };
+  return { relative: RELATIVE, absolute: differences.has(kind) ? ABSOLUTE_OF_DIFFERENCES : ABSOLUTE };
+}
+
 function scaleOf(value: FigureValue): number {
   if (typeof value === 'number') return Math.abs(value);
   if ('re' in value) return abs(value);
@@ -96,10 +107,7 @@ export interface MethodChoice {
  */
 export function figureByMethods(figure: Figure, choice: MethodChoice = {}): readonly MethodOutcome[] {
   const wanted = choice.methods ?? ['phase space', 'number basis', 'moments'];
-  const tolerance = {
-    relative: figure.kind === 'wignerNegativity' ? 1e-6 : RELATIVE,
-    absolute: differences.has(figure.kind) ? ABSOLUTE_OF_DIFFERENCES : ABSOLUTE,
-  };
+  const tolerance = toleranceOf(figure.kind);
   const outcomes: MethodOutcome[] = [];
   const vanished: StateVanishes[] = [];
   if (wanted.includes('phase space'))

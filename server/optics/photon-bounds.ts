@@ -206,7 +206,7 @@ export function levelsFor(
 }
 
 /** The largest photon number that a state can have at all, where it has one. */
-function largestNumber(state: State): number | undefined {
+export function largestNumber(state: State): number | undefined {
   switch (state.kind) {
     case 'fock':
       return state.n;

@@ -274,3 +274,29 @@ export function channelOf(state: Lose | Damp | Amplify | Invert): Channel {
       };
   }
 }
+
+/** The kinds of state that are a channel on another state. */
+export type ChannelState = Lose | Damp | Amplify | Invert;
+
+export const isChannel = (state: State): state is ChannelState =>
+  state.kind === 'lose' || state.kind === 'damp' || state.kind === 'amplify' || state.kind === 'invert';
+
+/**
+ * Channels of one mode that follow each other, as one: gains multiply, and later gains amplify earlier noise.
+ *
+ * @returns the channel, and the state that it acts on
+ */
+export function channelChain(state: ChannelState): { readonly channel: Channel; readonly inner: State } {
+  let { gain, noise, rotation } = channelOf(state);
+  const { mode } = channelOf(state);
+  let inner = state.state;
+  while (isChannel(inner)) {
+    const before = channelOf(inner);
+    if (before.mode !== mode) break;
+    noise += gain * before.noise;
+    gain *= before.gain;
+    rotation += before.rotation;
+    inner = inner.state;
+  }
+  return { channel: { gain, noise, rotation, mode }, inner };
+}

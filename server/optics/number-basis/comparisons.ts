@@ -43,12 +43,22 @@ export function entropyOf(given: NumberState): Truncated {
   const { levels, outside, noise } = state;
   if (state.kind === 'ket') return result(0, 0, 0, levels, outside);
   const weights = state.kind === 'diagonal' ? Array.from(state.p) : eigenvaluesOf(state);
+  // The largest weight, where it is nearly 1, has its logarithm from what the others leave.
+  const first = weights.indexOf(Math.max(...weights));
+  let rest = 0;
   let value = 0;
   let rounding = 0;
-  for (const weight of weights) {
-    if (weight <= 0) continue;
+  weights.forEach((weight, index) => {
+    if (index === first || !(weight > 0)) return;
+    rest += weight;
     value -= weight * Math.log(weight);
     rounding += EPS * weight * (8 + Math.abs(Math.log(weight)));
+  });
+  const largest = weights[first] ?? 0;
+  if (largest > 0) {
+    const part = rest < 0.5 ? -(1 - rest) * Math.log1p(-rest) : -largest * Math.log(largest);
+    value += part;
+    rounding += EPS * 8 * part;
   }
   const lost = outside > 0 ? outside * (1 - Math.log(outside) + Math.log(levels)) : 0;
   const noisy = noise > 0 ? noise * Math.sqrt(levels) * (1 - Math.log(noise)) : 0;

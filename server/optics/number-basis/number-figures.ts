@@ -12,15 +12,17 @@ import {
 } from '../moments/moment-figures';
 import { poisson } from '../special/distributions';
 import { fallingFactorial } from '../special/factorials';
+import { largestNumber } from '../photon-bounds';
 import type { State } from '../state';
-import { negativityOf } from '../wigner-negativity';
+import { negativityOf, withoutGaussianUnitaries } from '../wigner-negativity';
 import { jointDiagonal } from './joint-diagonal';
 import { eachAmplitude } from './joint-ket';
 import { clickWeight, ensembleOf, pushedIn } from './joint-states';
 import { entropyOf, fidelityOf, jointFidelity, jointPurity, logNegativityOf, overlapOf, purityOf } from './comparisons';
 import { loseDiagonal } from './number-maps';
 import { numberDiagonal, numberState, defaultResolution, type Resolution } from './number-states';
-import { elementOf, type NumberDiagonal, type NumberState } from './one-mode';
+import { elementOf, simplest, type NumberDiagonal, type NumberState } from './one-mode';
+import { wignerOnGrid } from './wigner-grid';
 import { densityAt, displacementTrace, husimiAt, wignerAt } from './wave-functions';
 
 /** A figure in a number basis, with the basis it took. */
@@ -33,6 +35,8 @@ const EPS = 2 ** -52;
 /** A value's truncation error may be this part of it; otherwise the basis is made larger. */
 const WANTED = 1e-13;
 const MOST_ATTEMPTS = 4;
+/** Levels of a state whose Wigner function is integrated in a number basis although phase space can do it. */
+const WIDEST_NEGATIVITY = 16;
 /** The trace norm of a transposed state feels the root of the weight outside. */
 const NEGATIVITY_LOG_WEIGHT = Math.log(1e-26);
 
@@ -44,7 +48,7 @@ const NEGATIVITY_LOG_WEIGHT = Math.log(1e-26);
  */
 export function numberFigure(figure: Figure): NumberFigure {
   let resolution: Resolution = {
-    logWeight: figure.kind === 'logNegativity' ? NEGATIVITY_LOG_WEIGHT : defaultResolution.logWeight,
+    logWeight: firstLogWeight(figure.kind),
     least: leastLevels(figure),
   };
   if (asksForEntries(figure)) {
@@ -69,6 +73,21 @@ export function numberFigure(figure: Figure): NumberFigure {
   }
   const { value, error, dimension, outsideWeight, truncation } = found;
   return { value, error: error + truncation, dimension, outsideWeight };
+}
+
+/** The weight that may be left outside at the first attempt: finer where a figure feels the root of it. */
+function firstLogWeight(kind: Figure['kind']): number {
+  switch (kind) {
+    case 'logNegativity':
+      return NEGATIVITY_LOG_WEIGHT;
+    case 'quadratureDensity':
+    case 'wigner':
+    case 'husimi':
+    case 'characteristic':
+      return 2 * defaultResolution.logWeight;
+    default:
+      return defaultResolution.logWeight;
+  }
 }
 
 interface Truncated extends NumberFigure {
@@ -110,6 +129,13 @@ function of(state: NumberState, value: FigureEstimate['value'], error: number, t
   return { value, error, truncation, dimension: state.levels, outsideWeight: state.outside };
 }
 
+/** Whether phases are averaged somewhere in a state of one mode, so that it is no finite sum of Gaussians. */
+function containsAverage(state: State): boolean {
+  if (state.kind === 'phaseAveraged' || state.kind === 'dephased') return true;
+  if (state.kind === 'mixture') return state.states.some(containsAverage);
+  return 'state' in state && containsAverage(state.state);
+}
+
 /** Figures of single entries of a basis, which need no more levels than themselves where entries stand alone. */
 function asksForEntries(figure: Figure): boolean {
   switch (figure.kind) {
@@ -138,6 +164,12 @@ function entriesStandAlone(state: State): boolean {
       return state.modes === 1 && entriesStandAlone(state.state);
     case 'mixture':
       return state.modes === 1 && state.states.every(entriesStandAlone);
+    case 'lose':
+    case 'damp':
+    case 'amplify':
+    case 'invert':
+      // Of a state that ends, each entry is a finite sum.
+      return state.modes === 1 && largestNumber(state.state) !== undefined && entriesStandAlone(state.state);
     default:
       return false;
   }
@@ -206,19 +238,12 @@ function evaluate(figure: Figure, resolution: Resolution): Truncated {
     case 'wignerNegativity': {
       if (gaussianOf(state) !== undefined)
         throw new MethodDoesNotApply('a Gaussian Wigner function is left to phase space');
-      const basis = numberState(state, resolution);
-      if (basis.kind !== 'diagonal') {
-        throw new MethodDoesNotApply(
-          'only the Wigner functions of states without coherences are integrated in a number basis',
-        );
+      const plain = withoutGaussianUnitaries(state);
+      const basis = simplest(numberState(plain, resolution));
+      if (basis.kind !== 'diagonal' && basis.levels > WIDEST_NEGATIVITY && !containsAverage(plain)) {
+        throw new MethodDoesNotApply('the Wigner function is left to phase space, to save time');
       }
-      const found = negativityOf(state, (xs, ps) => {
-        const values = new Float64Array(xs.length * ps.length);
-        for (let i = 0; i < ps.length; i++) {
-          for (let j = 0; j < xs.length; j++) values[i * xs.length + j] = wignerAt(basis, xs[j]!, ps[i]!).value;
-        }
-        return values;
-      });
+      const found = negativityOf(plain, (xs, ps) => wignerOnGrid(basis, xs, ps));
       return of(basis, found.value, found.error, 0);
     }
     case 'matrixElement': {

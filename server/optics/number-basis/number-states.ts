@@ -1,8 +1,8 @@
-import { abs2, phase, type Complex } from '../complex';
+import { abs2, conjugate, multiply, phase, times, type Complex } from '../complex';
 import { MethodDoesNotApply, StateVanishes } from '../method-does-not-apply';
 import { DEFAULT_LOG_WEIGHT, levelsFor } from '../photon-bounds';
 import { geometric, poisson } from '../special/distributions';
-import { channelOf, type Channel, type State } from '../state';
+import { channelChain, type Channel, type State } from '../state';
 import { applyUnitary, displacement, squeezer, type NumberUnitary } from './displaced-numbers';
 import { amplifyDensity, amplifyDiagonal, logAdded, loseDensity, loseDiagonal } from './number-maps';
 import {
@@ -65,6 +65,8 @@ export function resolve(
   state: State,
   { logWeight, least }: Resolution,
 ): { readonly levels: number; readonly outside: number } {
+  // Entries that stand alone need no more levels than are asked for.
+  if (logWeight === 0) return { levels: least, outside: 0 };
   const { levels, outsideWeight } = levelsFor(state, logWeight);
   return { levels: Math.max(levels, least), outside: outsideWeight };
 }
@@ -88,6 +90,8 @@ function build(state: State, resolution: Resolution): NumberState {
     case 'cat':
       return catKet(state.alpha, state.theta, resolve(state, resolution));
     case 'displaced': {
+      if (state.state.kind === 'squeezed')
+        return displacedSqueezedKet(state.alpha, state.state, resolve(state, resolution));
       const inner = numberState(state.state, beforeMixing(resolution));
       if (abs2(state.alpha) === 0) return inner;
       const { levels, outside } = resolve(state, resolution);
@@ -119,8 +123,8 @@ function build(state: State, resolution: Resolution): NumberState {
     case 'damp':
     case 'amplify':
     case 'invert': {
-      const inner = simplest(numberState(state.state, resolution));
-      const channel = channelOf(state);
+      const { channel, inner: source } = channelChain(state);
+      const inner = simplest(numberState(source, resolution));
       const turned = channel.rotation === 0 ? inner : shift(inner, phase(channel.rotation));
       return applyChannel(turned, channel, () => resolve(state, resolution));
     }
@@ -227,6 +231,53 @@ function squeezedKet(
     size *= tau * Math.sqrt((2 * k + 1) / (2 * k + 2));
   }
   return { kind: 'ket', levels, re, im, noise: 0, outside };
+}
+
+/**
+ * D(α)S(ζ)|0⟩ from a(μ) + ν a† = β on it, without a matrix.
+ *
+ * Formula: μ√(n+1) ψ_{n+1} = β ψ_n − ν√n ψ_{n−1} with μ = cosh r, ν = e^{iφ} sinh r, β = μα + να*; the phase of ψ_0 is
+ * that of exp(−e^{iφ} tanh r α*²/2).
+ */
+function displacedSqueezedKet(
+  alpha: Complex,
+  { r, direction }: Extract<State, { readonly kind: 'squeezed' }>,
+  { levels, outside }: { levels: number; outside: number },
+): NumberKet {
+  const mu = Math.cosh(r);
+  const nu = times(direction, Math.sinh(r));
+  const turned = multiply(nu, conjugate(alpha));
+  const beta = { re: mu * alpha.re + turned.re, im: mu * alpha.im + turned.im };
+  const start = multiply(times(direction, -Math.tanh(r) / 2), multiply(conjugate(alpha), conjugate(alpha)));
+  const re = new Float64Array(levels);
+  const im = new Float64Array(levels);
+  let [beforeRe, beforeIm] = [0, 0];
+  let { re: hereRe, im: hereIm } = phase(start.im);
+  for (let n = 0; n < levels; n++) {
+    re[n] = hereRe;
+    im[n] = hereIm;
+    const [root, below] = [1 / (mu * Math.sqrt(n + 1)), Math.sqrt(n)];
+    const nextRe = (beta.re * hereRe - beta.im * hereIm - below * (nu.re * beforeRe - nu.im * beforeIm)) * root;
+    const nextIm = (beta.re * hereIm + beta.im * hereRe - below * (nu.re * beforeIm + nu.im * beforeRe)) * root;
+    [beforeRe, beforeIm, hereRe, hereIm] = [hereRe, hereIm, nextRe, nextIm];
+    if (Math.abs(hereRe) + Math.abs(hereIm) < 1e140) continue;
+    for (let k = 0; k <= n; k++) {
+      re[k]! *= 1e-140;
+      im[k]! *= 1e-140;
+    }
+    beforeRe *= 1e-140;
+    beforeIm *= 1e-140;
+    hereRe *= 1e-140;
+    hereIm *= 1e-140;
+  }
+  let weight = 0;
+  for (let n = 0; n < levels; n++) weight += re[n]! ** 2 + im[n]! ** 2;
+  const scale = 1 / Math.sqrt(weight);
+  for (let n = 0; n < levels; n++) {
+    re[n]! *= scale;
+    im[n]! *= scale;
+  }
+  return { kind: 'ket', levels, re, im, noise: 4 * EPS, outside };
 }
 
 function catKet(alpha: Complex, theta: number, size: { levels: number; outside: number }): NumberKet {
@@ -525,10 +576,10 @@ export function numberDiagonal(state: State, resolution: Resolution = defaultRes
     case 'lose':
     case 'damp':
     case 'amplify':
-    case 'invert':
-      return channelOnDiagonal(numberDiagonal(state.state, resolution), channelOf(state), () =>
-        resolve(state, resolution),
-      );
+    case 'invert': {
+      const { channel, inner } = channelChain(state);
+      return channelOnDiagonal(numberDiagonal(inner, resolution), channel, () => resolve(state, resolution));
+    }
     case 'phaseAveraged':
     case 'dephased':
     case 'phaseShift':

@@ -4,10 +4,10 @@ import { hermitianEigenvalues } from './linear-algebra';
 
 /** Rows of a matrix that is kept whole (2 × 23 MB); wider ones are kept entry by entry. */
 const WIDEST_WHOLE = 1_700;
-const MOST_PAIRS = 6e7;
+const MOST_PAIRS = 3e7;
 const MOST_ENTRIES = 2e6;
-/** Largest block whose eigenvalues are found here in time. */
-const LARGEST_BLOCK = 440;
+/** Cubes of the sizes of all blocks together: about a second. */
+const MOST_WORK = 1.2e8;
 
 /** Entries of a Hermitian matrix, of which those at or above the diagonal are kept. */
 interface Entries {
@@ -127,11 +127,11 @@ function blocksOf(entries: Entries, side: number): (() => number)[] {
     place[index] = size;
     sizes.set(root, size + 1);
   }
+  let work = 0;
   const matrices = new Map<number, { size: number; re: Float64Array; im: Float64Array }>();
   for (const [root, size] of sizes) {
-    if (size > LARGEST_BLOCK) {
-      throw new MethodDoesNotApply(`eigenvalues of a matrix of ${size} columns would take too long`);
-    }
+    work += size ** 3;
+    if (work > MOST_WORK) throw new MethodDoesNotApply('the eigenvalues of the transposed state would take too long');
     matrices.set(root, { size, re: new Float64Array(size * size), im: new Float64Array(size * size) });
   }
   entries.each((row, column, a, b) => {

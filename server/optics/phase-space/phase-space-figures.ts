@@ -1,4 +1,4 @@
-import { abs, abs2, phase, type Complex } from '../complex';
+import { abs, abs2, multiply, phase, type Complex } from '../complex';
 import { quadratureScale } from '../convention';
 import type { Figure } from '../figures';
 import {
@@ -17,11 +17,13 @@ import { figureOfMoments, isMomentFigure, type FigureEstimate, type MomentSource
 import { levelsFor } from '../photon-bounds';
 import { poisson } from '../special/distributions';
 import { logFactorial } from '../special/factorials';
-import type { State } from '../state';
+import { geometric } from '../special/distributions';
+import { channelChain, isChannel, type State } from '../state';
 import { withoutPhases } from '../without-phases';
-import { gaussianNegativity, negativityOf } from '../wigner-negativity';
+import { gaussianNegativity, negativityOf, withoutGaussianUnitaries } from '../wigner-negativity';
 import { outerToSources } from './form';
 import { allAtZero, innerProduct, sumOfForms } from './form-products';
+import { averagedOverPhase } from './averages-over-phase';
 import { ketForms } from './ket-forms';
 import { noCounts, operatorForms, project, traceOut } from './operator-forms';
 import {
@@ -34,7 +36,7 @@ import {
   photonDistribution,
 } from './photon-numbers';
 import { characteristic, husimi, pFunction, quadratureDensity, traceOfProduct, wigner } from './quasi-distributions';
-import { wignerOnPoints } from './wigner-pictures';
+import { isQuickAtPoints, wignerOnPoints } from './wigner-pictures';
 
 /** A figure's estimate, and what was cut off where a sum over photon numbers was. */
 export interface PhaseSpaceEstimate extends FigureEstimate {
@@ -63,22 +65,41 @@ export function phaseSpaceFigure(figure: Figure): PhaseSpaceEstimate {
       const { value, error } = wignerEstimate(withoutPhases(state), 0, 0);
       return { value: value * Math.PI, error: error * Math.PI };
     }
-    case 'quadratureDensity':
-      return density(figure.state, figure.x, figure.theta, quadratureScale(figure.convention));
+    case 'quadratureDensity': {
+      const scale = quadratureScale(figure.convention);
+      return realOf(
+        averagedOverPhase(state, (inner, angle) => complexOf(density(inner, figure.x, figure.theta - angle, scale))),
+      );
+    }
     case 'wigner': {
       const scale = quadratureScale(figure.convention);
-      const { value, error } = wignerEstimate(state, figure.x / scale, figure.p / scale);
-      return { value: value / scale ** 2, error: error / scale ** 2 };
+      const { re: w, error } = averagedOverPhase(state, (inner, angle) => {
+        const turned = multiply({ re: figure.x / scale, im: figure.p / scale }, phase(-angle));
+        return complexOf(wignerEstimate(inner, turned.re, turned.im));
+      });
+      return { value: w / scale ** 2, error: error / scale ** 2 };
     }
     case 'husimi':
-      return husimi(state, figure.alpha);
+      return realOf(
+        averagedOverPhase(state, (inner, angle) => complexOf(husimi(inner, multiply(figure.alpha, phase(-angle))))),
+      );
     case 'pFunction':
-      return pFunction(state, figure.alpha);
-    case 'characteristic':
-      return characteristic(state, figure.xi, figure.s);
+      return realOf(
+        averagedOverPhase(state, (inner, angle) => complexOf(pFunction(inner, multiply(figure.alpha, phase(-angle))))),
+      );
+    case 'characteristic': {
+      const { re, im, error } = averagedOverPhase(state, (inner, angle) => {
+        const found = characteristic(inner, multiply(figure.xi, phase(-angle)), figure.s);
+        return { ...found.value, error: found.error };
+      });
+      return { value: { re, im }, error };
+    }
     case 'wignerNegativity':
       if (gaussianOf(state) !== undefined) return gaussianNegativity;
-      return negativityOf(state, (xs, ps) => wignerOnPoints(state, xs, ps));
+      {
+        const plain = withoutGaussianUnitaries(state);
+        return negativityOf(plain, (xs, ps) => wignerOnPoints(plain, xs, ps), isQuickAtPoints(plain));
+      }
     case 'purity':
       return purity(state);
     case 'entropy': {
@@ -118,6 +139,9 @@ export function phaseSpaceFigure(figure: Figure): PhaseSpaceEstimate {
   }
 }
 
+const complexOf = ({ value, error }: { value: number; error: number }) => ({ re: value, im: 0, error });
+const realOf = ({ re, error }: { re: number; error: number }) => ({ value: re, error });
+
 function gaussian(state: State): GaussianState {
   const found = gaussianOf(state);
   if (found === undefined) throw new MethodDoesNotApply('the state is not Gaussian');
@@ -129,8 +153,23 @@ function probability(state: State, n: number): FigureEstimate {
     const { p, error } = photonDistribution(state, n);
     return { value: p[n]!, error: error[n]! };
   }
+  const nbar = thermalMean(state);
+  if (nbar !== undefined) {
+    const value = geometric(n, nbar);
+    return { value, error: value * 2 ** -52 * (8 + n / (1 + nbar)) };
+  }
   const { value, error } = expectation(state, (form) => project(form, 1, n));
   return { value: value.re, error };
+}
+
+/** n̄ of thermal light behind losses and amplifiers, which is thermal light again. */
+function thermalMean(state: State): number | undefined {
+  if (state.kind === 'thermal') return state.nbar;
+  if (state.kind === 'fock') return state.n === 0 ? 0 : undefined;
+  if (!isChannel(state) || state.modes === 2) return undefined;
+  const { channel, inner } = channelChain(state);
+  const before = thermalMean(inner);
+  return before === undefined ? undefined : channel.gain * before + channel.noise;
 }
 
 /** Losses thin the light, dark counts join it. */
@@ -153,7 +192,12 @@ function wignerEstimate(state: State, x: number, p: number): { readonly value: n
   return found === undefined ? wigner(state, x, p) : gaussianWigner(found, x, p);
 }
 
-function density(state: State, x: number, theta: number, scale: number): FigureEstimate {
+function density(
+  state: State,
+  x: number,
+  theta: number,
+  scale: number,
+): { readonly value: number; readonly error: number } {
   const found = gaussianOf(state);
   if (found !== undefined) {
     const { mean, variance } = quadratureOf(found, phase(theta));

@@ -5,8 +5,8 @@ import { quadratic, linear, type Form } from './form';
 import { operatorNorm } from './photon-numbers';
 import { wignerForms } from './quasi-distributions';
 
-/** Polynomials of higher degree are left to the number basis. */
-const HIGHEST_DEGREE = 60;
+/** Polynomials of higher degree lose digits between their terms; they are left to the number basis. */
+const HIGHEST_DEGREE = 24;
 
 /**
  * One Gaussian of a Wigner function without sources, in x and p: exp(c + ½ quadratic + linear), real part taken.
@@ -67,6 +67,10 @@ function polynomialAt({ form }: Plane, x: number, p: number): { readonly re: num
   const last = table.re.length - 1;
   return { re: table.re[last]!, im: table.im[last]! };
 }
+
+/** Whether single points of a Wigner function are quick to compute: Gaussians with polynomials of low degree at most. */
+export const isQuickAtPoints = (state: State): boolean =>
+  wignerForms(state).every((form) => form.sources.reduce((size, target) => size * (target + 1), 1) <= 9);
 
 /**
  * The Wigner function on a grid, ħ = 1, vacuum variance 1/2.
