@@ -155,7 +155,7 @@ test('a problem is written, set, answered, marked by two at once, released and r
       await expect(page.getByRole('heading', { level: 1 })).toBeVisible();
       await expectAccessible(page);
       await page.getByRole('link', { name: /\(b\)/ }).first().click();
-      await expect(page.getByRole('status').filter({ hasText: '0 of 4 marked' })).toBeVisible();
+      await expectMarked(page, 0);
       await expect(page.getByRole('article', { name: /in hand, held by you/ })).toBeVisible();
     }
     const codeOf = (page: Page) =>
@@ -164,10 +164,7 @@ test('a problem is written, set, answered, marked by two at once, released and r
     await expectAccessible(idris);
 
     // Each sees the other's mark within a second, without reloading; four saves by two make four marks.
-    const marked = (page: Page, count: number) =>
-      expect(page.getByRole('status').filter({ hasText: `${String(count)} of 4 marked` })).toBeVisible({
-        timeout: 1_000,
-      });
+    const marked = (page: Page, count: number) => expectMarked(page, count, 1_000);
     await idris.getByRole('textbox', { name: 'Remark' }).fill('The mean is right; its Poisson weight is missing.');
     await idris.keyboard.press('Control+Enter');
     await marked(tamsin, 1);
@@ -259,13 +256,19 @@ async function markWhatIsLeft(page: Page, piles: string): Promise<void> {
   await page.goto(piles);
   await page.getByRole('link', { name: /\(a\)/ }).first().click();
   for (let marked = 0; marked < 4; marked += 1) {
-    await expect(page.getByText(`${String(marked)} of 4 marked`)).toBeVisible();
+    await expectMarked(page, marked);
     await page.keyboard.press('Control+Enter');
   }
-  await expect(page.getByText('4 of 4 marked')).toBeVisible();
+  await expectMarked(page, 4);
 }
 
 /** What a `datetime-local` field takes, so much later than now. */
 function wallClock(later: number): string {
   return new Date(Date.now() + later).toISOString().slice(0, 16);
+}
+
+/** Expects that a bench says how many of its four answers are marked. */
+async function expectMarked(page: Page, count: number, timeout?: number): Promise<void> {
+  const said = page.getByRole('status').filter({ hasText: `${String(count)} of 4 marked` });
+  await expect(said).toBeVisible(timeout === undefined ? {} : { timeout });
 }

@@ -15,7 +15,7 @@ import { BrandMark } from '../../ui/brand-mark/brand-mark';
   selector: 'app-forgotten-password',
   imports: [BrandMark, MatButtonModule, MatFormFieldModule, MatInputModule, ReactiveFormsModule, RouterLink],
   template: `
-    <div class="brand"><app-brand-mark />Halfsilver</div>
+    <header class="brand"><app-brand-mark />Halfsilver</header>
     <main>
       @if (askedFor(); as address) {
         <div class="said" role="status">
