@@ -4,6 +4,7 @@ import { pinoHttp } from 'pino-http';
 import { addAccountRoutes } from './accounts/accounts-routes';
 import { createSessions, type Sessions } from './accounts/sessions';
 import type { Context } from './context';
+import { addCorrectionRoutes } from './corrections/correction-routes';
 import { addCourseRoutes } from './courses/courses-routes';
 import { addDeskRoutes } from './desk/desk-routes';
 import { addAuditRoutes } from './problems/audit-routes';
@@ -97,6 +98,7 @@ export function createApp(context: Context, clientFolder?: string): Application 
   addSetsRoutes(serve, context);
   addScriptsRoutes(serve, context);
   addMarkingRoutes(serve, context);
+  addCorrectionRoutes(serve, context);
   addResultsRoutes(serve, context);
   app.use('/api', router);
   app.use('/api', () => {

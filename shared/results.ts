@@ -94,6 +94,8 @@ export const feedbackPart = z.object({
   slip: z.object({ name: z.string().nullable(), feedback: z.string() }).nullable(),
   criteria: z.array(feedbackCriterion),
   remark: z.string(),
+  /** What was corrected in how the part is checked after it was handed in, and what that did to its marks. */
+  corrections: z.array(z.object({ at: instant, sentence: z.string() })),
   total: z.number(),
   outOf: z.number(),
   pages: z.array(workedPage),

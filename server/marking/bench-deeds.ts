@@ -227,7 +227,7 @@ function settle(
 ): void {
   const changed = tx
     .update(answers)
-    .set({ setAsideReason: null, setAsideById: null, ...next, version: write.version + 1 })
+    .set({ setAsideReason: null, setAsideById: null, anotherLook: null, ...next, version: write.version + 1 })
     .where(and(eq(answers.id, write.answerId), eq(answers.version, write.version)))
     .run();
   if (changed.changes !== 1) throw new Error('An answer changed inside the transaction that had read its version.');

@@ -138,3 +138,8 @@ function isSame(one: ProblemContent | undefined, other: ProblemContent): boolean
   // By way of JSON, where a property that is absent and one that is undefined are alike.
   return one !== undefined && isDeepStrictEqual(JSON.parse(JSON.stringify(one)), other);
 }
+
+/** The number of a revision. */
+export function revisionNumber(tx: Queryable, revisionId: string): number {
+  return tx.select({ number: revisions.number }).from(revisions).where(eq(revisions.id, revisionId)).get()?.number ?? 0;
+}

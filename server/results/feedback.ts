@@ -6,6 +6,7 @@ import type { CheckResult } from '@shared/checks';
 import { partMarks } from '@shared/problems';
 import type { Feedback, FeedbackPart, FeedbackSummary } from '@shared/results';
 import { splitStatement } from '@shared/statement';
+import { correctionsFor } from '../corrections/corrections-in-feedback';
 import { notFound } from '../http/errors';
 import { bandOf, handedInFor, printGivens, variantOf, workedPages } from '../marking/bench-answer';
 import { pilesOfSet, type FoundPile } from '../marking/find-pile';
@@ -121,6 +122,7 @@ function presentPart(tx: Queryable, scriptId: string, found: FoundPile, showKeys
       awarded: awarded.has(id),
     })),
     remark: standing?.mark?.remark ?? '',
+    corrections: standing ? correctionsFor(tx, found, standing.answerId, handedIn.at) : [],
     total: standing?.mark?.total ?? 0,
     outOf: partMarks(found.part),
     pages: standing ? workedPages(tx, standing.answerId, handedIn.pageIds) : [],

@@ -1,4 +1,4 @@
-import { eq } from 'drizzle-orm';
+import { asc, eq, sql } from 'drizzle-orm';
 import type { Queryable } from '@drizzle/client';
 import { answers, checks, scripts, sets, submissions } from '@drizzle/schema';
 import type { CheckResult } from '@shared/checks';
@@ -29,16 +29,28 @@ export async function checkSubmission(context: Context, submissionId: string): P
   if (!found || lastSubmission(db, found.script.id)?.id !== submissionId) return;
   const { submission, script } = found;
   // Keys take time; they are evaluated before the transaction.
+  const under = correctionsIn(db, script.setId);
   const results = await resultsOf(context, script, submission);
-  db.transaction(
+  const isCorrected = db.transaction(
     (tx) => {
-      if (lastSubmission(tx, script.id)?.id !== submissionId) return;
+      if (lastSubmission(tx, script.id)?.id !== submissionId) return false;
+      // A correction was made meanwhile: what was judged under the key before it must not be kept.
+      if (correctionsIn(tx, script.setId) !== under) return true;
       const set = tx.select().from(sets).where(eq(sets.id, script.setId)).get();
       storeChecks(tx, script, submission, results, clock.now());
       if (set && marksAreGiven(set.stage)) enterPiles(tx, script, submission, clock.now());
+      return false;
     },
     { behavior: 'immediate' },
   );
+  if (isCorrected) await checkSubmission(context, submissionId);
+}
+
+/** The corrections that hold in a set, as one text. */
+function correctionsIn(tx: Queryable, setId: string): string {
+  return problemsOfSet(tx, setId)
+    .map(({ setProblem }) => setProblem.correctionId ?? '')
+    .join();
 }
 
 type Results = ReadonlyMap<string, CheckResult | null>;
@@ -68,7 +80,13 @@ async function resultsOf(context: Context, script: ScriptRow, submission: Submis
 
 /** The checks that were made of a submission, by problem and part. */
 function checksOf(tx: Queryable, script: ScriptRow, submissionId: string) {
-  const rows = tx.select().from(checks).where(eq(checks.submissionId, submissionId)).all();
+  // Of several checks of one answer, which corrections make, the last counts.
+  const rows = tx
+    .select()
+    .from(checks)
+    .where(eq(checks.submissionId, submissionId))
+    .orderBy(asc(checks.at), sql`rowid`)
+    .all();
   const byAnswer = new Map(rows.map((row) => [row.answerId, row]));
   return new Map(
     savedParts(tx, script).flatMap((part) => {

@@ -32,10 +32,7 @@ export function enterPile(tx: Queryable, entering: EnteringAnswer): 'waits' | 'm
     tx.update(answers).set({ state: 'waits', version }).where(eq(answers.id, answerId)).run();
     return 'waits';
   }
-  const criteria: MarkedCriterion[] = part.criteria.map(({ id }) => ({
-    criterionId: id,
-    awarded: check.result.proposed.includes(id),
-  }));
+  const criteria = proposedCriteria(part, check.result);
   const before = tx.select().from(marks).where(eq(marks.answerId, answerId)).orderBy(desc(marks.at)).limit(1).get();
   const mark = {
     id: newId(),
@@ -53,8 +50,19 @@ export function enterPile(tx: Queryable, entering: EnteringAnswer): 'waits' | 'm
   return 'marked';
 }
 
-/** An empty field beside a worked page is no empty answer: somebody has to look at the page. */
-function standsAlone({ part, hasPages }: EnteringAnswer, { verdict }: CheckResult): boolean {
+/** The mark scheme as a check proposes it; nothing is awarded where there is none. */
+export function proposedCriteria(
+  part: Pick<Part, 'criteria'>,
+  check: Pick<CheckResult, 'proposed'> | null,
+): MarkedCriterion[] {
+  return part.criteria.map(({ id }) => ({ criterionId: id, awarded: check?.proposed.includes(id) === true }));
+}
+
+/** Whether a check stands without a person. An empty field beside a worked page is no empty answer: somebody looks at it. */
+export function standsAlone(
+  { part, hasPages }: Pick<EnteringAnswer, 'part' | 'hasPages'>,
+  { verdict }: CheckResult,
+): boolean {
   if (verdict === 'right') return part.standsAlone.includes('right');
   return verdict === 'unanswered' && !hasPages && part.standsAlone.includes('unanswered');
 }

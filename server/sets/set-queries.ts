@@ -1,8 +1,9 @@
-import { and, asc, count, desc, eq, inArray, isNotNull, isNull, ne, sql } from 'drizzle-orm';
+import { and, asc, count, desc, eq, getTableColumns, inArray, isNotNull, isNull, ne, sql } from 'drizzle-orm';
 import type { Queryable } from '@drizzle/client';
 import {
   answers,
   answerVersions,
+  corrections,
   courses,
   memberships,
   pages,
@@ -17,6 +18,7 @@ import {
 } from '@drizzle/schema';
 import { problemMarks } from '@shared/problems';
 import { stageMoves, type SetCounts, type SetDetail, type SetProblem, type SetSummary } from '@shared/sets';
+import { correctedContent, holdsInSet } from '../corrections/corrected-content';
 import { notFound } from '../http/errors';
 
 export type SetRow = typeof sets.$inferSelect;
@@ -34,12 +36,18 @@ export function demandSet(tx: Queryable, setId: string): { readonly set: SetRow;
   return row;
 }
 
-/** The problems of a set in their order, with the content of their revisions. */
+/** The problems of a set in their order, with the content of their revisions, corrected where a correction holds. */
 export function problemsOfSet(tx: Queryable, setId: string) {
   return tx
-    .select({ setProblem: setProblems, revision: revisions, status: problems.status, authorId: problems.authorId })
+    .select({
+      setProblem: setProblems,
+      revision: { ...getTableColumns(revisions), content: correctedContent },
+      status: problems.status,
+      authorId: problems.authorId,
+    })
     .from(setProblems)
     .innerJoin(revisions, eq(revisions.id, setProblems.revisionId))
+    .leftJoin(corrections, holdsInSet)
     .innerJoin(problems, eq(problems.id, setProblems.problemId))
     .where(eq(setProblems.setId, setId))
     .orderBy(asc(setProblems.position))

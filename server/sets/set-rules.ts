@@ -11,6 +11,7 @@ import {
   setFields,
   type UsableProblem,
 } from '@shared/sets';
+import { standingCorrection } from '../corrections/corrected-content';
 import { conflict, invalidField, stale } from '../http/errors';
 import { newId } from '../http/new-id';
 import { enter } from '../record/enter';
@@ -159,7 +160,8 @@ function putProblems(tx: Queryable, setId: string, chosen: readonly ChosenProble
   }
   for (const [index, { problemId, revisionId }] of chosen.entries()) {
     const row = before.find(({ setProblem }) => setProblem.problemId === problemId)?.setProblem;
-    const place = { position: index + 1, revisionId };
+    const correctionId = standingCorrection(tx, revisionId)?.id ?? null;
+    const place = { position: index + 1, revisionId, correctionId };
     if (row) tx.update(setProblems).set(place).where(eq(setProblems.id, row.id)).run();
     else
       tx.insert(setProblems)
