@@ -62,7 +62,13 @@ export const pileAnswer = z.object({
 export type PileAnswer = z.infer<typeof pileAnswer>;
 
 /** A group of answers that stand in the same relation to their own keys. */
-export const pattern = z.object({ key: z.string(), name: z.string(), total: z.number().int() });
+export const pattern = z.object({
+  key: z.string(),
+  name: z.string(),
+  total: z.number().int(),
+  /** How sure it is that a group of wrong answers has this in common by more than chance; absent where chance has no part. */
+  evidence: z.enum(['weak', 'fair', 'strong', 'beyond doubt']).optional(),
+});
 export type Pattern = z.infer<typeof pattern>;
 
 /** What a pile is of. */

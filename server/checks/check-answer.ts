@@ -11,6 +11,7 @@ import { checkChoice } from './check-choice';
 import { compareWithKey, compareWithSlip } from './compare';
 import { KeyProblem, type ComputedKey } from './key-value';
 import { matched, type Match } from './match';
+import { certain, possibleRelations } from './possible-relations';
 import { relationOf, type OtherKey } from './relation-of';
 import { equalRelation, noRelation, throughRelation, type Relation } from './relation';
 
@@ -112,6 +113,7 @@ export function checkAnswer({ part, keys, text, field = answerField(part) }: Che
   if (!keys) throw new KeyProblem('The part has no computed key.');
   const match = compareWithKey(reading, keys.key, part);
   const { relation, ...ruling } = rule(reading, part, keys, match);
+  const possible = ruling.verdict === 'wrong' ? possibleRelations(reading, part, keys, match) : undefined;
   return {
     ...ruling,
     readAs: reading.readAs,
@@ -119,6 +121,7 @@ export function checkAnswer({ part, keys, text, field = answerField(part) }: Che
     value: match.answer ?? null,
     keyValue: match.key ?? null,
     relation: relation ?? relationOf(reading, part, keys, match),
+    ...(possible ? { possible: relation ? [{ ...relation, chance: certain }] : possible } : {}),
     ...(ruling.verdict === 'wrong' && match.reason !== undefined ? { problem: match.reason } : {}),
     ...(ruling.verdict !== 'right' && match.point ? { point: match.point } : {}),
   };

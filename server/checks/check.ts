@@ -1,6 +1,7 @@
 import type { Complex } from '@shared/reading/complex';
 import type { Reading } from '@shared/reading/reading';
 import type { DifferingPoint } from './match';
+import type { PossibleRelation } from './possible-relations';
 import type { Relation } from './relation';
 
 /** How an answer stands to its key. */
@@ -17,6 +18,8 @@ export interface Check {
   /** Index of the slip that it equals. */
   readonly slip?: number;
   readonly relation: Relation;
+  /** Of a wrong answer: all relations that it may stand in, for telling patterns of many answers. */
+  readonly possible?: readonly PossibleRelation[];
   /** The answer's value as compared, in the part's unit; null where there is none. */
   readonly value: Complex | readonly Complex[] | null;
   /** The key's value as compared. */

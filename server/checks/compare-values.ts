@@ -10,6 +10,8 @@ type PartOf<Form extends AnswerSpecification['form']> = Extract<AnswerSpecificat
 const unitReason = (unit: { readonly text: string }): string =>
   `Pure numbers are asked for, and the answer has the unit ${unit.text}.`;
 
+const counted = (entries: number): string => (entries === 1 ? 'one entry' : `${entries} entries`);
+
 function withoutUnit(key: ComputedKey): void {
   if (key.unit) throw new KeyProblem(`The key has the unit ${key.unit}, and the part asks for pure numbers.`);
 }
@@ -34,7 +36,7 @@ export function compareList(reading: ReadingOf<'list'>, key: ComputedKey, part: 
   if (reading.entries.length !== entries.length) {
     return matched(false, {
       ...compared,
-      reason: `The list has ${reading.entries.length} entries where the key has ${entries.length}.`,
+      reason: `The list has ${counted(reading.entries.length)} where the key has ${entries.length}.`,
     });
   }
   return matched(
@@ -59,7 +61,7 @@ export function compareDistribution(reading: ReadingOf<'list'>, key: ComputedKey
   if (reading.entries.length !== entries.length) {
     return matched(false, {
       ...compared,
-      reason: `The distribution has ${reading.entries.length} entries where the key has ${entries.length}.`,
+      reason: `The distribution has ${counted(reading.entries.length)} where the key has ${entries.length}.`,
     });
   }
   const distance =

@@ -1,8 +1,7 @@
 import type { Check } from './check';
 import { checkAnswer, type CheckInput } from './check-answer';
-import { compareWithKey } from './compare';
-import { chanceOfRelation, groupStrength, strengthInWords, writtenPrecision } from './evidence';
-import { relationsOf } from './relation-of';
+import { groupStrength, strengthInWords } from './evidence';
+import type { PossibleRelation } from './possible-relations';
 import { noRelation, numberCandidates, type Relation } from './relation';
 
 /** An answer of a part, with the key of its own variant. */
@@ -10,6 +9,14 @@ export interface PatternAnswer {
   readonly id: string;
   readonly input: CheckInput;
 }
+
+/** What of an answer's check patterns are told by. */
+export type PatternCheck = Pick<Check, 'verdict'> & {
+  readonly slip?: number | undefined;
+  readonly relation: { readonly name: string };
+  readonly possible?:
+    readonly (Pick<PossibleRelation, 'name' | 'chance'> & { readonly factor?: number | undefined })[] | undefined;
+};
 
 /** Answers that stand in the same relation to their own keys. */
 export interface Pattern {
@@ -24,15 +31,14 @@ export interface Pattern {
   readonly evidence?: ReturnType<typeof strengthInWords>;
 }
 
-/** A relation that an answer may stand in, with the probability that it does so by chance. */
-interface Possible {
-  readonly relation: Relation;
-  readonly chance: number;
-}
-
 interface Wrong {
   readonly id: string;
   readonly possible: readonly Possible[];
+}
+
+interface Possible {
+  readonly relation: Relation;
+  readonly chance: number;
 }
 
 /** How unlikely a group must be, and how unlikely a relation of a single answer, to be named. */
@@ -47,30 +53,6 @@ const verdictNames: Readonly<Record<string, string>> = {
   unreadable: 'unreadable',
   unanswered: 'unanswered',
 };
-
-/** How far off an answer may lie that was rounded on the way, relative: three figures, twice. */
-const widestInGroups = 5e-3;
-
-/** Relations that are told by what an answer is, not by how near a number lies: no chance is in them. */
-const certain = 1e-9;
-
-function possibleRelations(input: CheckInput, check: Check): readonly Possible[] {
-  const { part, keys } = input;
-  if (part.form === 'choice')
-    return check.relation === noRelation ? [] : [{ relation: check.relation, chance: certain }];
-  if (!keys) return [];
-  const precision = writtenPrecision(check.reading);
-  const numeric = check.reading.kind === 'number' || check.reading.kind === 'complex';
-  const match = compareWithKey(check.reading, keys.key, part);
-  return relationsOf(check.reading, part, keys, match)
-    .filter(
-      ({ relation, deviation }) => relation !== noRelation && deviation <= Math.max(widestInGroups, 3 * precision),
-    )
-    .map(({ relation, deviation }) => ({
-      relation,
-      chance: numeric && match.answer !== undefined ? chanceOfRelation(deviation, precision) : certain,
-    }));
-}
 
 /** Answers by relation: the relation with the strongest evidence takes its answers first, then the next. */
 function groupWrong(wrong: readonly Wrong[]): {
@@ -125,17 +107,24 @@ function groupWrong(wrong: readonly Wrong[]): {
   return { groups, rest: [...open.keys()] };
 }
 
-/**
- * Groups the answers of a part that stand in the same relation to their own keys, largest group first: verdicts as they
- * are, wrong answers by the mistake that explains most of them. A relation is named only where chance is no explanation.
- */
+/** Reads and checks the answers of a part, and groups them as {@link groupChecks} does. */
 export function patternsOf(answers: readonly PatternAnswer[]): readonly Pattern[] {
+  return groupChecks(answers.map(({ id, input }) => ({ id, check: checkAnswer(input) })));
+}
+
+/**
+ * Groups checked answers of a part that stand in the same relation to their own keys, largest group first: verdicts as
+ * they are, wrong answers by the mistake that explains most of them. A relation is named only where chance is no
+ * explanation.
+ */
+export function groupChecks(
+  answers: readonly { readonly id: string; readonly check: PatternCheck }[],
+): readonly Pattern[] {
   const byVerdict = new Map<string, { kind: Pattern['kind']; name: string; slip?: number; ids: string[] }>();
   const wrong: Wrong[] = [];
-  for (const { id, input } of answers) {
-    const check = checkAnswer(input);
+  for (const { id, check } of answers) {
     if (check.verdict === 'wrong') {
-      wrong.push({ id, possible: possibleRelations(input, check) });
+      wrong.push({ id, possible: (check.possible ?? []).map(asPossible) });
       continue;
     }
     const name = check.verdict === 'slip' ? check.relation.name : (verdictNames[check.verdict] ?? check.verdict);
@@ -151,6 +140,10 @@ export function patternsOf(answers: readonly PatternAnswer[]): readonly Pattern[
   const { groups, rest } = groupWrong(wrong);
   const none: readonly Pattern[] = rest.length > 0 ? [{ kind: 'none', name: noRelation.name, ids: rest }] : [];
   return [...byVerdict.values(), ...groups, ...none].sort(
-    (a, b) => b.ids.length - a.ids.length || a.name.localeCompare(b.name),
+    (a, b) => b.ids.length - a.ids.length || (a.name < b.name ? -1 : 1),
   );
+}
+
+function asPossible({ name, factor, chance }: NonNullable<PatternCheck['possible']>[number]): Possible {
+  return { relation: { name, ...(factor === undefined ? {} : { factor }) }, chance };
 }

@@ -2,6 +2,7 @@ import type { ComputedSpecification } from '@shared/answer-forms';
 import { modulus, real, type Complex } from '@shared/reading/complex';
 import type { Reading, ReadingOf } from '@shared/reading/reading';
 import { readUnit } from '@shared/reading/unit-part';
+import { compareWithKey } from './compare';
 import { formulaAtPoints } from './compare-formula';
 import { asComplex, KeyProblem, type ComputedKey } from './key-value';
 import type { Match } from './match';
@@ -112,7 +113,22 @@ export function relationsOf(
   return [named(answer.length < key.length ? 'fewer entries than the key' : 'more entries than the key')];
 }
 
-/** The best relation of a wrong answer to its key. */
-export function relationOf(reading: Reading, part: ComputedSpecification, keys: RelatedKeys, match: Match): Relation {
-  return relationsOf(reading, part, keys, match)[0]?.relation ?? noRelation;
+/**
+ * The best relation of a wrong answer to its key, or where there is none to the key recomputed from the student's own
+ * earlier answers.
+ */
+export function relationOf(
+  reading: Reading,
+  part: ComputedSpecification,
+  keys: RelatedKeys & { readonly own?: { readonly key?: ComputedKey | undefined } },
+  match: Match,
+): Relation {
+  const [best] = relationsOf(reading, part, keys, match);
+  if (best) return best.relation;
+  const own = keys.own?.key;
+  if (!own) return noRelation;
+  const [recomputed] =
+    quietly(() => relationsOf(reading, part, { key: own }, compareWithKey(reading, own, part))) ?? [];
+  if (!recomputed) return noRelation;
+  return { ...recomputed.relation, name: `${recomputed.relation.name}, from the own earlier answer` };
 }

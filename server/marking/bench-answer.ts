@@ -9,8 +9,8 @@ import type { GivenValues } from '@shared/variants';
 import { allowance } from '../checks/tolerance';
 import type { Context } from '../context';
 import { evaluateVariantKeys, type PartKeys } from '../variants/evaluate-variant-keys';
-import { findAnswer, findPile, type FoundPile } from './find-pile';
-import { ratioOf, seenIn } from './patterns';
+import { findAnswer, findPile, patternOfAnswer, type FoundPile } from './find-pile';
+import { ratioOf } from './patterns';
 import { maySee, presentMark, type Viewer } from './present-answers';
 
 /** Everything that the light table shows of an answer, for one viewer. */
@@ -39,7 +39,7 @@ export async function presentBenchAnswer(context: Context, viewer: Viewer, answe
     code,
     version: answer.version,
     state,
-    pattern: seenIn(check).pattern.key,
+    pattern: patternOfAnswer(tx, answer),
     givens: printGivens(found.content.givens, variant?.givens ?? {}),
     text: handedIn.text,
     readAs: check?.readAs ?? '',
@@ -92,13 +92,13 @@ export function printGivens(givens: readonly Given[], values: GivenValues): Prin
 /** What the last submission of a script holds for a part. */
 export function handedInFor(tx: Queryable, scriptId: string, found: Pick<FoundPile, 'setProblem' | 'part'>) {
   const last = tx
-    .select({ content: submissions.content })
+    .select({ content: submissions.content, at: submissions.at })
     .from(submissions)
     .where(eq(submissions.scriptId, scriptId))
     .orderBy(desc(submissions.number))
     .get();
   const own = last?.content.find((each) => each.setProblemId === found.setProblem.id && each.partId === found.part.id);
-  return { text: own?.text ?? '', pageIds: (own?.pages ?? []).map((page) => page.id) };
+  return { at: last?.at ?? null, text: own?.text ?? '', pageIds: (own?.pages ?? []).map((page) => page.id) };
 }
 
 /** Worked pages by id, in the order of the submission. */
@@ -138,7 +138,7 @@ export async function slipsOf(
 ): Promise<BenchAnswer['slips']> {
   const slips = isComputed(found.part.answer) ? (found.part.answer.slips ?? []) : [];
   if (slips.length === 0 || !variant) return [];
-  const name = `${variant.id} ${found.setProblem.revisionId}`;
+  const name = `${variant.id} ${found.setProblem.revisionId} ${found.setProblem.correctionId ?? ''}`;
   let outcome = remembered.get(name);
   if (!outcome) {
     try {

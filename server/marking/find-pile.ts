@@ -1,9 +1,10 @@
 import { and, eq, isNotNull } from 'drizzle-orm';
 import type { Queryable } from '@drizzle/client';
-import { answers, memberships, piles, revisions, scripts, setProblems, sets, users } from '@drizzle/schema';
+import { answers, corrections, memberships, piles, revisions, scripts, setProblems, sets, users } from '@drizzle/schema';
 import type { Colleague } from '@shared/live';
 import type { SetStage } from '@shared/primitives';
 import { partLabel, type Part } from '@shared/problems';
+import { correctedContent, holdsInSet } from '../corrections/corrected-content';
 import { notFound } from '../http/errors';
 import { inPatternOrder, type Seen } from './patterns';
 import { seenChecks } from './seen-checks';
@@ -34,11 +35,12 @@ export function pilesOfSet(tx: Queryable, setId: string) {
 
 function selectPiles(tx: Queryable) {
   return tx
-    .select({ pile: piles, set: sets, setProblem: setProblems, content: revisions.content })
+    .select({ pile: piles, set: sets, setProblem: setProblems, content: correctedContent })
     .from(piles)
     .innerJoin(sets, eq(sets.id, piles.setId))
     .innerJoin(setProblems, eq(setProblems.id, piles.setProblemId))
-    .innerJoin(revisions, eq(revisions.id, setProblems.revisionId));
+    .innerJoin(revisions, eq(revisions.id, setProblems.revisionId))
+    .leftJoin(corrections, holdsInSet);
 }
 
 type Row = NonNullable<ReturnType<ReturnType<typeof selectPiles>['get']>>;
@@ -61,6 +63,8 @@ export interface PiledAnswer {
   readonly state: 'waits' | 'marked' | 'set aside';
   readonly standingMarkId: string | null;
   readonly seen: Seen;
+  /** The key of its pattern among all of the pile. */
+  readonly pattern: string;
 }
 
 /** The answers of a pile that were handed in, in pattern order. */
@@ -82,11 +86,43 @@ export function answersInOrder(tx: Queryable, pileId: string) {
     tx,
     rows.map((row) => row.checkId),
   );
-  return inPatternOrder(
-    rows.flatMap(({ checkId, state, ...row }): PiledAnswer[] =>
-      state === null ? [] : [{ ...row, state, seen: seen(checkId) }],
-    ),
+  const ordered = inPatternOrder(
+    rows.flatMap(({ checkId, state, ...row }) => (state === null ? [] : [{ ...row, state, seen: seen(checkId) }])),
   );
+  rememberPatterns(pileId, rows, ordered.answers);
+  return ordered;
+}
+
+/** Most piles whose patterns are remembered. */
+const mostPiles = 200;
+
+/** Patterns by answer, with the check that they were told by. */
+const remembered = new Map<
+  string,
+  ReadonlyMap<string, { readonly checkId: string | null; readonly pattern: string }>
+>();
+
+function rememberPatterns(
+  pileId: string,
+  rows: readonly { readonly id: string; readonly checkId: string | null }[],
+  answersOfPile: readonly PiledAnswer[],
+): void {
+  const checkIds = new Map(rows.map(({ id, checkId }) => [id, checkId]));
+  if (remembered.size >= mostPiles) remembered.clear();
+  remembered.set(
+    pileId,
+    new Map(answersOfPile.map(({ id, pattern }) => [id, { checkId: checkIds.get(id) ?? null, pattern }])),
+  );
+}
+
+/** The key of an answer's pattern among all of its pile, without putting the pile in order again where that was done. */
+export function patternOfAnswer(
+  tx: Queryable,
+  answer: { readonly id: string; readonly pileId: string; readonly checkId: string | null },
+): string {
+  const known = remembered.get(answer.pileId)?.get(answer.id);
+  if (known && known.checkId === answer.checkId) return known.pattern;
+  return answersInOrder(tx, answer.pileId).answers.find(({ id }) => id === answer.id)?.pattern ?? '';
 }
 
 /** An answer that was handed in, with its script's code. @throws RequestError 404 */

@@ -99,7 +99,7 @@ function startOf(
 ): number {
   const last = wish.after === undefined ? -1 : order.findIndex((answer) => answer.id === wish.after);
   if (last >= 0) return last + 1;
-  const patternOf = (answer: PiledAnswer) => answer.seen.pattern.key;
+  const patternOf = (answer: PiledAnswer) => answer.pattern;
   const free = order.filter(isFree);
   const wished = free.find((answer) => patternOf(answer) === wish.pattern);
   const busy = new Set(order.filter((answer) => others.has(answer.id)).map(patternOf));

@@ -2,7 +2,7 @@ import { eq, inArray } from 'drizzle-orm';
 import type { Queryable } from '@drizzle/client';
 import { marks } from '@drizzle/schema';
 import type { CurrentAnswer, Mark, PileAnswer } from '@shared/marking';
-import { answersInOrder, findAnswer, type PiledAnswer } from './find-pile';
+import { answersInOrder, findAnswer, patternOfAnswer, type PiledAnswer } from './find-pile';
 import { activeHold, activeHolds } from './holds';
 import { seenChecks } from './seen-checks';
 import { sequenceOf } from './sequence';
@@ -49,7 +49,7 @@ export function presentCurrent(tx: Queryable, viewer: Viewer, answerId: string, 
       ? undefined
       : tx.select().from(marks).where(eq(marks.id, answer.standingMarkId)).get();
   const { id, version, standingMarkId } = answer;
-  const piled: PiledAnswer = { id, code, version, state, standingMarkId, seen };
+  const piled: PiledAnswer = { id, code, version, state, standingMarkId, seen, pattern: patternOfAnswer(tx, answer) };
   return {
     ...presentAnswer(viewer, piled, mark, activeHold(tx, answerId, now)),
     sequence: sequenceOf(tx, answer.pileId),
@@ -67,7 +67,7 @@ function presentAnswer(
     code: answer.code,
     version: answer.version,
     state: answer.state,
-    pattern: answer.seen.pattern.key,
+    pattern: answer.pattern,
     markerId: mark?.markerId ?? null,
     total: mark && maySee(viewer, mark) ? mark.total : null,
     ratio: answer.seen.ratio,

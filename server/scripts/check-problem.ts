@@ -143,10 +143,10 @@ function compared(outcome: KeyOutcome | null | undefined): ComputedKey | undefin
 function present(
   part: Part,
   check: Pick<Check, 'verdict' | 'fraction' | 'readAs' | 'relation' | 'value' | 'problem' | 'slip'> &
-    Partial<Pick<Check, 'keyValue'>>,
+    Partial<Pick<Check, 'keyValue' | 'possible' | 'point'>>,
   key: VariantKey | null,
 ): CheckResult {
-  const { verdict, fraction, readAs, problem, slip, relation, value } = check;
+  const { verdict, fraction, readAs, problem, slip, relation, value, possible, point } = check;
   return {
     verdict,
     fraction,
@@ -154,6 +154,8 @@ function present(
     ...(problem === undefined ? {} : { problem }),
     ...(slip === undefined ? {} : { slip }),
     relation: { ...relation },
+    ...(possible === undefined ? {} : { possible }),
+    ...(point === undefined ? {} : { point: { ...point, at: { ...point.at } } }),
     key: inUnitOfPart(part, key, check.keyValue),
     value: plain(value),
     proposed: part.criteria.filter((criterion) => criterion.awardedBy.includes(verdict)).map(({ id }) => id),

@@ -11,6 +11,10 @@ export interface Undressed {
   readonly dropped?: string;
 }
 
+/** Whether a ket or bra is left open: `|α = 2⟩` is no name with a value behind it. */
+const leavesKetOpen = (text: string): boolean =>
+  /[|∣][^|∣⟩>〉]*$/u.test(text) && (text.match(/[|∣]/gu) ?? []).length % 2 === 1;
+
 /** Whether the text can be worked out as it stands, and so is a value rather than a name. */
 function isArithmetic(text: string, grammar: Grammar): boolean {
   try {
@@ -31,7 +35,8 @@ export function dropLeadingName(text: string, grammar: Grammar): Undressed {
   if (!found) return { text };
   const before = text.slice(0, found.index).trim();
   const end = found.index + found[0].length;
-  if (before !== '' && (!nameLike.test(before) || isArithmetic(before, grammar))) return { text };
+  if (before !== '' && (!nameLike.test(before) || leavesKetOpen(before) || isArithmetic(before, grammar)))
+    return { text };
   const dropped = text.slice(0, end).trim();
   return { text: ' '.repeat(end) + text.slice(end), dropped };
 }

@@ -113,5 +113,8 @@ export function lexNumber(text: string, start: number, comma: CommaRole): Writte
   const exponent = exponentPart.exec(text.slice(end));
   if (!exponent) return { value: Number(digits), digits, exponent: undefined, end };
   const power = (exponent[1] && exponent[1] !== '+' ? -1 : 1) * Number(exponent[2]);
-  return { value: Number(`${digits}e${power}`), digits, exponent: power, end: end + exponent[0].length };
+  const value = Number(`${digits}e${power}`);
+  if (value === 0 && /[1-9]/.test(digits))
+    throw new ReadingProblem('This number is too small to be told from 0.', start);
+  return { value, digits, exponent: power, end: end + exponent[0].length };
 }

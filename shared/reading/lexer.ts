@@ -130,6 +130,7 @@ class Lexer {
   private readonly tokens: Token[] = [];
   private at = 0;
   private spaced = false;
+  private insideKet = false;
 
   constructor(
     private readonly text: string,
@@ -143,6 +144,7 @@ class Lexer {
   }
 
   private push(kind: TokenKind, text: string, start: number, end: number, extra: Partial<Token> = {}): void {
+    this.follow(kind, text);
     this.tokens.push({ kind, text, start, end, spaced: this.spaced, ...extra });
     this.spaced = false;
     this.at = end;
@@ -200,14 +202,15 @@ class Lexer {
 
   /** Whether a comma here separates photon numbers: inside a ket, or inside the brackets of a state written by name. */
   private separates(): boolean {
-    if (!this.options.kets) return false;
-    for (let index = this.tokens.length - 1; index >= 0; index -= 1) {
-      const { kind, text } = this.tokens[index] ?? { kind: 'end', text: '' };
-      if (kind === 'bar' || (kind === 'command' && text === 'ket')) return true;
-      if (kind === 'rangle' || kind === 'close') return false;
-      if (kind === 'open' && /^(?:ket|cat)$/.test(this.tokens[index - 1]?.text ?? '')) return true;
-    }
-    return false;
+    return this.options.kets === true && this.insideKet;
+  }
+
+  /** Follows where kets and named states begin and end. */
+  private follow(kind: TokenKind, text: string): void {
+    if (kind === 'bar' || (kind === 'command' && text === 'ket')) this.insideKet = true;
+    else if (kind === 'rangle' || kind === 'close') this.insideKet = false;
+    else if (kind === 'open' && /^(?:ket|cat)$/.test(this.tokens[this.tokens.length - 1]?.text ?? ''))
+      this.insideKet = true;
   }
 
   /** Raised signs become an ordinary power: `10⁻³` is `10^(-3)`. */

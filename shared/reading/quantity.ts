@@ -100,5 +100,8 @@ function raise(node: BinaryExpression, base: Quantity, exponent: Quantity): Quan
   if (exponent.value.im !== 0 || !Number.isFinite(exponent.value.re) || Math.abs(exponent.value.re) > 99) {
     throw new ReadingProblem('A unit takes a real power.', node.right.at);
   }
+  const twelfths = 12 * exponent.value.re;
+  if (Math.abs(twelfths - Math.round(twelfths)) > 1e-9)
+    throw new ReadingProblem('A unit takes a whole power, or a simple fraction.', node.right.at);
   return { value, dimension: combine(pure, base.dimension, exponent.value.re) };
 }

@@ -1,4 +1,5 @@
 import { askAboutComma } from './ask-comma';
+import { longestAnswer } from './lexer';
 import { AmbiguousComma, ReadingProblem } from './problem';
 import { readChoice } from './read-choice';
 import { readFormula } from './read-formula';
@@ -38,6 +39,13 @@ function read(text: string, field: AnswerField): Reading {
  */
 export function readAnswer(text: string, field: AnswerField): Reading {
   if (blank.test(text)) return { kind: 'empty' };
+  if (text.length > longestAnswer && field.form !== 'worked') {
+    return {
+      kind: 'unreadable',
+      problem: `The answer is longer than ${longestAnswer} characters.`,
+      at: longestAnswer + 1,
+    };
+  }
   try {
     return read(text, field);
   } catch (error) {

@@ -2,6 +2,7 @@ import { isFiniteComplex, real, type Complex } from '@shared/reading/complex';
 import { evaluateNumber } from '@shared/reading/quantity';
 import { readAnswer } from '@shared/reading/read-answer';
 import type { AnswerField, Reading } from '@shared/reading/reading';
+import { pathologicalAnswers } from './pathological-answers';
 import { randomAnswer, seeded } from './random-answers';
 
 const variables = ['nbar', 'n', 'kappa', 'omega', 'alpha', 't', 'G', 'T_1'].map((name) => ({ name }));
@@ -63,33 +64,50 @@ export interface FuzzReport {
 
 const suspicious = 5;
 
-/** Reads `count` random texts, each in one of the fields in turn, and reports what went wrong. */
+/** Reads one text in one field, and says what is wrong with that and how long it took. */
+export function tryReading(text: string, field: AnswerField): { fault?: string; read: boolean; milliseconds: number } {
+  const start = performance.now();
+  let fault: string | undefined;
+  let read = false;
+  try {
+    const reading = readAnswer(text, field);
+    fault = faultOf(reading);
+    read = reading.kind !== 'unreadable';
+  } catch (error) {
+    fault = `threw ${String(error)}`;
+  }
+  let milliseconds = performance.now() - start;
+  // A pause of the machine is told from a slow text by reading it again.
+  for (let again = 0; fault === undefined && milliseconds > suspicious && again < 3; again += 1) {
+    const restart = performance.now();
+    readAnswer(text, field);
+    milliseconds = Math.min(milliseconds, performance.now() - restart);
+  }
+  return { ...(fault === undefined ? {} : { fault }), read, milliseconds };
+}
+
+/**
+ * Reads every pathological text in every field and then `count` random ones, each in one of the fields in turn, and
+ * reports what went wrong.
+ */
 export function fuzzReading(count: number, seed: number): FuzzReport {
   const next = seeded(seed);
   const faults: string[] = [];
+  let readings = 0;
   let read = 0;
   let slowest = { milliseconds: 0, text: '' };
+  const attempt = (text: string, field: AnswerField) => {
+    const outcome = tryReading(text, field);
+    readings += 1;
+    if (outcome.fault !== undefined)
+      faults.push(`${field.form} ${JSON.stringify(text.slice(0, 200))} ${outcome.fault}`);
+    if (outcome.read) read += 1;
+    if (outcome.milliseconds > slowest.milliseconds) slowest = { milliseconds: outcome.milliseconds, text };
+  };
+  for (const text of pathologicalAnswers) for (const field of everyField) attempt(text, field);
   for (let index = 0; index < count; index += 1) {
-    const text = randomAnswer(next);
     const field = everyField[index % everyField.length];
-    if (!field) continue;
-    const start = performance.now();
-    try {
-      const reading = readAnswer(text, field);
-      const fault = faultOf(reading);
-      if (fault !== undefined) faults.push(`${field.form} ${JSON.stringify(text)} ${fault}`);
-      if (reading.kind !== 'unreadable') read += 1;
-    } catch (error) {
-      faults.push(`${field.form} ${JSON.stringify(text)} threw ${String(error)}`);
-    }
-    let milliseconds = performance.now() - start;
-    // A pause of the machine is told from a slow text by reading it again.
-    for (let again = 0; milliseconds > suspicious && again < 3; again += 1) {
-      const restart = performance.now();
-      readAnswer(text, field);
-      milliseconds = Math.min(milliseconds, performance.now() - restart);
-    }
-    if (milliseconds > slowest.milliseconds) slowest = { milliseconds, text };
+    if (field) attempt(randomAnswer(next), field);
   }
-  return { readings: count, read, faults, slowest };
+  return { readings, read, faults, slowest };
 }
