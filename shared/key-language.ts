@@ -26,7 +26,7 @@ export const keyFunction = z.object({
   /** Whether it makes a state, asks something of one, or does neither. */
   makes: z.enum(['state', 'figure', 'arithmetic']),
   arguments: z.array(keyArgument).readonly(),
-  /** An expression that was run, with what it came to. */
+  /** An expression that was run, with what it came to; null where examples are left out. */
   example: z
     .object({
       expression: z.string(),
@@ -57,5 +57,9 @@ export const keyLanguageRoute = defineRoute({
   method: 'GET',
   path: '/key-language',
   summary: 'The functions and constants of key expressions, with formulas, domains and examples that were run',
+  query: z.object({
+    /** Editors need no examples, which take the workers a moment when they are run for the first time. */
+    examples: z.enum(['run', 'left out']).default('run'),
+  }),
   response: keyLanguage,
 });

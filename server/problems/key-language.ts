@@ -8,39 +8,56 @@ import { presentKey } from '../variants/key-outcome';
 
 type Language = z.input<(typeof keyLanguageRoute)['response']>;
 
-/**
- * The description of the key language with its examples run, once for as long as the server runs.
- *
- * @returns a function that answers with the same description every time
- */
-export function createKeyLanguage(keys: Keys): () => Promise<Language> {
-  let made: Promise<Language> | undefined;
-  return () => {
-    made ??= describe(keys).catch((error: unknown) => {
-      // Whatever stopped the workers, the next one who asks tries again.
-      made = undefined;
-      throw error;
-    });
-    return made;
-  };
+/** Examples that are run at once: keys that somebody waits for come between. */
+const atOnce = 8;
+
+/** The description of the key language. */
+export interface DescribedLanguage {
+  /** What can be said without running anything. */
+  readonly plain: Language;
+  /** The same with its examples, which are run once for as long as the server runs. */
+  withExamples(): Promise<Language>;
 }
 
-async function describe(keys: Keys): Promise<Language> {
-  const functions = describeFunctions();
-  const examples = functions.map(({ example }) => example);
-  const run = examples.filter((example) => example !== null);
-  const outcomes = await evaluateOutcomes(keys, run.map(requestOfExample));
+/** Describes the language; its examples are run in the pool when they are first asked for. */
+export function createKeyLanguage(keys: Keys): DescribedLanguage {
+  const described = describeFunctions();
+  const constants = Object.entries(physicalConstants).map(([name, { value, unit }]) => ({ name, value, unit }));
+  const functions = described.map(({ example: _, arguments: all, ...each }) => ({
+    ...each,
+    arguments: all.map(({ outside: __, ...argument }) => argument),
+    example: null,
+  }));
+  const plain: Language = { functions, constants };
+  let made: Promise<Language> | undefined;
+
+  async function run(): Promise<Language> {
+    const written = described.map(({ example }) => example);
+    const expressions = written.filter((example) => example !== null);
+    const outcomes: KeyOutcome[] = [];
+    for (let at = 0; at < expressions.length; at += atOnce)
+      outcomes.push(...(await evaluateOutcomes(keys, expressions.slice(at, at + atOnce).map(requestOfExample))));
+    return {
+      functions: functions.map((each, index) => {
+        const example = written[index] ?? null;
+        return example === null
+          ? each
+          : { ...each, example: exampleOf(example, outcomes[expressions.indexOf(example)]) };
+      }),
+      constants,
+    };
+  }
+
   return {
-    functions: functions.map(({ example, arguments: all, ...each }) => ({
-      ...each,
-      arguments: all.map(({ name, otherwise, domain }) => ({
-        name,
-        ...(otherwise === undefined ? {} : { otherwise }),
-        domain,
-      })),
-      example: example === null ? null : exampleOf(example, outcomes[run.indexOf(example)]),
-    })),
-    constants: Object.entries(physicalConstants).map(([name, { value, unit }]) => ({ name, value, unit })),
+    plain,
+    withExamples: () => {
+      made ??= run().catch((error: unknown) => {
+        // Whatever stopped the workers, the next one who asks tries again.
+        made = undefined;
+        throw error;
+      });
+      return made;
+    },
   };
 }
 

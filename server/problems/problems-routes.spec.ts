@@ -277,7 +277,7 @@ describe('samples', () => {
     expect(state.typeset).toContain('|1,0\\rangle');
     expect(state).not.toHaveProperty('compared');
     // nbar = 2.0 is printed, t stays a variable.
-    expect(formula.typeset).toMatch(/^ ?\{2\.0\}\\cdot ?\\exp\\left\(- t\\right\)$/);
+    expect(formula.typeset).toMatch(/^\{2\.0\}\\cdot ?\\exp\\left\(- t\\right\)$/);
     expect(formula.example).toMatch(/^\d\.\d+ at t = \d\.\d+$/);
     expect(distribution.value).toHaveLength(4);
     const problem = await save(await begin('Forms'), draft);
@@ -445,6 +445,9 @@ describe('the key language', () => {
     expect(find('noon').example.typeset).toContain('\\rangle');
     expect(find('sqrt')).toMatchObject({ makes: 'arithmetic' });
     expect(body.functions.filter((each: { example: unknown }) => each.example === null)).toEqual([]);
+    const { body: plain } = await lead.get('/api/key-language').query({ examples: 'left out' }).expect(200);
+    expect(plain.functions).toHaveLength(body.functions.length);
+    expect(plain.functions[0]).toMatchObject({ name: 'vacuum', example: null });
     expect(body.constants).toContainEqual({ name: 'boltzmann', value: 1.380649e-23, unit: 'J K^-1' });
   });
 });

@@ -32,7 +32,7 @@ import { sampleDraft } from './sample-draft';
 /** The bank: problems, their drafts and revisions. */
 export function addProblemRoutes(serve: Serve, context: Context): void {
   const { db, keys, clock } = context;
-  const keyLanguage = createKeyLanguage(keys);
+  const language = createKeyLanguage(keys);
   const deed = (user: { readonly id: string }) => ({ personId: user.id, now: clock.now() });
 
   serve(routes.problems, ({ user, query }) => {
@@ -118,9 +118,9 @@ export function addProblemRoutes(serve: Serve, context: Context): void {
     return drawKey(keys, body);
   });
 
-  serve(keyLanguageRoute, ({ user }) => {
+  serve(keyLanguageRoute, ({ user, query }) => {
     demand(user, 'write problems');
-    return keyLanguage();
+    return query.examples === 'run' ? language.withExamples() : language.plain;
   });
 }
 

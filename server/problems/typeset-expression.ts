@@ -30,10 +30,13 @@ type Looked = MathNode & {
  */
 export function typesetExpression(expression: string, naming: Naming): string {
   try {
-    return mathematics.parse(expression).toTex({
-      parenthesis: 'auto',
-      handler: (node: Looked, options: object) => setNode(node, options, naming),
-    });
+    return mathematics
+      .parse(expression)
+      .toTex({
+        parenthesis: 'auto',
+        handler: (node: Looked, options: object) => setNode(node, options, naming),
+      })
+      .trim();
   } catch {
     // Whatever cannot be parsed has been said to be so by the evaluation.
     return '';

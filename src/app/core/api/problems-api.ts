@@ -60,8 +60,8 @@ export class ProblemsApi {
     return this.api.call(problemRoutes.problemFile, { params: { problemId } });
   }
 
-  keyLanguage() {
-    return this.api.call(keyLanguageRoute);
+  keyLanguage(examples: 'run' | 'left out') {
+    return this.api.call(keyLanguageRoute, { query: { examples } });
   }
 
   keyPicture(body: z.input<(typeof keyPictureRoute)['body']>) {

@@ -30,6 +30,8 @@ import { ErrorState } from '../../ui/error-state/error-state';
 import { FormulaText } from '../../ui/formula-text/formula-text';
 import { LoadingBars } from '../../ui/loading-bars/loading-bars';
 import { AboutProblem } from './about-problem';
+import { AuditFindings } from './audit/audit-findings';
+import { ProblemAudit } from './audit/problem-audit';
 import { addPart, movePart, removePart } from './draft-changes';
 import type { ExpressionFault } from './expression-editor';
 import { faultPlace } from './fault-place';
@@ -63,6 +65,7 @@ const noLanguage: KeyLanguage = { functions: [], constants: [] };
   selector: 'app-composer',
   imports: [
     AboutProblem,
+    AuditFindings,
     ErrorState,
     FormulaText,
     GivensTable,
@@ -82,7 +85,7 @@ const noLanguage: KeyLanguage = { functions: [], constants: [] };
     TwoStates,
     TypedField,
   ],
-  providers: [OpenProblem, SampleVariants],
+  providers: [OpenProblem, ProblemAudit, SampleVariants],
   templateUrl: './composer.html',
   styleUrl: './composer.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -94,6 +97,7 @@ export default class Composer {
   private readonly pageTitle = inject(PageTitle);
   protected readonly open = inject(OpenProblem);
   protected readonly samples = inject(SampleVariants);
+  protected readonly audit = inject(ProblemAudit);
   private readonly tabList = viewChild<ElementRef<HTMLElement>>('tabList');
 
   readonly courseId = input.required<string>();
@@ -102,7 +106,7 @@ export default class Composer {
   readonly at = input<string>();
 
   /** Without the server's list the editor works, it only completes less. */
-  private readonly language = toSignal(this.api.keyLanguage().pipe(catchError(() => of(noLanguage))), {
+  private readonly language = toSignal(this.api.keyLanguage('left out').pipe(catchError(() => of(noLanguage))), {
     initialValue: noLanguage,
   });
   protected readonly isSaving = signal(false);
@@ -122,6 +126,7 @@ export default class Composer {
     return index >= 0 && index < (this.open.draft()?.parts.length ?? 0) ? index : -1;
   });
   protected readonly part = computed(() => this.open.draft()?.parts[this.partIndex()]);
+  private readonly partCount = computed(() => this.open.draft()?.parts.length ?? 0);
 
   protected readonly tabs = computed(() =>
     (this.open.draft()?.parts ?? []).map((part, index) => {
@@ -235,6 +240,7 @@ export default class Composer {
     // The tab that is shown is in sight on narrow screens too.
     effect(() => {
       this.tab();
+      this.partCount();
       const list = this.tabList()?.nativeElement;
       setTimeout(() => {
         const shown = list?.querySelector<HTMLElement>('.on');

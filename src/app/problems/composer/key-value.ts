@@ -1,4 +1,5 @@
 import { ChangeDetectionStrategy, Component, computed, input } from '@angular/core';
+import { printNumber } from '@shared/reading/print';
 import { FormulaText } from '../../ui/formula-text/formula-text';
 import { textOfValue, type ValuedKey } from './present-value';
 
@@ -92,7 +93,8 @@ export class KeyValue {
 
   protected readonly plain = computed(() => {
     const { value, unit } = this.key();
-    return `${textOfValue(value, 7)}${unit ? ` ${unit}` : ''}`;
+    const text = typeof value === 'number' ? printNumber(value, 8) : textOfValue(value, 7);
+    return `${text}${unit ? ` ${unit}` : ''}`;
   });
 
   /** The entries of a list or a matrix, those that fit, and what was left out. */

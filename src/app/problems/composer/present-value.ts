@@ -34,6 +34,7 @@ export function textOfValue(value: unknown, figures: number): string {
   if (typeof value === 'object' && value !== null && 're' in value && 'im' in value) {
     const { re, im } = value as { re: number; im: number };
     const shorter = Math.min(figures, 7);
+    if (re === 0) return `${textOfNumber(im, shorter)}i`;
     return `${textOfNumber(re, shorter)} ${im < 0 ? '−' : '+'} ${textOfNumber(Math.abs(im), shorter)}i`;
   }
   return String(value);

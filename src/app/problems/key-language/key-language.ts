@@ -1,4 +1,14 @@
-import { ChangeDetectionStrategy, Component, computed, inject, input, signal } from '@angular/core';
+import {
+  ChangeDetectionStrategy,
+  Component,
+  type ElementRef,
+  afterRenderEffect,
+  computed,
+  inject,
+  input,
+  signal,
+  viewChild,
+} from '@angular/core';
 import { rxResource, takeUntilDestroyed, toObservable } from '@angular/core/rxjs-interop';
 import { MatButtonModule } from '@angular/material/button';
 import { MatIconModule } from '@angular/material/icon';
@@ -29,6 +39,8 @@ export default class KeyLanguagePage {
   private readonly api = inject(ProblemsApi);
   private readonly router = inject(Router);
 
+  private readonly headings = viewChild<ElementRef<HTMLElement>>('headings');
+
   readonly courseId = input.required<string>();
   /** Words to find, in the address. */
   readonly search = input<string>();
@@ -36,7 +48,7 @@ export default class KeyLanguagePage {
   readonly about = input<string>();
 
   protected readonly typed = signal<string | null>(null);
-  protected readonly language = rxResource({ stream: () => this.api.keyLanguage() });
+  protected readonly language = rxResource({ stream: () => this.api.keyLanguage('run') });
   protected readonly error = computed(() => {
     const error = this.language.error();
     const cause = error?.cause instanceof RequestFailure ? error.cause : error;
@@ -79,6 +91,13 @@ export default class KeyLanguagePage {
   });
 
   constructor() {
+    // On narrow screens the headings are one line, in which the one that is shown must be in sight.
+    afterRenderEffect(() => {
+      this.group();
+      const line = this.headings()?.nativeElement;
+      const shown = line?.querySelector<HTMLElement>('.on');
+      if (line && shown) line.scrollLeft = shown.offsetLeft - line.offsetLeft - 16;
+    });
     toObservable(this.typed)
       .pipe(skip(1), debounceTime(200), takeUntilDestroyed())
       .subscribe((typed) => this.show({ search: typed?.trim() || null }));
