@@ -137,29 +137,30 @@ function gaussianGenerating({ modes, mean, covariance }: GaussianState, logT: nu
   const kappa = Math.tanh(logT / 2);
   const side = 2 * modes;
   // Cholesky of 1 − 2κV.
-  const l = new Float64Array(side * side);
-  const y = new Float64Array(side);
   let logDet = 0;
   let form = 0;
   for (let i = 0; i < side; i++) {
-    for (let j = 0; j <= i; j++) {
-      let sum = (i === j ? 1 : 0) - 2 * kappa * covariance[i * side + j]!;
-      for (let k = 0; k < j; k++) sum -= l[i * side + k]! * l[j * side + k]!;
-      if (i === j) {
-        if (sum <= 0) return Infinity;
-        l[i * side + i] = Math.sqrt(sum);
-        logDet += Math.log(sum);
-      } else {
-        l[i * side + j] = sum / l[j * side + j]!;
-      }
-    }
     let rest = mean[i]!;
-    for (let k = 0; k < i; k++) rest -= l[i * side + k]! * y[k]!;
-    y[i] = rest / l[i * side + i]!;
-    form += y[i]! * y[i]!;
+    for (let j = 0; j < i; j++) {
+      let sum = -2 * kappa * covariance[i * side + j]!;
+      for (let k = 0; k < j; k++) sum -= scratch[4 * i + k]! * scratch[4 * j + k]!;
+      scratch[4 * i + j] = sum / scratch[4 * j + j]!;
+      rest -= scratch[4 * i + j]! * forward[j]!;
+    }
+    let pivot = 1 - 2 * kappa * covariance[i * side + i]!;
+    for (let k = 0; k < i; k++) pivot -= scratch[4 * i + k]! ** 2;
+    if (pivot <= 0) return Infinity;
+    scratch[4 * i + i] = Math.sqrt(pivot);
+    logDet += Math.log(pivot);
+    forward[i] = rest / scratch[4 * i + i]!;
+    form += forward[i]! ** 2;
   }
   return modes * (Math.LN2 - Math.log1p(Math.exp(logT))) - logDet / 2 + kappa * form;
 }
+
+/** Rows of a triangular factor and of a solved vector; no call outlives its use of them. */
+const scratch = new Float64Array(16);
+const forward = new Float64Array(4);
 
 /** Values of ln t that are tried: fine where states are wide, coarse where they are narrow. */
 const LOG_TS = Array.from({ length: 64 }, (_, k) => 1e-5 * 1.32 ** k);
@@ -181,19 +182,22 @@ export function levelsFor(
   let bestT = 0;
   let bestBound = -Infinity;
   if (finite === undefined) {
-    for (const logT of LOG_TS) {
-      const bound = logGenerating(state, logT);
-      if (!Number.isFinite(bound)) {
-        if (bound === Infinity) break;
-        continue;
-      }
+    const bounds = boundsOf(state);
+    // Levels fall to one minimum and rise again: every fourth value first, then those beside the best.
+    let place = -1;
+    const consider = (k: number): void => {
+      const [logT, bound] = [LOG_TS[k], bounds(k)];
+      if (logT === undefined || !Number.isFinite(bound)) return;
       const levels = Math.max(1, Math.ceil((bound - logWeight) / logT));
-      if (levels < best) {
-        best = levels;
-        bestT = logT;
-        bestBound = bound;
-      }
+      if (levels >= best) return;
+      [best, bestT, bestBound, place] = [levels, logT, bound, k];
+    };
+    for (let k = 0; k < LOG_TS.length; k += 4) {
+      if (bounds(k) === Infinity) break;
+      consider(k);
     }
+    const middle = place;
+    for (let k = Math.max(0, middle - 3); k <= middle + 3; k++) consider(k);
   }
   if (!(best <= MOST_LEVELS)) {
     throw new MethodDoesNotApply(
@@ -203,6 +207,18 @@ export function levelsFor(
     );
   }
   return { levels: best, outsideWeight: finite === undefined ? Math.exp(bestBound - best * bestT) : 0 };
+}
+
+const knownBounds = new WeakMap<State, Float64Array>();
+
+/** logGenerating at each of LOG_TS, found when it is first asked for. */
+function boundsOf(state: State): (k: number) => number {
+  const values = knownBounds.get(state) ?? new Float64Array(LOG_TS.length).fill(NaN);
+  knownBounds.set(state, values);
+  return (k) => {
+    const known = values[k] ?? Infinity;
+    return Number.isNaN(known) ? (values[k] = logGenerating(state, LOG_TS[k] ?? 0)) : known;
+  };
 }
 
 /** The largest photon number that a state can have at all, where it has one. */

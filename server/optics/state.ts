@@ -282,21 +282,31 @@ export const isChannel = (state: State): state is ChannelState =>
   state.kind === 'lose' || state.kind === 'damp' || state.kind === 'amplify' || state.kind === 'invert';
 
 /**
- * Channels of one mode that follow each other, as one: gains multiply, and later gains amplify earlier noise.
+ * Channels that follow each other, as one for each mode: gains multiply, and later gains amplify earlier noise; those
+ * of different modes commute.
  *
- * @returns the channel, and the state that it acts on
+ * @returns the channels, and the state that they act on
  */
-export function channelChain(state: ChannelState): { readonly channel: Channel; readonly inner: State } {
-  let { gain, noise, rotation } = channelOf(state);
-  const { mode } = channelOf(state);
-  let inner = state.state;
+export function channelsOf(state: ChannelState): { readonly channels: readonly Channel[]; readonly inner: State } {
+  const found = new Map<Mode, Channel>();
+  let inner: State = state;
   while (isChannel(inner)) {
-    const before = channelOf(inner);
-    if (before.mode !== mode) break;
-    noise += gain * before.noise;
-    gain *= before.gain;
-    rotation += before.rotation;
+    const earlier = channelOf(inner);
+    const later = found.get(earlier.mode) ?? { gain: 1, noise: 0, rotation: 0, mode: earlier.mode };
+    found.set(earlier.mode, {
+      gain: later.gain * earlier.gain,
+      noise: later.noise + later.gain * earlier.noise,
+      rotation: later.rotation + earlier.rotation,
+      mode: earlier.mode,
+    });
     inner = inner.state;
   }
-  return { channel: { gain, noise, rotation, mode }, inner };
+  return { channels: [...found.values()], inner };
+}
+
+/** The same of one mode, where there is one channel only. */
+export function channelChain(state: ChannelState): { readonly channel: Channel; readonly inner: State } {
+  const { channels, inner } = channelsOf(state);
+  const [channel = channelOf(state)] = channels;
+  return { channel, inner };
 }

@@ -15,7 +15,7 @@ const LONGEST_COLUMN = 80_000;
  * @param ahead entry k + 1 from entries k and k − 1
  * @param back entry k − 1 from entries k and k + 1
  */
-function solveBothWays(
+export function solveBothWays(
   count: number,
   turn: number,
   ahead: (k: number, here: number, before: number) => number,

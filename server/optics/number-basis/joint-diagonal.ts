@@ -1,5 +1,5 @@
 import { MethodDoesNotApply } from '../method-does-not-apply';
-import { channelOf, type State } from '../state';
+import { channelsOf, type Channel, type State } from '../state';
 import { eachAmplitude } from './joint-ket';
 import { ensembleOf, pushedIn } from './joint-states';
 import { channelOnDiagonal, numberDiagonal, resolve, type Resolution } from './number-states';
@@ -15,6 +15,9 @@ export interface JointDiagonal {
 
 /** Most levels of each mode in a table of joint probabilities: 32 MB. */
 const MOST_JOINT_LEVELS = 2000;
+
+/** Most multiplications of one channel. */
+const MOST_WORK = 2e8;
 
 const cache = new WeakMap<State, Map<string, JointDiagonal>>();
 
@@ -64,30 +67,11 @@ function build(given: State, resolution: Resolution): JointDiagonal {
       return jointDiagonal(state.state, resolution);
     case 'lose':
     case 'amplify': {
-      const inner = jointDiagonal(state.state, resolution);
-      const channel = channelOf(state);
-      const size = state.kind === 'lose' ? { levels: inner.levels, outside: 0 } : resolve(state, resolution);
-      const levels = Math.max(size.levels, inner.levels);
-      checkLevels(levels);
-      const p = new Float64Array(levels * levels);
-      for (let other = 0; other < inner.levels; other++) {
-        const line: NumberDiagonal = {
-          kind: 'diagonal',
-          levels: inner.levels,
-          p: Float64Array.from({ length: inner.levels }, (_, n) =>
-            state.mode === 1 ? inner.p[n * inner.levels + other]! : inner.p[other * inner.levels + n]!,
-          ),
-          noise: inner.noise,
-          outside: 0,
-        };
-        if (line.p.every((value) => value === 0)) continue;
-        const mapped = channelOnDiagonal(line, channel, () => ({ levels, outside: 0 }));
-        for (let n = 0; n < mapped.levels; n++) {
-          if (state.mode === 1) p[n * levels + other] = mapped.p[n]!;
-          else p[other * levels + n] = mapped.p[n]!;
-        }
-      }
-      return { levels, p, noise: inner.noise, outside: inner.outside + size.outside };
+      const { channels, inner } = channelsOf(state);
+      return channels.reduce(
+        (diagonal, channel) => throughChannel(diagonal, channel, () => resolve(state, resolution)),
+        jointDiagonal(inner, resolution),
+      );
     }
     case 'mixture': {
       const parts = state.states
@@ -119,4 +103,36 @@ function build(given: State, resolution: Resolution): JointDiagonal {
       return { levels, p, noise: noise * 2, outside };
     }
   }
+}
+
+/** A channel on one of the modes, line by line of the other's number. */
+function throughChannel(
+  inner: JointDiagonal,
+  channel: Channel,
+  amplified: () => { readonly levels: number; readonly outside: number },
+): JointDiagonal {
+  const size = channel.noise === 0 ? { levels: inner.levels, outside: 0 } : amplified();
+  const levels = Math.max(size.levels, inner.levels);
+  checkLevels(levels);
+  if (inner.levels ** 2 * levels > MOST_WORK)
+    throw new MethodDoesNotApply('the joint probabilities would take too long');
+  const p = new Float64Array(levels * levels);
+  for (let other = 0; other < inner.levels; other++) {
+    const line: NumberDiagonal = {
+      kind: 'diagonal',
+      levels: inner.levels,
+      p: Float64Array.from({ length: inner.levels }, (_, n) =>
+        channel.mode === 1 ? inner.p[n * inner.levels + other]! : inner.p[other * inner.levels + n]!,
+      ),
+      noise: inner.noise,
+      outside: 0,
+    };
+    if (line.p.every((value) => value === 0)) continue;
+    const mapped = channelOnDiagonal(line, channel, () => ({ levels, outside: 0 }));
+    for (let n = 0; n < mapped.levels; n++) {
+      if (channel.mode === 1) p[n * levels + other] = mapped.p[n]!;
+      else p[other * levels + n] = mapped.p[n]!;
+    }
+  }
+  return { levels, p, noise: inner.noise, outside: inner.outside + size.outside };
 }

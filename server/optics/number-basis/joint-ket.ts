@@ -2,7 +2,7 @@ import { phase, type Complex } from '../complex';
 import { MethodDoesNotApply } from '../method-does-not-apply';
 import { applyUnitary, type NumberUnitary } from './displaced-numbers';
 import { gainAmplitudes, lossAmplitudes } from './number-maps';
-import { SplitterBlocks } from './splitter-blocks';
+import { splitterColumn } from './splitter-blocks';
 
 /** Amplitudes of N photons in two modes: entry n is ⟨n, N − n|ψ⟩. */
 export interface Block {
@@ -94,23 +94,20 @@ export function twinKet(r: number, direction: Complex, levels: number): JointKet
 
 /** b₁ = √T a₁ + e^{iφ}√R a₂, b₂ = −e^{−iφ}√R a₁ + √T a₂ on all kets, block by block. */
 export function splitKets(kets: readonly JointKet[], transmittance: number, direction: Complex): readonly JointKet[] {
-  let work = 0;
   const levels = Math.max(0, ...kets.map((ket) => ket.blocks.length));
-  let highest = 0;
+  let work = 0;
   for (const ket of kets) {
     ket.blocks.forEach((block, total) => {
-      if (block === undefined) return;
-      work += (total + 1) ** 2 * 2;
-      highest = Math.max(highest, total);
+      if (block !== undefined) work += 6 * (total + 1) * countFilled(block);
     });
   }
-  checkJointSize(sizeOfKets(kets), work + (highest + 1) ** 3 * 2);
-  const splitter = new SplitterBlocks(transmittance);
+  checkJointSize(sizeOfKets(kets), work);
   const angle = Math.atan2(direction.im, direction.re);
   const out: (Block | undefined)[][] = kets.map(() => new Array<Block | undefined>(levels).fill(undefined));
-  for (let total = 0; total <= highest; total++) {
-    const matrix = splitter.of(total);
+  for (let total = 0; total < levels; total++) {
+    if (kets.every((ket) => ket.blocks[total] === undefined)) continue;
     const side = total + 1;
+    const columns = new Map<number, Float64Array>();
     const turns = Array.from({ length: side }, (_, n) => phase(angle * n));
     kets.forEach((ket, index) => {
       const block = ket.blocks[total];
@@ -121,10 +118,11 @@ export function splitKets(kets: readonly JointKet[], transmittance: number, dire
         const re = block.re[n]! * turn.re - block.im[n]! * turn.im;
         const im = block.re[n]! * turn.im + block.im[n]! * turn.re;
         if (re === 0 && im === 0) continue;
+        let column = columns.get(n);
+        if (column === undefined) columns.set(n, (column = splitterColumn(total, n, transmittance)));
         for (let k = 0; k < side; k++) {
-          const value = matrix[k * side + n]!;
-          next.re[k]! += value * re;
-          next.im[k]! += value * im;
+          next.re[k]! += column[k]! * re;
+          next.im[k]! += column[k]! * im;
         }
       }
       for (let k = 0; k < side; k++) {
@@ -137,6 +135,12 @@ export function splitKets(kets: readonly JointKet[], transmittance: number, dire
     });
   }
   return out.map((blocks) => ({ blocks }));
+}
+
+function countFilled({ re, im }: Block): number {
+  let count = 0;
+  for (let n = 0; n < re.length; n++) if (re[n] !== 0 || im[n] !== 0) count++;
+  return count;
 }
 
 /** Multiplies each amplitude by a phase that depends on one mode's number. */

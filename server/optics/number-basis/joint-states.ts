@@ -1,6 +1,6 @@
 import { abs2, complex, times } from '../complex';
 import { MethodDoesNotApply, StateVanishes } from '../method-does-not-apply';
-import { channelOf, type State } from '../state';
+import { channelsOf, type Channel, type State } from '../state';
 import { displacement, squeezer, type NumberUnitary } from './displaced-numbers';
 import {
   amplifyKets,
@@ -133,18 +133,11 @@ function build(given: State, resolution: Resolution): JointState {
     }
     case 'lose':
     case 'amplify': {
-      const inner = ensembleOf(state.state, resolution);
-      const { eta, amplification } = asLossAndGain(channelOf(state));
-      const lost = loseKets(inner.kets, state.mode, eta);
-      if (amplification === 1) return { ...inner, kets: lost };
-      const { levels, outside } = resolve(state, resolution);
-      return {
-        kind: 'ensemble',
-        kets: amplifyKets(lost, state.mode, amplification, levels),
-        levels,
-        noise: inner.noise,
-        outside: outside + inner.outside,
-      };
+      const { channels, inner } = channelsOf(state);
+      return channels.reduce(
+        (ensemble, channel) => throughChannel(ensemble, channel, () => resolve(state, resolution)),
+        ensembleOf(inner, resolution),
+      );
     }
     case 'displaced': {
       const inner = ensembleOf(state.state, beforeMixing(resolution));
@@ -199,6 +192,19 @@ function build(given: State, resolution: Resolution): JointState {
     default:
       throw new MethodDoesNotApply('a state of one mode is not one of two');
   }
+}
+
+function throughChannel(
+  inner: Ensemble,
+  channel: Channel,
+  amplified: () => { readonly levels: number; readonly outside: number },
+): Ensemble {
+  const { eta, amplification } = asLossAndGain(channel);
+  const lost = loseKets(inner.kets, channel.mode, eta);
+  if (amplification === 1) return { ...inner, kets: lost };
+  const { levels, outside } = amplified();
+  const kets = amplifyKets(lost, channel.mode, amplification, levels);
+  return { kind: 'ensemble', kets, levels, noise: inner.noise, outside: outside + inner.outside };
 }
 
 type JointSuperposition = Extract<State, { readonly kind: 'superposition' }>;
@@ -330,37 +336,23 @@ export function outputOf(joint: JointState, mode: 1 | 2): NumberState {
   return gather(joint, mode, () => 1).state;
 }
 
-/** The other mode where `mode` was found to have n photons. */
-export function conditionedOnNumber(joint: JointState, mode: 1 | 2, n: number): Conditioned {
-  if (joint.kind === 'factored') {
-    const p = diagonalOf(mode === 1 ? joint.first : joint.second);
-    if (!((p.p[n] ?? 0) > 0)) throw new StateVanishes('the condition has no weight in the number basis');
-    return { state: mode === 1 ? joint.second : joint.first, probability: 1, reference: 1 };
-  }
-  const [only, ...others] = joint.kets;
-  if (only !== undefined && others.length === 0) {
-    const { re, im } = n < joint.levels ? sliceOf(only, mode, n) : { re: new Float64Array(1), im: new Float64Array(1) };
-    let probability = 0;
-    for (let m = 0; m < re.length; m++) probability += re[m]! ** 2 + im[m]! ** 2;
-    const { noise, outside } = joint;
-    return { state: { kind: 'ket', levels: re.length, re, im, noise, outside }, probability, reference: 1 };
-  }
-  return gather(joint, mode === 1 ? 2 : 1, (other) => (other === n ? 1 : 0));
-}
-
 /** The probability of a detector of efficiency η with dark counts to tell something of n photons. */
 export const clickWeight = (n: number, eta: number, dark: number): number =>
   eta === 1 && n > 0 ? 1 : -Math.expm1((n === 0 ? 0 : n * Math.log1p(-eta)) - dark);
 
-/** The other mode where a detector on `mode` told something. */
-export function conditionedOnClick(joint: JointState, mode: 1 | 2, eta: number, dark: number): Conditioned {
+/**
+ * The other mode where a detector on `mode` told something.
+ *
+ * @param weight its probability to tell it of n photons
+ */
+export function conditionedOn(joint: JointState, mode: 1 | 2, weight: (n: number) => number): Conditioned {
   if (joint.kind === 'factored') {
     const { p } = diagonalOf(mode === 1 ? joint.first : joint.second);
-    const probability = p.reduce((sum, value, n) => sum + value * clickWeight(n, eta, dark), 0);
-    if (!(probability > 0)) throw new StateVanishes('the detector never tells anything');
+    const probability = p.reduce((sum, value, n) => sum + (value === 0 ? 0 : value * weight(n)), 0);
+    if (!(probability > 0)) throw new StateVanishes('the condition has no weight in the number basis');
     return { state: mode === 1 ? joint.second : joint.first, probability: 1, reference: 1 };
   }
-  return gather(joint, mode === 1 ? 2 : 1, (n) => clickWeight(n, eta, dark));
+  return gather(joint, mode === 1 ? 2 : 1, weight);
 }
 
 /** Σ over the other mode's numbers, each with a weight, of what is left of the kept mode. */
@@ -386,6 +378,11 @@ function gather(joint: Ensemble, kept: 1 | 2, weight: (other: number) => number)
       }
       slices.push(slice);
     }
+  }
+  const [only, ...more] = slices;
+  if (only !== undefined && more.length === 0) {
+    const probability = only.re.reduce((sum, value, m) => sum + value * value + only.im[m]! ** 2, 0);
+    return { state: { kind: 'ket', levels: only.re.length, ...only, noise, outside }, probability, reference: 1 };
   }
   if (diagonal) {
     const p = new Float64Array(levels);

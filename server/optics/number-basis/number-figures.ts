@@ -35,6 +35,8 @@ const EPS = 2 ** -52;
 /** A value's truncation error may be this part of it; otherwise the basis is made larger. */
 const WANTED = 1e-13;
 const MOST_ATTEMPTS = 4;
+/** Moments weigh what is outside with photon numbers, some tens of them. */
+const MOMENT_LOG_WEIGHT = Math.log(1e-17);
 /** Levels of a state whose Wigner function is integrated in a number basis although phase space can do it. */
 const WIDEST_NEGATIVITY = 16;
 /** The trace norm of a transposed state feels the root of the weight outside. */
@@ -85,6 +87,22 @@ function firstLogWeight(kind: Figure['kind']): number {
     case 'husimi':
     case 'characteristic':
       return 2 * defaultResolution.logWeight;
+    case 'meanPhotons':
+    case 'amplitude':
+    case 'quadratureMean':
+    case 'fieldCorrelation':
+    case 'visibility':
+      return MOMENT_LOG_WEIGHT;
+    case 'photonVariance':
+    case 'mandelQ':
+    case 'fanoFactor':
+    case 'quadratureVariance':
+    case 'covariance':
+    case 'g2':
+    case 'gN':
+    case 'coincidence':
+    case 'g2Cross':
+      return 2 * MOMENT_LOG_WEIGHT - defaultResolution.logWeight;
     default:
       return defaultResolution.logWeight;
   }

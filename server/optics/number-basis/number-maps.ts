@@ -102,9 +102,29 @@ export function loseDensity(state: NumberDensity, eta: number): NumberDensity {
 
 /** √(C(n, k) ηⁿ⁻ᵏ (1 − η)ᵏ) as rows of k: the amplitude for n photons to lose k. */
 export function lossAmplitudes(levels: number, eta: number): readonly Float64Array[] {
+  if (levels <= FEW_LEVELS) return lossAmplitudesByRatio(levels, eta);
   return Array.from({ length: levels }, (_, k) => {
     const row = new Float64Array(levels);
     for (let n = k; n < levels; n++) row[n] = Math.sqrt(binomialProbability(n, k, 1 - eta));
+    return row;
+  });
+}
+
+/** So few levels that a product along a row keeps its digits. */
+const FEW_LEVELS = 80;
+
+/** The same, each entry of a row from the one before it. */
+function lossAmplitudesByRatio(levels: number, eta: number): readonly Float64Array[] {
+  const lost = Math.sqrt(1 - eta);
+  let start = 1;
+  return Array.from({ length: levels }, (_, k) => {
+    const row = new Float64Array(levels);
+    let here = start;
+    for (let n = k; n < levels; n++) {
+      row[n] = here;
+      here *= Math.sqrt((eta * (n + 1)) / (n + 1 - k));
+    }
+    start *= lost;
     return row;
   });
 }

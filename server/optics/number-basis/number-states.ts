@@ -1,8 +1,8 @@
 import { abs2, conjugate, multiply, phase, times, type Complex } from '../complex';
 import { MethodDoesNotApply, StateVanishes } from '../method-does-not-apply';
 import { DEFAULT_LOG_WEIGHT, levelsFor } from '../photon-bounds';
-import { geometric, poisson } from '../special/distributions';
-import { channelChain, type Channel, type State } from '../state';
+import { binomialProbability, geometric, poisson } from '../special/distributions';
+import { channelChain, channelsOf, isChannel, type Channel, type State } from '../state';
 import { applyUnitary, displacement, squeezer, type NumberUnitary } from './displaced-numbers';
 import { amplifyDensity, amplifyDiagonal, logAdded, loseDensity, loseDiagonal } from './number-maps';
 import {
@@ -15,7 +15,7 @@ import {
   type NumberKet,
   type NumberState,
 } from './one-mode';
-import { conditionedOnClick, conditionedOnNumber, jointState, outputOf } from './joint-states';
+import { clickWeight, conditionedOn, jointState, outputOf } from './joint-states';
 
 /** How finely a state is to be built. */
 export interface Resolution {
@@ -129,15 +129,16 @@ function build(state: State, resolution: Resolution): NumberState {
       return applyChannel(turned, channel, () => resolve(state, resolution));
     }
     case 'output':
-      return outputOf(jointState(state.state, resolution), state.mode);
     case 'heralded':
-      return conditioned(resolution, (finer) =>
-        conditionedOnNumber(jointState(state.state, finer), state.mode, state.n),
-      );
-    case 'clicked':
-      return conditioned(resolution, (finer) =>
-        conditionedOnClick(jointState(state.state, finer), state.mode, state.eta, state.dark),
-      );
+    case 'clicked': {
+      const { joint, kept, weight } = detection(state);
+      const before =
+        state.kind === 'output'
+          ? outputOf(jointState(joint, resolution), state.mode)
+          : conditioned(resolution, (finer) => conditionedOn(jointState(joint, finer), state.mode, weight));
+      if (kept === undefined) return before;
+      return applyChannel(simplest(before), kept, () => resolve(state, resolution));
+    }
     case 'superposition':
       return conditioned(resolution, (finer) => {
         const parts = state.terms
@@ -148,6 +149,46 @@ function build(state: State, resolution: Resolution): NumberState {
     default:
       throw new MethodDoesNotApply('a state of two modes is not one of one');
   }
+}
+
+type Detected = Extract<State, { readonly kind: 'output' | 'heralded' | 'clicked' }>;
+
+/**
+ * What is left to do for the state of one mode of two. Losses and amplifiers on the mode that is left commute with what
+ * is done to the other; those on the other change what its detector tells of a photon number.
+ */
+function detection(state: Detected): {
+  readonly joint: State;
+  /** The channel on the mode that is left. */
+  readonly kept: Channel | undefined;
+  /** What the detector tells of n photons: its probability. */
+  readonly weight: (n: number) => number;
+} {
+  const { channels, inner } = isChannel(state.state) ? channelsOf(state.state) : { channels: [], inner: state.state };
+  const left = state.kind === 'output' ? state.mode : state.mode === 1 ? 2 : 1;
+  const kept = channels.find(({ mode }) => mode === left);
+  const { eta, amplification } = asLossAndGain(
+    channels.find(({ mode }) => mode !== left) ?? { gain: 1, noise: 0, rotation: 0, mode: state.mode },
+  );
+  const joint = inner;
+  if (state.kind === 'output') return { joint, kept, weight: () => 1 };
+  if (state.kind === 'heralded') {
+    if (eta === 1 && amplification === 1) return { joint, kept, weight: (n) => (n === state.n ? 1 : 0) };
+    return { joint, kept, weight: (n) => countedAs(state.n, n, eta, amplification) };
+  }
+  // ⟨(1 − λ)ⁿ⟩ behind an amplifier is 1/(1 + (G − 1)λ) times ⟨(1 − λ')ⁿ⟩ before it, λ' = Gλ/(1 + (G − 1)λ).
+  const spread = 1 + (amplification - 1) * state.eta;
+  const seen = (eta * amplification * state.eta) / spread;
+  return { joint, kept, weight: (n) => clickWeight(n, Math.min(1, seen), state.dark + Math.log(spread)) };
+}
+
+/** The probability that n photons are m behind a loss and an amplifier. */
+function countedAs(m: number, n: number, eta: number, gain: number): number {
+  if (gain === 1) return n < m ? 0 : binomialProbability(n, m, eta);
+  let sum = 0;
+  for (let k = 0; k <= Math.min(m, n); k++)
+    sum += (binomialProbability(n, k, eta) * binomialProbability(m, k, 1 / gain)) / gain;
+  return sum;
 }
 
 /** A state before it is normalised, and the weight to divide by. */
@@ -610,6 +651,11 @@ export function numberDiagonal(state: State, resolution: Resolution = defaultRes
         noise += probability * diagonal.noise;
       }
       return { kind: 'diagonal', levels, p, noise, outside };
+    }
+    case 'output': {
+      const { joint, kept } = detection(state);
+      const before = diagonalOf(outputOf(jointState(joint, resolution), state.mode));
+      return kept === undefined ? before : channelOnDiagonal(before, kept, () => resolve(state, resolution));
     }
     default:
       return diagonalOf(numberState(state, resolution));

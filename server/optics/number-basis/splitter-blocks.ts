@@ -1,52 +1,39 @@
+import { solveBothWays } from './displaced-numbers';
+
 /**
- * A beam splitter on the states of N photons, real part: entry [k, n] = ⟨k, N−k| U |n, N−n⟩ for
+ * What a beam splitter makes of |n, N−n⟩, real part: entry k is ⟨k, N−k| U |n, N−n⟩ for
  * a₁† → √T b₁† − √R b₂†, a₂† → √R b₁† + √T b₂†.
  *
- * Formula: D^N from D^{N−1} by
- * N D[k, n] = √(kn) √T D[k−1, n−1] + √(k(N−n)) √R D[k−1, n] − √((N−k)n) √R D[k, n−1] + √((N−k)(N−n)) √T D[k, n].
- * The average over both ways of taking a photon away keeps the recursion stable to any N.
- * Source: T. Risbo 1996, recursion for Wigner's d functions.
+ * Formula: the column is the eigenvector of T b₁†b₁ + R b₂†b₂ − √(TR)(b₁†b₂ + b₂†b₁) with eigenvalue n, found from both
+ * ends of its three-term recurrence in k; its first entry has the sign (−1)ⁿ.
+ * @param total N
+ * @param n 0 … N
+ * @param transmittance T in [0, 1]
+ * @returns N + 1 entries, absolute error about 1e-15, also in the tails relative to themselves
+ * @example splitterColumn(2, 1, 0.5) = [−1, 0, 1]/√2: two photons leave together
  */
-export class SplitterBlocks {
-  private readonly t: number;
-  private readonly r: number;
-  private block = Float64Array.of(1);
-  private n = 0;
-
-  constructor(transmittance: number) {
-    this.t = Math.sqrt(transmittance);
-    this.r = Math.sqrt(1 - transmittance);
+export function splitterColumn(total: number, n: number, transmittance: number): Float64Array {
+  const sign = n % 2 === 0 ? 1 : -1;
+  if (transmittance === 1 || transmittance === 0 || total === 0) {
+    const column = new Float64Array(total + 1);
+    if (transmittance === 1 || total === 0) column[n] = 1;
+    else column[total - n] = sign;
+    return column;
   }
-
-  /** The block of N photons, row by row, N + 1 to a side; N must not decrease from call to call. */
-  of(total: number): Float64Array {
-    while (this.n < total) this.advance();
-    return this.block;
-  }
-
-  private advance(): void {
-    const total = this.n + 1;
-    const side = total + 1;
-    const old = this.block;
-    const next = new Float64Array(side * side);
-    const { t, r } = this;
-    const roots = new Float64Array(side);
-    for (let k = 0; k < side; k++) roots[k] = Math.sqrt(k);
-    for (let k = 0; k < total; k++) {
-      const up = roots[k + 1]!;
-      const down = roots[total - k]!;
-      for (let n = 0; n < total; n++) {
-        const value = old[k * total + n]! / total;
-        if (value === 0) continue;
-        const right = roots[n + 1]!;
-        const left = roots[total - n]!;
-        next[(k + 1) * side + n + 1]! += up * right * t * value;
-        next[(k + 1) * side + n]! += up * left * r * value;
-        next[k * side + n + 1]! -= down * right * r * value;
-        next[k * side + n]! += down * left * t * value;
-      }
-    }
-    this.block = next;
-    this.n = total;
-  }
+  const reflectance = 1 - transmittance;
+  const both = Math.sqrt(transmittance * reflectance);
+  const beside = new Float64Array(total + 1);
+  for (let k = 0; k < total; k++) beside[k] = both * Math.sqrt((k + 1) * (total - k));
+  // Where the column falls for good: its mean and the reach of its oscillations.
+  const mean = transmittance * n + reflectance * (total - n);
+  const turn = Math.round(mean + 2 * both * Math.sqrt(n * (total - n)));
+  const own = (k: number): number => transmittance * k + reflectance * (total - k) - n;
+  const column = solveBothWays(
+    total + 1,
+    turn,
+    (k, here, before) => (own(k) * here - (k === 0 ? 0 : beside[k - 1]!) * before) / beside[k]!,
+    (k, here, after) => (own(k) * here - beside[k]! * after) / beside[k - 1]!,
+  );
+  if (sign < 0) for (let k = 0; k <= total; k++) column[k] = -column[k]!;
+  return column;
 }

@@ -97,9 +97,14 @@ export function densityAt(state: NumberState, x: number, theta: number): NumberE
  * √(n!/(n+k)!) A^{k/2} e^{−A/2} L_n^{(k)}(A) for n = 0 … count − 1: matrix elements of displacements.
  *
  * Formula: three-term recurrence in n, scaled where the start underflows.
+ * @param values where they go, if they need no array of their own
  */
-export function laguerreFunctions(k: number, a: number, count: number): Float64Array {
-  const values = new Float64Array(count);
+export function laguerreFunctions(
+  k: number,
+  a: number,
+  count: number,
+  values: Float64Array = new Float64Array(count),
+): Float64Array {
   let logScale = a === 0 ? (k === 0 ? 0 : -Infinity) : (k * Math.log(a) - logFactorial(k) - a) / 2;
   let before = 0;
   let here = 1;
@@ -136,8 +141,9 @@ export function displacementTrace(
   let im = 0;
   let size = 0;
   const highest = state.kind === 'diagonal' ? 1 : levels;
+  const shared = new Float64Array(levels);
   for (let k = 0; k < highest; k++) {
-    const functions = laguerreFunctions(k, a, levels - k);
+    const functions = laguerreFunctions(k, a, levels - k, shared);
     const turn = phase(angle * k);
     // ⟨m+k|D|m⟩ has e^{iθk}, ⟨m|D|m+k⟩ has (−1)ᵏ e^{−iθk}.
     const back = k % 2 === 0 ? 1 : -1;
