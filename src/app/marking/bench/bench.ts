@@ -24,6 +24,7 @@ import { FormulaText } from '../../ui/formula-text/formula-text';
 import { FringeStrip } from '../../ui/fringe-strip/fringe-strip';
 import { MarkerToken } from '../../ui/marker-token/marker-token';
 import type { RulerAnswer } from '../../ui/tolerance-ruler/tolerance-ruler';
+import { CorrectPattern } from '../correction/correct-pattern';
 import { Dock } from '../dock/dock';
 import { AnswerCard, type CardPlace } from '../light-table/answer-card';
 import { BenchHand } from './bench-hand';
@@ -40,7 +41,17 @@ const cardPlaces: readonly CardPlace[] = ['in hand', 'next', 'after that'];
 /** Where a pile is marked: the strip, the light table, the dock, and who is on the pile. Everything by keyboard. */
 @Component({
   selector: 'app-bench',
-  imports: [AnswerCard, Dock, ErrorState, FormulaText, FringeStrip, MarkerToken, MatButtonModule, RouterLink],
+  imports: [
+    AnswerCard,
+    CorrectPattern,
+    Dock,
+    ErrorState,
+    FormulaText,
+    FringeStrip,
+    MarkerToken,
+    MatButtonModule,
+    RouterLink,
+  ],
   providers: [PileWatch, BenchHand, BenchNotices, HoldKeeper],
   templateUrl: './bench.html',
   styleUrl: './bench.scss',
@@ -99,6 +110,13 @@ export default class Bench {
   protected readonly chosenGroup = computed(() => {
     const [first] = this.hand.shown();
     return first === undefined ? null : (this.watch.answers().get(first)?.pattern ?? null);
+  });
+
+  protected readonly chosenPattern = computed(() => this.watch.patterns().get(this.chosenGroup() ?? '') ?? null);
+  /** The slips that the part has, as the answer in hand shows them. */
+  protected readonly slipNames = computed(() => {
+    const [first] = this.hand.shown();
+    return (first === undefined ? [] : (this.hand.detail(first)?.slips ?? [])).map(({ name }) => name);
   });
 
   private readonly ratios = computed(

@@ -1,8 +1,10 @@
-import { ChangeDetectionStrategy, Component, computed, input } from '@angular/core';
+import { ChangeDetectionStrategy, Component, computed, inject, input } from '@angular/core';
 import { MatIconModule } from '@angular/material/icon';
 import type { Verdict } from '@shared/problems';
 import { printComplex, printNumber } from '@shared/reading/print';
 import type { FeedbackPart as Part } from '@shared/results';
+import { dayOf } from '@shared/times';
+import { Session } from '../../core/session';
 import { FormulaText } from '../../ui/formula-text/formula-text';
 import type { PrintedGivens } from '../../ui/formula-text/printed-given';
 import { ToleranceRuler } from '../../ui/tolerance-ruler/tolerance-ruler';
@@ -28,6 +30,8 @@ const verdictWords: Readonly<Record<Verdict, { words: string; icon: string; tone
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class FeedbackPart {
+  private readonly session = inject(Session);
+
   readonly part = input.required<Part>();
   readonly givens = input<PrintedGivens>({});
 
@@ -57,6 +61,10 @@ export class FeedbackPart {
     if (verdict === 'right' || !key.band) return null;
     return { key: key.value, band: key.band, answer: key.answer, unit: key.unit ?? '' };
   });
+
+  protected dayOf(at: number): string {
+    return dayOf(at, this.session.course()?.timeZone ?? 'UTC');
+  }
 }
 
 function print(value: unknown, figures: number): string {
