@@ -39,6 +39,8 @@ export const sampledKey = z.union([
     outsideWeight: z.number().optional(),
     second: z.object({ method: z.string(), value: plainValue }).optional(),
     agreesTo: z.number().optional(),
+    /** Of a slip: whether it would pass as right; absent where that is not known. */
+    passes: z.boolean().optional(),
   }),
   z.object({ fault: keyFault }),
 ]);

@@ -1,7 +1,7 @@
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import { problems, record, revisions } from '@drizzle/schema';
-import type { DraftAnswer } from '@shared/problem-draft';
+import { emptySlip, type DraftAnswer } from '@shared/problem-draft';
 import type { ProblemDetail } from '@shared/problem-routes';
 import { defaultConvention } from '@shared/primitives';
 import { buildDraft, buildPart } from '../testing/build-draft';
@@ -263,8 +263,10 @@ describe('samples', () => {
   it('shows states in Dirac notation, formulas typeset with a value, lists as they are', async () => {
     const tolerance = { relative: '1%', absolute: '', significantFigures: '', totalVariation: '2%' };
     const variable = { name: 't', low: '0', high: '2', integers: false, symbol: '', spellings: '' };
+    const turned = { ...emptySlip(), expression: 'ket(0, 1) - i*ket(1, 0)', feedback: 'x' };
+    const swapped = { ...emptySlip(), expression: 'ket(1, 0) - i*ket(0, 1)', feedback: 'x' };
     const answers: Partial<DraftAnswer>[] = [
-      { form: 'state', minimumFidelity: '0.99', key: '(ket(1, 0) + i*ket(0, 1))/sqrt(2)', slips: [] },
+      { form: 'state', minimumFidelity: '0.99', key: '(ket(1, 0) + i*ket(0, 1))/sqrt(2)', slips: [turned, swapped] },
       { form: 'formula', variables: [variable], key: 'nbar*exp(-t)', slips: [] },
       { form: 'distribution', tolerance, key: 'photonDistribution(coherent(sqrt(nbar)), 3)', slips: [] },
     ];
@@ -276,6 +278,9 @@ describe('samples', () => {
     expect(state).toMatchObject({ value: '0.7071i |0,1⟩ + 0.7071 |1,0⟩', method: 'number basis' });
     expect(state.typeset).toContain('|1,0\\rangle');
     expect(state).not.toHaveProperty('compared');
+    // A global phase is no difference.
+    const slips = body.variants[0].parts[0].slips.map((slip: { passes: boolean }) => slip.passes);
+    expect(slips).toEqual([true, false]);
     // nbar = 2.0 is printed, t stays a variable.
     expect(formula.typeset).toMatch(/^\{2\.0\}\\cdot ?\\exp\\left\(- t\\right\)$/);
     expect(formula.example).toMatch(/^\d\.\d+ at t = \d\.\d+$/);

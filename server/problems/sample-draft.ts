@@ -1,9 +1,11 @@
+import { isComputed, type AnswerSpecification } from '@shared/answer-forms';
 import type { FieldProblem } from '@shared/problem-details';
 import type { DraftAnswer, ProblemDraft } from '@shared/problem-draft';
 import type { ProblemSample, SampledKey } from '@shared/problem-routes';
-import { readDraft, readDraftVariables } from '@shared/read-draft';
+import { readDraft, readDraftPart, readDraftVariables } from '@shared/read-draft';
 import type { GivenValues } from '@shared/variants';
-import { comparedPoints, formulaPoints } from '../checks';
+import { comparedPoints, formulaPoints, KeyProblem, type ComputedKey } from '../checks';
+import { passing } from '../checks/audit/passes';
 import { areNumbered, countVariants, drawNumbers, plainGivensOf } from '../variants/draw-givens';
 import { deriveGivens } from '../variants/derive-givens';
 import type { Keys } from '../variants/evaluate-outcomes';
@@ -43,6 +45,7 @@ export async function sampleDraft(keys: Keys, draft: ProblemDraft, options: Samp
     deadline,
   );
   const numbered = areNumbered(content);
+  const answers = draft.parts.map((_, index) => readDraftPart(draft, index)?.answer);
   return {
     count: numbered ? countVariants(content) : null,
     variants: derived.map((variant, index) => ({
@@ -51,7 +54,11 @@ export async function sampleDraft(keys: Keys, draft: ProblemDraft, options: Samp
       parts: (results[index] ?? []).map(({ key, slips }, place) => {
         const part = draft.parts[place];
         const present = (outcome: KeyOutcome) => presentOutcome(outcome, part, draft, variant.givens);
-        return { key: key && present(key), slips: slips.map(present) };
+        const answer = answers[place];
+        return {
+          key: key && present(key),
+          slips: slips.map((slip) => withPassing(present(slip), answer, key, slip)),
+        };
       }),
     })),
     faults: [...read.faults, ...derivationFaults(derived, read.givens)],
@@ -99,6 +106,31 @@ function derivationFaults(
       place === 1 && typeof step === 'number' ? (places[step]?.index ?? step) : step,
     ),
   }));
+}
+
+/** A slip with whether it would pass as right, by the comparisons that answers are judged by. */
+function withPassing(
+  shown: SampledKey,
+  answer: AnswerSpecification | undefined,
+  key: KeyOutcome | null,
+  slip: KeyOutcome,
+): SampledKey {
+  const [right, wrong] = [computedKeyOf(key), computedKeyOf(slip)];
+  if ('fault' in shown || !answer || !isComputed(answer) || !right || !wrong) return shown;
+  try {
+    return { ...shown, passes: passing(answer, right, wrong) !== 'told apart' };
+  } catch (error) {
+    // A key that is not of the part's kind has a fault of its own.
+    if (error instanceof KeyProblem) return shown;
+    throw error;
+  }
+}
+
+function computedKeyOf(outcome: KeyOutcome | null): ComputedKey | undefined {
+  const key = outcome?.key;
+  if (!key) return undefined;
+  if (typeof key.value !== 'string') return { value: key.value, unit: key.unit };
+  return 'compared' in key && key.compared ? { value: key.compared } : undefined;
 }
 
 function presentOutcome(

@@ -97,7 +97,10 @@ export class ExpressionEditor {
           keyLanguage(),
           formulaSetter.of((source) => this.setFormula(source)),
           // Help with a function shows its formula, so the program that sets it comes with the cursor.
-          EditorView.domEventHandlers({ focus: () => void this.typesetter.load() }),
+          EditorView.focusChangeEffect.of((_, focusing) => {
+            if (focusing) this.typesetter.load();
+            return null;
+          }),
           history(),
           EditorView.lineWrapping,
           placeholder(this.hint()),

@@ -32,6 +32,11 @@ describe('slipStanding', () => {
     expect(standing).toEqual({ words: '“T for R” passes as right', needsLook: true });
   });
 
+  it('believes the server, which compares states and formulas', () => {
+    const standing = slipStanding('i |2⟩', [{ name: 'no phase', value: '|2⟩', passes: true }], passes);
+    expect(standing).toEqual({ words: '“no phase” passes as right', needsLook: true });
+  });
+
   it('names two slips that coincide', () => {
     const slips = [
       { name: 'one', value: 0.2 },

@@ -62,6 +62,7 @@ export class SampleTable {
       const slips = (variant.parts[this.index()]?.slips ?? []).map((slip, index) => ({
         name: slipName(answer.slips, index),
         value: valueOf(slip),
+        passes: valued(slip)?.passes,
       }));
       return {
         place,

@@ -100,7 +100,10 @@ export default class KeyLanguagePage {
     });
     toObservable(this.typed)
       .pipe(skip(1), debounceTime(200), takeUntilDestroyed())
-      .subscribe((typed) => this.show({ search: typed?.trim() || null }));
+      .subscribe((typed) => {
+        const search = typed?.trim() ?? '';
+        this.show({ search: search === '' ? null : search });
+      });
   }
 
   protected clear(): void {

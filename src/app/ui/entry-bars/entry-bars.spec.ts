@@ -20,15 +20,15 @@ describe('EntryBars', () => {
     expect(element.querySelector('svg')?.getAttribute('aria-label')).toBe('1: 1; 2: −0.5');
   });
 
-  it('adds up probabilities, counted from no photon', async () => {
-    const element = await show({ entries: [0.5, 0.25], probabilities: true, first: 0 });
-    expect(element.textContent).toContain('2 entries, sum 0.75');
+  it('counts from no photon where the entries are probabilities', async () => {
+    const element = await show({ entries: [0.5, 0.25], first: 0 });
+    expect([...element.querySelectorAll('text')].map((each) => each.textContent.trim())).toEqual(['0', '1']);
     expect(element.querySelector('svg')?.getAttribute('aria-label')).toContain('0: 0.5');
   });
 
   it('has its place before anything is typed', async () => {
-    const element = await show({ entries: [], probabilities: true });
+    const element = await show({ entries: [] });
     expect(element.querySelectorAll('rect')).toHaveLength(0);
-    expect(element.textContent).toContain('drawn as you type');
+    expect(element.querySelector('svg')?.getAttribute('aria-label')).toBe('No entry yet');
   });
 });

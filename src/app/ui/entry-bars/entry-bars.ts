@@ -30,7 +30,6 @@ const mostBars = 48;
       }
       <path [attr.d]="d.zero" />
     </svg>
-    <p class="caption quiet">{{ caption() }}</p>
   `,
   styleUrl: './entry-bars.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -41,19 +40,6 @@ export class EntryBars {
   readonly entries = input.required<readonly number[]>();
   /** The number of the first entry: 0 for photon numbers. */
   readonly first = input(1);
-  /** Whether the entries are probabilities, whose sum is worth a look. */
-  readonly probabilities = input(false);
-
-  protected readonly caption = computed(() => {
-    const entries = this.entries();
-    if (entries.length === 0) return this.probabilities() ? 'drawn as you type' : '';
-    const count = `${String(entries.length)} ${entries.length === 1 ? 'entry' : 'entries'}`;
-    if (!this.probabilities()) return count;
-    return `${count}, sum ${printNumber(
-      entries.reduce((sum, each) => sum + each, 0),
-      5,
-    )}`;
-  });
 
   protected readonly sentence = computed(() => {
     const entries = this.entries();
