@@ -1,5 +1,5 @@
 import { Injectable, inject } from '@angular/core';
-import { EMPTY, Observable, catchError, exhaustMap, filter, merge, map, of, takeWhile, timer } from 'rxjs';
+import { EMPTY, type Observable, catchError, exhaustMap, filter, merge, map, of, takeWhile, timer } from 'rxjs';
 import { hasEnded, type Job } from '@shared/jobs';
 import { JobsApi } from './api/jobs-api';
 import { LiveConnection } from './live-connection';

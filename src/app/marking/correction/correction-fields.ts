@@ -1,4 +1,4 @@
-import { FormArray, FormControl, FormGroup, NonNullableFormBuilder } from '@angular/forms';
+import { type FormArray, type FormControl, type FormGroup, type NonNullableFormBuilder } from '@angular/forms';
 import { isComputed, type AnswerSpecification, type ComputedSpecification } from '@shared/answer-forms';
 import { readTypedNumber, typeNumber } from '@shared/typed-number';
 
