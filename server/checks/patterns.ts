@@ -2,7 +2,7 @@ import type { Check } from './check';
 import { checkAnswer, type CheckInput } from './check-answer';
 import { groupStrength, strengthInWords } from './evidence';
 import type { PossibleRelation } from './possible-relations';
-import { noRelation, numberCandidates, type Relation } from './relation';
+import { noRelation, relationWeight, type Relation } from './relation';
 
 /** An answer of a part, with the key of its own variant. */
 export interface PatternAnswer {
@@ -44,7 +44,6 @@ interface Possible {
 /** How unlikely a group must be, and how unlikely a relation of a single answer, to be named. */
 const namedStrength = 2;
 const mostChanceAlone = 0.02;
-const relationsLookedFor = numberCandidates.length + 4;
 
 const verdictNames: Readonly<Record<string, string>> = {
   right: 'right',
@@ -75,7 +74,7 @@ function groupWrong(wrong: readonly Wrong[]): {
     }
     const ranked = [...members.values()].map((group) => ({
       ...group,
-      strength: groupStrength(group.chances, wrong.length, relationsLookedFor),
+      strength: groupStrength(group.chances, wrong.length, relationWeight(group.relation.name)),
     }));
     const best = ranked.reduce<(typeof ranked)[number] | undefined>(
       (top, group) => (!top || group.strength > top.strength ? group : top),
@@ -87,7 +86,7 @@ function groupWrong(wrong: readonly Wrong[]): {
     );
     const kept = best.ids.filter((id, index) => {
       const chance = best.chances[index] ?? 1;
-      if (best.strength < namedStrength) return chance * relationsLookedFor <= mostChanceAlone;
+      if (best.strength < namedStrength) return chance <= mostChanceAlone * relationWeight(best.relation.name);
       // An answer that lies much nearer to another relation with a group of its own waits for that.
       const rivals = open.get(id)?.possible ?? [];
       return !rivals.some(

@@ -4,7 +4,7 @@ import { compareWithKey } from './compare';
 import { chanceOfRelation, writtenPrecision } from './evidence';
 import { KeyProblem, type ComputedKey } from './key-value';
 import type { Match } from './match';
-import { noRelation, type Relation } from './relation';
+import { noRelation, roundedRelation, type Relation } from './relation';
 import { relationsOf, type RelatedKeys } from './relation-of';
 
 /** A relation that a wrong answer may stand in, with the probability that it does so by chance. */
@@ -62,6 +62,9 @@ function withChances(
     )
     .map(({ relation, deviation }) => ({
       ...relation,
-      chance: numeric && match.answer !== undefined ? chanceOfRelation(deviation, precision) : certain,
+      chance:
+        numeric && match.answer !== undefined && relation !== roundedRelation
+          ? chanceOfRelation(deviation, precision)
+          : certain,
     }));
 }

@@ -3,12 +3,20 @@ import { modulus, real, type Complex } from '@shared/reading/complex';
 import type { Reading, ReadingOf } from '@shared/reading/reading';
 import { readUnit } from '@shared/reading/unit-part';
 import { compareWithKey } from './compare';
+import { isRounded } from './evidence';
 import { formulaAtPoints } from './compare-formula';
 import { asComplex, KeyProblem, type ComputedKey } from './key-value';
 import type { Match } from './match';
 import { relationsBetweenSets } from './relation-of-sets';
 import { relationsBetweenStates } from './relation-of-states';
-import { noRelation, relationsBetween, relationWidth, type Relation, type RelationMatch } from './relation';
+import {
+  noRelation,
+  relationsBetween,
+  relationWidth,
+  roundedRelation,
+  type Relation,
+  type RelationMatch,
+} from './relation';
 import { allowance } from './tolerance';
 
 /** The key of another part, which an answer may have been put down for. */
@@ -100,6 +108,7 @@ export function relationsOf(
       : others;
   }
   if (isOne(match.answer) && isOne(match.key)) {
+    if (isRounded(reading, match.answer.re, match.key.re)) return [{ relation: roundedRelation, deviation: 0 }];
     const allowed =
       part.form === 'number' || part.form === 'complex' ? allowance(modulus(match.key), part.tolerance) : 0;
     return [...relationsBetween(match.answer, match.key, relationWidth(match.key, allowed)), ...others];

@@ -21,6 +21,7 @@ export interface Relation {
 
 export const equalRelation: Relation = { name: 'equal to the key' };
 export const throughRelation: Relation = { name: 'right from the own earlier answer' };
+export const roundedRelation: Relation = { name: 'the key, rounded too coarsely' };
 export const noRelation: Relation = { name: 'no known relation' };
 
 /** A way in which answers go wrong: what the answer would be if it had gone wrong so. */
@@ -78,6 +79,31 @@ export const numberCandidates: readonly Candidate[] = [
   { relation: { name: 'the key minus one' }, of: (key) => subtract(key, one) },
   { relation: { name: 'the key plus one' }, of: (key) => subtract(key, real(-1)) },
 ];
+
+/** The mistakes that people make most (common practice, no source). */
+const usual: ReadonlySet<string> = new Set([
+  'the key with the other sign',
+  'the complex conjugate of the key',
+  'twice the key',
+  'half the key',
+  'one minus the key',
+  'the square of the key',
+  'the square root of the key, an amplitude for an intensity',
+  'the reciprocal of the key',
+  'ten times the key',
+  'a tenth of the key',
+]);
+const usualShare = 5 / 6;
+/** Relations that are looked for beside the candidates: keys of other parts. */
+const others = 4;
+
+/**
+ * The share of one relation in all that are looked for; all together add to 1. The usual mistakes have the larger shares,
+ * so that fewer answers are evidence of them.
+ */
+export function relationWeight(name: string): number {
+  return usual.has(name) ? usualShare / usual.size : (1 - usualShare) / (numberCandidates.length + others - usual.size);
+}
 
 /** Narrowest and widest relative width within which a relation is seen: honest rounding on one side, chance on the other. */
 const narrowest = 2e-3;

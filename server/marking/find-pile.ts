@@ -1,6 +1,16 @@
 import { and, eq, isNotNull } from 'drizzle-orm';
 import type { Queryable } from '@drizzle/client';
-import { answers, corrections, memberships, piles, revisions, scripts, setProblems, sets, users } from '@drizzle/schema';
+import {
+  answers,
+  corrections,
+  memberships,
+  piles,
+  revisions,
+  scripts,
+  setProblems,
+  sets,
+  users,
+} from '@drizzle/schema';
 import type { Colleague } from '@shared/live';
 import type { SetStage } from '@shared/primitives';
 import { partLabel, type Part } from '@shared/problems';
@@ -121,7 +131,7 @@ export function patternOfAnswer(
   answer: { readonly id: string; readonly pileId: string; readonly checkId: string | null },
 ): string {
   const known = remembered.get(answer.pileId)?.get(answer.id);
-  if (known && known.checkId === answer.checkId) return known.pattern;
+  if (known?.checkId === answer.checkId) return known.pattern;
   return answersInOrder(tx, answer.pileId).answers.find(({ id }) => id === answer.id)?.pattern ?? '';
 }
 
