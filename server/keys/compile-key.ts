@@ -48,6 +48,7 @@ export interface CompiledKey {
   run(
     values: ReadonlyMap<string, Value>,
     look?: Look,
+    seed?: string,
   ): { readonly value: Value; readonly figures: readonly ComparedValue[] };
 }
 
@@ -74,10 +75,10 @@ export function compileKey(expression: string, options: CompileOptions): Compile
   return {
     expression,
     uses: [...compiler.uses],
-    run: (values, look) => {
+    run: (values, look, seed) => {
       const figures: ComparedValue[] = [];
       const value = guarded(source.whole, undefined, () =>
-        step({ values, look, convention, note: (figure) => void figures.push(figure) }),
+        step({ values, look, seed, convention, note: (figure) => void figures.push(figure) }),
       );
       return { value, figures };
     },
@@ -104,6 +105,7 @@ function guarded<Result>(
   name: string | undefined,
   act: () => Result,
   argumentsOf?: readonly Place[],
+  values: readonly Value[] = [],
 ): Result {
   try {
     return act();
@@ -119,14 +121,31 @@ function guarded<Result>(
     if (error instanceof Refusal)
       throw new KeyError(name ? `\`${name}\`: ${error.message}` : error.message, place, { functionName: name });
     if (error instanceof RangeError) throw new KeyError('The expression needs more room than there is.', place);
-    throw new KeyError(libraryMessage(error, name), place, { functionName: name });
+    const index = objectedArgument(error);
+    const own = index === undefined ? undefined : argumentsOf?.[index];
+    throw new KeyError(libraryMessage(error, name, values), own ?? place, { functionName: name });
   }
 }
 
+/** Which argument the mathematics library objects to, from 0. */
+function objectedArgument(error: unknown): number | undefined {
+  if (!(error instanceof Error) || !('data' in error)) return undefined;
+  const { data } = error;
+  if (typeof data !== 'object' || data === null || !('index' in data)) return undefined;
+  return typeof data.index === 'number' ? data.index : undefined;
+}
+
 /** What the mathematics library objects to, in our words. */
-function libraryMessage(error: unknown, name: string | undefined): string {
+function libraryMessage(error: unknown, name: string | undefined, values: readonly Value[]): string {
   const message = error instanceof Error ? error.message : String(error);
   const subject = name ? `\`${name}\`: ` : '';
+  const index = objectedArgument(error);
+  if (index !== undefined && name !== undefined) {
+    if (message.startsWith('Too few')) return `${subject}needs more arguments, got ${String(values.length)}`;
+    if (message.startsWith('Too many')) return `${subject}takes fewer arguments, got ${String(values.length)}`;
+    const which = values.length > 1 ? `argument ${String(index + 1)}` : 'its argument';
+    return `${subject}${which} must be ${listFunctions.has(name) ? 'numbers or a list of numbers' : 'a number'}, got ${kindOf(values[index])}`;
+  }
   if (message.startsWith('Units do not match')) return `${subject}the units of both sides do not match`;
   if (message.startsWith('Too few arguments')) return `${subject}needs more arguments`;
   if (message.startsWith('Too many arguments')) return `${subject}takes fewer arguments`;
@@ -134,6 +153,8 @@ function libraryMessage(error: unknown, name: string | undefined): string {
   if (message.startsWith('Dimension mismatch')) return `${subject}the lists are of different lengths`;
   return `${subject}${message}`;
 }
+
+const listFunctions: ReadonlySet<string> = new Set(['sum', 'prod', 'min', 'max', 'mean']);
 
 /** The nodes of the parser, as far as they are looked at. */
 interface Node {
@@ -294,7 +315,7 @@ class Compiler {
         if (state) throw new Refusal(`cannot take ${kindOf(state)}; ask a figure of it, such as \`meanPhotons\``);
         return plain ? plain(...values) : Number.NaN;
       };
-      return number(guarded(place, name, act, places), name, place);
+      return number(guarded(place, name, act, places, values), name, place);
     };
   }
 

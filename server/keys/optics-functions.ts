@@ -15,6 +15,7 @@ import { besselI, besselJ } from '../optics/special/bessel';
 import { hermite, laguerre } from '../optics/special/polynomials';
 import { stateFunctions } from '../optics/states';
 import type { State } from '../optics/state';
+import { g2OfStateOrCounts, sampleCounts } from './counted-functions';
 import { mathematics } from './mathematics';
 import { Refusal } from './plain-functions';
 import { toSi, unitOf, type SiQuantity } from './unit-value';
@@ -23,6 +24,8 @@ import { isComplex, isUnit, kindOf, type Value } from './value';
 /** What a call is made under: the convention, and where computed figures are noted. */
 export interface Surroundings {
   readonly convention: Convention;
+  /** Fixes what is drawn at random; absent where nothing may be. */
+  readonly seed?: string | undefined;
   /** Takes note of a figure, for the method and agreement of the result. */
   note(figure: ComparedValue): void;
 }
@@ -175,12 +178,14 @@ const special: Readonly<Record<string, OpticsFunction>> = {
 
 function bath(values: readonly Value[], amplitudeOf: typeof bathAmplitude): Value {
   expectCount(values, 4);
-  const { amplitude } = amplitudeOf(
-    realAt(values, 0, 'time'),
-    realAt(values, 1, 'frequency'),
-    realsAt(values, 2, 'frequencies of the bath'),
-    realsAt(values, 3, 'couplings'),
-  );
+  const [time, frequency] = [realAt(values, 0, 'time'), realAt(values, 1, 'frequency')];
+  const frequencies = realsAt(values, 2, 'frequencies of the bath');
+  const couplings = realsAt(values, 3, 'couplings');
+  if (couplings.length !== frequencies.length)
+    throw new Refusal(
+      `couplings must be as many as the ${String(frequencies.length)} frequencies of the bath, got ${String(couplings.length)}`,
+    );
+  const { amplitude } = amplitudeOf(time, frequency, frequencies, couplings);
   return mathematics.complex(amplitude.re, amplitude.im);
 }
 
@@ -228,6 +233,7 @@ export const opticsFunctions: Readonly<Record<string, OpticsFunction>> = Object.
   Object.fromEntries(
     (Object.keys(figureFunctions) as (keyof typeof figureFunctions)[]).map((name) => [name, ofFigure(name)]),
   ),
+  { g2: g2OfStateOrCounts(ofFigure('g2')), sampleCounts },
   withUnits,
   special,
 );

@@ -175,7 +175,7 @@ export const figureFunctions = {
     for (const [index, operand] of [state, other].entries()) {
       if (operand.pure) continue;
       throw new OpticsError(
-        `⟨ψ|φ⟩ is defined for pure states only, and \`${operand.kind}\` here is not one; \`fidelity\` takes any`,
+        `state must be pure for ⟨ψ|φ⟩ (\`fidelity\` takes any), got one made by \`${operand.kind}\``,
         { functionName: 'overlap', argument: 'state', argumentIndex: index, given: operand, allowed: 'a pure state' },
       );
     }

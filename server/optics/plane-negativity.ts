@@ -19,6 +19,8 @@ const SERIES_NOISE = 1e-11;
 const TAIL = 5;
 /** Most lines of constant p that are looked at: about two seconds. */
 const MOST_LINES = 12_000;
+const MOST_LOOKS = 120_000;
+const tooMany = () => new MethodDoesNotApply('the zero lines of the Wigner function are too many');
 /** Numbers of nodes between two breaks, tried until two agree to this part of the value. */
 const NODE_COUNTS = [6, 10, 16, 24] as const;
 const WANTED = 1e-9;
@@ -39,7 +41,7 @@ export function planeNegativity(levels: number, radius: number, grid: WignerGrid
   const xs = Float64Array.from({ length: count + 1 }, (_, k) => -radius + 0.37 * step + step * k);
   const coarse = grid(xs, xs);
   const floor = (exact ? NOISE : SERIES_NOISE) * coarse.reduce((most, v) => Math.max(most, Math.abs(v)), 0);
-  const search: LineSearch = { samples: coarse, grid: exact ? grid : undefined, xs, step, floor, lines: 0 };
+  const search: LineSearch = { samples: coarse, grid: exact ? grid : undefined, xs, step, floor, lines: 0, looks: 0 };
   const breaks: number[] = [];
   const counts = Array.from(
     { length: count + 1 },
@@ -66,6 +68,8 @@ interface LineSearch {
   readonly grid: WignerGrid | undefined;
   readonly floor: number;
   lines: number;
+  /** How often points between samples were asked for. */
+  looks: number;
 }
 
 /**
@@ -94,7 +98,7 @@ interface Line {
 const lineAt = (search: LineSearch, p: number): Line => ({ search, p, line: lineOf(search, p) });
 
 function lineOf(search: LineSearch, p: number): Float64Array {
-  if (++search.lines > MOST_LINES) throw new MethodDoesNotApply('the zero lines of the Wigner function are too many');
+  if (++search.lines > MOST_LINES) throw tooMany();
   const { samples, xs, grid } = search;
   if (grid !== undefined) return grid(xs, Float64Array.of(p));
   const side = xs.length;
@@ -111,6 +115,7 @@ function lineOf(search: LineSearch, p: number): Float64Array {
 
 /** W at points of a line. */
 function along(search: LineSearch, p: number, line: Float64Array, at: Float64Array): Float64Array {
+  if (++search.looks > MOST_LOOKS) throw tooMany();
   if (search.grid !== undefined) return search.grid(at, Float64Array.of(p));
   const weights = new Float64Array(line.length);
   return at.map((x) => {

@@ -13,7 +13,7 @@ import {
 import { poisson } from '../special/distributions';
 import { fallingFactorial } from '../special/factorials';
 import { largestNumber } from '../photon-bounds';
-import type { State } from '../state';
+import { channelsOf, isChannel, type State } from '../state';
 import { negativityOf, withoutGaussianUnitaries } from '../wigner-negativity';
 import { jointDiagonal } from './joint-diagonal';
 import { eachAmplitude } from './joint-ket';
@@ -162,6 +162,8 @@ function asksForEntries(figure: Figure): boolean {
     case 'matrixElement':
     case 'densityMatrix':
       return entriesStandAlone(figure.state);
+    case 'jointProbability':
+      return isChannel(figure.state) && largestNumber(channelsOf(figure.state).inner) !== undefined;
     default:
       return false;
   }

@@ -56,7 +56,13 @@ export function phaseSpaceFigure(figure: Figure): PhaseSpaceEstimate {
     case 'photonProbability':
       return probability(withoutPhases(state), figure.n);
     case 'photonDistribution': {
-      const { p, error } = photonDistribution(withoutPhases(state), figure.nmax);
+      const plain = withoutPhases(state);
+      const nbar = thermalMean(plain);
+      if (nbar !== undefined) {
+        const value = Array.from({ length: figure.nmax + 1 }, (_, n) => geometric(n, nbar));
+        return { value, error: 2 ** -50 * (1 + figure.nmax / (1 + nbar)) * Math.max(...value) };
+      }
+      const { p, error } = photonDistribution(plain, figure.nmax);
       return { value: Array.from(p), error: Math.max(...error) };
     }
     case 'countProbability':
