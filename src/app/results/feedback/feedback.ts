@@ -9,6 +9,7 @@ import { PageTitle } from '../../core/page-title';
 import { Session } from '../../core/session';
 import { ErrorState } from '../../ui/error-state/error-state';
 import { FormulaText } from '../../ui/formula-text/formula-text';
+import { Typesetter } from '../../ui/formula-text/typesetter';
 import { LoadingBars } from '../../ui/loading-bars/loading-bars';
 import { FeedbackPart } from './feedback-part';
 import { givensAsFormula, givensByName } from './printed-givens';
@@ -25,6 +26,7 @@ export default class FeedbackPage {
   private readonly api = inject(ResultsApi);
   private readonly session = inject(Session);
   private readonly pageTitle = inject(PageTitle);
+  protected readonly typesetter = inject(Typesetter);
 
   readonly setId = input.required<string>();
 
@@ -63,6 +65,7 @@ export default class FeedbackPage {
   });
 
   constructor() {
+    this.typesetter.load();
     effect(() => {
       if (this.feedback.hasValue()) this.pageTitle.set(`Feedback on set ${String(this.feedback.value().number)}`);
     });

@@ -43,13 +43,21 @@ export class PageThumbnail {
   protected readonly failed = signal(false);
 
   constructor() {
-    effect(() => {
+    effect((onCleanup) => {
       const canvas = this.canvas()?.nativeElement;
       if (!canvas || !this.isPdf()) return;
-      this.pdf.draw(this.address(), 1, canvas, 100).catch(() => {
-        // No connection, or a file that cannot be drawn: a sign stands for it, and the link still leads to it.
-        this.failed.set(true);
+      const address = this.address();
+      // What draws a PDF is larger than the whole sheet: it is fetched for what somebody looks at.
+      const watch = new IntersectionObserver((seen) => {
+        if (!seen.some(({ isIntersecting }) => isIntersecting)) return;
+        watch.disconnect();
+        this.pdf.draw(address, 1, canvas, 100).catch(() => {
+          // No connection, or a file that cannot be drawn: a sign stands for it, and the link still leads to it.
+          this.failed.set(true);
+        });
       });
+      watch.observe(canvas);
+      onCleanup(() => watch.disconnect());
     });
   }
 }

@@ -26,6 +26,7 @@ import { PageTitle } from '../../core/page-title';
 import { Session } from '../../core/session';
 import { ErrorState } from '../../ui/error-state/error-state';
 import { FormulaText } from '../../ui/formula-text/formula-text';
+import { Typesetter } from '../../ui/formula-text/typesetter';
 import { LoadingBars } from '../../ui/loading-bars/loading-bars';
 import { conventionInWords } from '../convention-words';
 import { KeptCopies } from '../kept-copies';
@@ -55,6 +56,7 @@ export default class SheetView {
   private readonly router = inject(Router);
   private readonly pageTitle = inject(PageTitle);
   private readonly host = inject<ElementRef<HTMLElement>>(ElementRef);
+  protected readonly typesetter = inject(Typesetter);
 
   readonly courseId = input.required<string>();
   readonly setId = input.required<string>();
@@ -109,6 +111,8 @@ export default class SheetView {
   });
 
   constructor() {
+    // At the same time as the sheet itself; the paper is shown once both are there, and then stands still.
+    this.typesetter.load();
     effect(() => {
       const sheet = this.fetched.hasValue() ? this.fetched.value() : null;
       if (sheet)

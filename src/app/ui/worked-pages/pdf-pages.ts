@@ -37,11 +37,23 @@ export class PdfPages {
   }
 }
 
-async function load(address: string): Promise<PDFDocumentProxy> {
+/** The library with one worker for all files: each of its own would be fetched and compiled again. */
+const library = async () => {
   const pdf = await import('pdfjs-dist');
   pdf.GlobalWorkerOptions.workerSrc = '/pdf/pdf.worker.min.mjs';
+  return { pdf, worker: new pdf.PDFWorker({}) };
+};
+let loaded: ReturnType<typeof library> | undefined;
+
+async function load(address: string): Promise<PDFDocumentProxy> {
+  loaded ??= library().catch((error: unknown) => {
+    loaded = undefined;
+    throw error;
+  });
+  const { pdf, worker } = await loaded;
   return pdf.getDocument({
     url: address,
+    worker,
     isEvalSupported: false,
     enableXfa: false,
     // Fonts that a file uses without carrying them; they ship with the library.
