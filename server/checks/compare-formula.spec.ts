@@ -44,7 +44,7 @@ describe('formulas', () => {
     const undefinedThere = judge({ n: { integers: [0, 6] } }, () => 1, '(n-3)/(n-3)');
     expect(undefinedThere).toMatchObject({
       verdict: 'wrong',
-      problem: 'The formula is undefined where the key is not.',
+      problem: 'The formula is undefined where the key is not: at n = 3 the key is 1.',
     });
     expect(undefinedThere.point).toMatchObject({ at: { n: 3 }, answer: null });
   });

@@ -1,5 +1,6 @@
 import type { AnswerSpecification } from '@shared/answer-forms';
 import { isFiniteComplex, modulus, real, subtract, type Complex } from '@shared/reading/complex';
+import { printComplex, printNumber } from '@shared/reading/print';
 import { evaluateNumber } from '@shared/reading/quantity';
 import type { ReadingOf } from '@shared/reading/reading';
 import { comparedPoints, formulaPoints } from './formula-points';
@@ -53,6 +54,14 @@ export function compareFormula(reading: ReadingOf<'formula'>, key: ComputedKey, 
       ),
   );
   if (!differing) return matched(true);
-  const undefinedThere = differing.answer === null ? { reason: 'The formula is undefined where the key is not.' } : {};
-  return matched(false, { point: differing, ...undefinedThere });
+  return matched(false, { point: differing, reason: inWords(differing) });
+}
+
+/** Where and how they differ, in a sentence. */
+function inWords({ at, answer, key }: FormulaPoint): string {
+  const place = Object.entries(at)
+    .map(([name, value]) => `${name} = ${printNumber(value, 4)}`)
+    .join(', ');
+  if (!answer) return `The formula is undefined where the key is not: at ${place} the key is ${printComplex(key, 5)}.`;
+  return `At ${place} the formula is ${printComplex(answer, 5)} and the key ${printComplex(key, 5)}.`;
 }

@@ -1,5 +1,6 @@
 import type { AnswerSpecification } from '@shared/answer-forms';
 import { add, conjugate, modulus, multiply, zero } from '@shared/reading/complex';
+import { printNumber } from '@shared/reading/print';
 import type { ReadingOf } from '@shared/reading/reading';
 import { amplitudesOf } from '@shared/reading/superposition';
 import type { StateAmplitude } from '../keys/state-components';
@@ -65,5 +66,9 @@ export function compareState(
       reason: `The answer is a state of ${modes(reading.modes)}, the key one of ${modes(state.modes)}.`,
     });
   }
-  return matched(fidelityWithKey(reading, state) >= part.minimumFidelity - 1e-12);
+  const fidelity = fidelityWithKey(reading, state);
+  if (fidelity >= part.minimumFidelity - 1e-12) return matched(true);
+  return matched(false, {
+    reason: `The fidelity with the key is ${printNumber(fidelity, 4)}; ${printNumber(part.minimumFidelity)} is asked for.`,
+  });
 }

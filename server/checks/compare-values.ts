@@ -1,5 +1,6 @@
-import type { AnswerSpecification } from '@shared/answer-forms';
-import { modulus, real, type Complex } from '@shared/reading/complex';
+import type { AnswerSpecification, Tolerance } from '@shared/answer-forms';
+import { modulus, real, zero, type Complex } from '@shared/reading/complex';
+import { printComplex, printNumber } from '@shared/reading/print';
 import type { ReadingOf } from '@shared/reading/reading';
 import { asComplex, asList, asMatrix, KeyProblem, type ComputedKey } from './key-value';
 import { matched, type Match } from './match';
@@ -27,6 +28,19 @@ export function compareComplex(reading: ReadingOf<'complex'>, key: ComputedKey, 
   return matched(same, { answer: reading.value, key: value });
 }
 
+interface Compared {
+  readonly answer: readonly Complex[];
+  readonly key: readonly Complex[];
+}
+
+/** The first entry that does not lie within the tolerance, or −1. */
+const firstDifference = ({ answer, key }: Compared, tolerance: Tolerance): number =>
+  answer.findIndex((entry, index) => !within(entry, key[index] ?? real(NaN), tolerance));
+
+/** An entry of both sides as the end of a sentence. */
+const bothSides = ({ answer, key }: Compared, index: number): string =>
+  `is ${printComplex(answer[index] ?? zero, 5)} where the key has ${printComplex(key[index] ?? zero, 5)}.`;
+
 /** Compares a list entry by entry; lists of another length are wrong. */
 export function compareList(reading: ReadingOf<'list'>, key: ComputedKey, part: PartOf<'list'>): Match {
   withoutUnit(key);
@@ -39,10 +53,9 @@ export function compareList(reading: ReadingOf<'list'>, key: ComputedKey, part: 
       reason: `The list has ${counted(reading.entries.length)} where the key has ${entries.length}.`,
     });
   }
-  return matched(
-    reading.entries.every((entry, index) => within(entry, entries[index] ?? real(NaN), part.tolerance)),
-    compared,
-  );
+  const differing = firstDifference(compared, part.tolerance);
+  if (differing < 0) return matched(true, compared);
+  return matched(false, { ...compared, reason: `Entry ${differing + 1} ${bothSides(compared, differing)}` });
 }
 
 /** How far the sum of a distribution may lie above one. */
@@ -66,7 +79,10 @@ export function compareDistribution(reading: ReadingOf<'list'>, key: ComputedKey
   }
   const distance =
     entries.reduce((total, { re }, index) => total + Math.abs((reading.entries[index]?.re ?? NaN) - re), 0) / 2;
-  return matched(distance <= part.tolerance.totalVariation + 1e-14, compared);
+  const { totalVariation } = part.tolerance;
+  if (distance <= totalVariation + 1e-14) return matched(true, compared);
+  const reason = `The total variation from the key is ${printNumber(distance, 4)}; ${printNumber(totalVariation)} is allowed.`;
+  return matched(false, { ...compared, reason });
 }
 
 /** Compares a matrix entry by entry; one of another shape is wrong. */
@@ -85,6 +101,11 @@ export function compareMatrix(reading: ReadingOf<'matrix'>, key: ComputedKey, pa
       reason: `The matrix is ${reading.rows.length} × ${reading.rows[0]?.length ?? 0} where the key is ${height} × ${width}.`,
     });
   }
-  const same = compared.answer.every((entry, index) => within(entry, compared.key[index] ?? real(NaN), part.tolerance));
-  return matched(same, compared);
+  const differing = firstDifference(compared, part.tolerance);
+  if (differing < 0) return matched(true, compared);
+  const [row, column] = [Math.floor(differing / width) + 1, (differing % width) + 1];
+  return matched(false, {
+    ...compared,
+    reason: `The entry in row ${row}, column ${column} ${bothSides(compared, differing)}`,
+  });
 }

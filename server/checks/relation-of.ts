@@ -7,6 +7,7 @@ import { isRounded } from './evidence';
 import { formulaAtPoints } from './compare-formula';
 import { asComplex, KeyProblem, type ComputedKey } from './key-value';
 import type { Match } from './match';
+import { relationsInVariables } from './relation-of-formulas';
 import { relationsBetweenSets } from './relation-of-sets';
 import { relationsBetweenStates } from './relation-of-states';
 import {
@@ -100,7 +101,8 @@ export function relationsOf(
     const points = formulaAtPoints(reading, keys.key, part);
     const answer = points.flatMap((point) => (point.answer ? [point.answer] : []));
     if (answer.length < points.length) return [named('undefined where the key is not')];
-    return relationsBetweenSets({ answer, key: points.map(({ key }) => key), width: 1e-6 });
+    const between = relationsBetweenSets({ answer, key: points.map(({ key }) => key), width: 1e-6 });
+    return between.length > 0 ? between : relationsInVariables(reading, points, part.variables);
   }
   if (match.answer === undefined || match.key === undefined) {
     return part.form === 'number' && reading.kind === 'number' && reading.unit

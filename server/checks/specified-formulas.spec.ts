@@ -164,7 +164,7 @@ describe('where a formula is undefined', () => {
     const pole = judgeLine(formulaWith('1', { n: { integers: [0, 6] } }), '(n-3)/(n-3)');
     expect(pole).toMatchObject({
       verdict: 'wrong',
-      problem: 'The formula is undefined where the key is not.',
+      problem: 'The formula is undefined where the key is not: at n = 3 the key is 1.',
       point: { at: { n: 3 }, answer: null, key: { re: 1, im: 0 } },
     });
   });
@@ -176,7 +176,7 @@ describe('where a formula is undefined', () => {
 
   it('shows the marker the first point where the values differ', () => {
     const checked = judgeLine(formulaWith('G/(3*G-2)', { G: [1, 50] }), 'G/(3G+2)');
-    expect(checked).toMatchObject({ verdict: 'wrong', relation: 'no known relation' });
+    expect(checked).toMatchObject({ verdict: 'wrong', relation: 'the key with −G in place of G' });
     if (!('point' in checked) || !checked.point) throw new Error('The point is missing.');
     const gain = checked.point.at['G'] ?? NaN;
     expect(gain).toBeGreaterThan(1);
