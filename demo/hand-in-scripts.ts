@@ -12,7 +12,7 @@ import { submitSheet } from '../server/scripts/submit-sheet';
 import { addPage } from '../server/scripts/worked-pages';
 import { problemsOfSet } from '../server/sets/set-queries';
 import { evaluateVariantKeys, evaluateWithEarlier, partName } from '../server/variants/evaluate-variant-keys';
-import { seededSource } from '../server/variants/random-source';
+import { seededSource } from '../server/keys/random-source';
 import type { DemoClock } from './demo-clock';
 import type { DemonstrationProblem } from './make-course';
 import { simulateAnswer, type SimulatedAnswer } from './simulated-answer';

@@ -8,7 +8,7 @@ import { checkClosedSet } from '../server/sets/close-set';
 import { moveStage } from '../server/sets/move-stage';
 import { demandSet } from '../server/sets/set-queries';
 import { createSet } from '../server/sets/set-rules';
-import { seededSource } from '../server/variants/random-source';
+import { seededSource } from '../server/keys/random-source';
 import { studentCount as everybody } from './accounts';
 import { day, DemoClock, hour } from './demo-clock';
 import { workOnSheet, type Effort, type OpenSet } from './hand-in-scripts';

@@ -8,7 +8,7 @@ import { markAnswer, setAside } from '../server/marking/bench-deeds';
 import { letGo, takeHolds } from '../server/marking/holds';
 import { doerAt } from '../server/marking/marking-routes';
 import { newId } from '../server/http/new-id';
-import { seededSource, type RandomSource } from '../server/variants/random-source';
+import { seededSource, type RandomSource } from '../server/keys/random-source';
 import type { DemoClock } from './demo-clock';
 
 /** What markers write, by how the answer stands to its key. */

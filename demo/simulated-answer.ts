@@ -1,4 +1,4 @@
-import type { RandomSource } from '../server/variants/random-source';
+import type { RandomSource } from '../server/keys/random-source';
 
 /** The mistakes that simulated students make, and what is no mistake. */
 export const mistakes = [

@@ -1,5 +1,5 @@
 import { degrees, PDFDocument, rgb, StandardFonts, type PDFFont, type PDFPage } from 'pdf-lib';
-import type { RandomSource } from '../server/variants/random-source';
+import type { RandomSource } from '../server/keys/random-source';
 
 const ink = rgb(0.16, 0.2, 0.33);
 const rule = rgb(0.86, 0.84, 0.78);

@@ -85,5 +85,12 @@ function argumentsOf(signature: string): readonly { readonly name: string; reado
 export function requestOfExample(expression: string): KeyRequest {
   const called = /^\(?\s*([A-Za-z]\w*)/.exec(expression)?.[1] ?? '';
   const isState = Object.hasOwn(stateFunctions, called);
-  return { expression, givens: {}, convention: defaultConvention, ...(isState ? { wanted: { kind: 'state' } } : {}) };
+  const seed = 'example';
+  return {
+    expression,
+    givens: {},
+    convention: defaultConvention,
+    seed,
+    ...(isState ? { wanted: { kind: 'state' } } : {}),
+  };
 }

@@ -52,10 +52,11 @@ export function readGivens(givens: Readonly<Record<string, GivenValue>>): Readon
 /**
  * Evaluates a compiled expression to a number, a complex number or lists of them.
  *
+ * @param seed fixes what is drawn at random; without it nothing may be
  * @throws KeyError where it has no value, or the value is a state or not finite
  */
-export function evaluateKey(compiled: CompiledKey, values: ReadonlyMap<string, Value>): KeyResult {
-  const { value, figures } = compiled.run(values);
+export function evaluateKey(compiled: CompiledKey, values: ReadonlyMap<string, Value>, seed?: string): KeyResult {
+  const { value, figures } = compiled.run(values, undefined, seed);
   const { unit, plain } = present(value, compiled);
   return { value: plain, ...(unit ? { unit } : {}), ...provenance(plain, figures) };
 }

@@ -12,6 +12,8 @@ export interface KeyRequest {
   readonly convention: Convention;
   /** What it is to come to; a number or a list where nothing is said. */
   readonly wanted?: Wanted | undefined;
+  /** Fixes what is drawn at random; without it nothing may be. */
+  readonly seed?: string | undefined;
 }
 
 /** What an expression came to, or why it has no value. */
@@ -29,7 +31,7 @@ export class KeyEvaluator {
     try {
       const compiled = this.compile(request);
       const givens = readGivens(request.givens);
-      return { key: request.wanted ? evaluateWanted(compiled, givens, request.wanted) : evaluateKey(compiled, givens) };
+      return { key: request.wanted ? evaluateWanted(compiled, givens, request.wanted) : evaluateKey(compiled, givens, request.seed) };
     } catch (error) {
       if (error instanceof KeyError) return { fault: error.toFault() };
       throw error;

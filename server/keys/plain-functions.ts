@@ -1,5 +1,5 @@
 import { mathematics as m } from './mathematics';
-import type { Value } from './value';
+import { kindOf, type Value } from './value';
 
 /** A function of values; what it throws is turned into an error with the place of the call. */
 export type PlainFunction = (...values: readonly Value[]) => Value;
@@ -43,6 +43,33 @@ function round(x: Value, places: Value = 0): Value {
   if (typeof places !== 'number' || !Number.isInteger(places) || places < 0 || places > 15)
     throw new Refusal('takes 0 to 15 decimal places');
   return from(m.round)(x, places);
+}
+
+/**
+ * The variance of a population, estimated from a sample of it: s² = Σ(xⱼ − x̄)²/(N − 1), without bias.
+ *
+ * @param values a list of at least two real numbers
+ * @returns s², in the square of the list's unit, which must be none
+ * @throws Refusal for fewer than two numbers, and for what is no list of real numbers
+ * @example variance([1, 2, 3]) is 1
+ * Source: JCGM 100:2008 (GUM), 4.2.2, equation 4.
+ */
+function variance(...values: readonly Value[]): number {
+  const list = realList(values.length === 1 ? values[0] : [...values]);
+  if (list.length < 2) throw new Refusal('takes at least two numbers: one says nothing about a spread');
+  const mean = list.reduce((sum, each) => sum + each, 0) / list.length;
+  return list.reduce((sum, each) => sum + (each - mean) ** 2, 0) / (list.length - 1);
+}
+
+/** A list of finite real numbers, at least one. @throws Refusal */
+export function realList(value: Value | undefined): readonly number[] {
+  if (!Array.isArray(value) || value.length === 0)
+    throw new Refusal(`takes a list of numbers, got ${value === undefined ? 'nothing' : kindOf(value)}`);
+  return (value as readonly Value[]).map((entry, index) => {
+    if (typeof entry !== 'number' || !Number.isFinite(entry))
+      throw new Refusal(`takes real numbers; entry ${String(index + 1)} is ${kindOf(entry)}`);
+    return entry;
+  });
 }
 
 /** The mathematical functions of the language, by name. */
@@ -89,6 +116,7 @@ export const plainFunctions: Readonly<Record<string, PlainFunction>> = Object.as
     min: from(m.min),
     max: from(m.max),
     mean: from(m.mean),
+    variance,
     round,
     floor: from((x: never) => m.floor(x)),
     ceil: from((x: never) => m.ceil(x)),

@@ -1,7 +1,7 @@
 import type { Given, ProblemContent } from '@shared/problems';
 import type { GivenValue, GivenValues } from '@shared/variants';
 import { printGiven } from './print-given';
-import { seededSource } from './random-source';
+import { seededSource } from '../keys/random-source';
 
 type Givens = Pick<ProblemContent, 'givens'>;
 type Plain = Exclude<Given, { kind: 'derived' }>;
