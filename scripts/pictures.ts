@@ -24,7 +24,9 @@ try {
   const lead = await open();
   const { courseId, setIds, pileId, problemId } = await findDemonstration(lead);
   const course = `/courses/${courseId}`;
-  await take(lead, 'problem', `${course}/problems/${problemId}`);
+  await take(lead, 'problem', `${course}/problems/${problemId}`, async () => {
+    await lead.getByRole('tab', { name: /^\(b\)/ }).click();
+  });
   const marker = await open();
   await signIn(marker, people.marker);
   await take(marker, 'bench', `${course}/marking/${pileId}`);
@@ -37,10 +39,11 @@ try {
   await demonstration.stop();
 }
 
-/** A picture of a page once it stands still. */
-async function take(page: Page, name: string, address: string): Promise<void> {
+/** A picture of a page once it stands still, after something was done on it. */
+async function take(page: Page, name: string, address: string, act?: () => Promise<void>): Promise<void> {
   await page.goto(address);
   await page.getByRole('heading', { level: 1 }).waitFor();
+  await act?.();
   await page.waitForLoadState('networkidle');
   await page.waitForTimeout(1_500);
   const path = join('docs', 'pictures', `${name}.png`);

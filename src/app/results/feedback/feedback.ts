@@ -51,6 +51,8 @@ export default class FeedbackPage {
         }))
       : [],
   );
+  /** Worked pages stand in a column beside the marks; without any there is one column, in the middle. */
+  protected readonly hasPages = computed(() => this.problems().some(({ pages }) => pages.length > 0));
   protected readonly releasedOn = computed(() =>
     this.feedback.hasValue() ? dayOf(this.feedback.value().releasedAt, this.timeZone()) : '',
   );

@@ -75,8 +75,21 @@ function setBlock(block: Block, key: string, setting: Setting): SetBlock {
     if (problem !== undefined) problems.push({ formula: source, message: problem });
     if (known.length > 0) markGiven(element, !known.includes(false), setting.showGivens);
     place.replaceWith(element);
+    if (!place.hasAttribute('data-display')) keepWithPunctuation(element);
   }
   return { key, nodes: [...fragment.childNodes], problems };
+}
+
+/** Lets no line begin with the comma or full stop that follows a formula. */
+function keepWithPunctuation(formula: HTMLElement): void {
+  const after = formula.nextSibling;
+  const [sign] = /^[.,;:!?)\]’”]+/.exec(after?.textContent ?? '') ?? [];
+  if (!sign || !(after instanceof Text)) return;
+  const together = formula.ownerDocument.createElement('span');
+  together.className = 'together';
+  formula.replaceWith(together);
+  together.append(formula, sign);
+  after.data = after.data.slice(sign.length);
 }
 
 function markGiven(element: Element, known: boolean, shown: boolean): void {

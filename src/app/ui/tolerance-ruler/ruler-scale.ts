@@ -103,7 +103,7 @@ const ratios: readonly (readonly [number, string])[] = [
 
 /**
  * The axis answer ÷ key in powers of two, at least from ½ to 2 and at most from 1/64 to 64; what lies beyond, and what has
- * the wrong sign, stands at its end.
+ * the wrong sign, stands at its end. A long axis names every second power.
  */
 export function ratioScale(values: readonly number[], from: number, to: number): RulerScale {
   const powers = values.filter((value) => value > 0 && Number.isFinite(value)).map(Math.log2);
@@ -113,9 +113,10 @@ export function ratioScale(values: readonly number[], from: number, to: number):
     const share = value > 0 ? (Math.log2(value) - low) / (high - low) : 0;
     return from + Math.min(1, Math.max(0, share)) * (to - from);
   };
+  const every = high - low > 7 ? 2 : 1;
   const ticks = ratios
     .filter(([ratio]) => Math.log2(ratio) >= low && Math.log2(ratio) <= high)
-    .map(([ratio, text]) => ({ at: place(ratio), text }));
+    .map(([ratio, text]) => ({ at: place(ratio), text: Math.log2(ratio) % every === 0 ? text : '' }));
   return { kind: 'logarithmic', place, ticks };
 }
 
