@@ -79,6 +79,8 @@ export const sheetProblem = z.object({
   safety: z.string(),
   /** What `\val{name}` prints; only names that the statement prints. */
   givens: z.record(z.string(), z.object({ printed: z.string(), unit: z.string().optional() })),
+  /** Data of the student's own, of names that the statement prints: counts, one a shot. */
+  data: z.array(z.object({ name: z.string(), symbol: z.string(), counts: z.array(z.number().int()).readonly() })),
   /** Where the problem was written under another convention than the course's. */
   convention: convention.nullable(),
   parts: z.array(sheetPart),

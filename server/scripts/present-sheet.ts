@@ -77,6 +77,7 @@ export function presentSheet(tx: Queryable, setId: string, script: ScriptRow, no
       stem: splitStatement(content.statement).stem,
       safety: content.safety,
       givens: printedGivens(content, variants.get(each.setProblem.id)?.givens ?? {}),
+      data: printedData(content, variants.get(each.setProblem.id)?.givens ?? {}),
       convention: isOwn ? theirs : null,
       parts: presentParts(each, saved),
     };
@@ -110,6 +111,15 @@ function printedGivens(content: ProblemContent, values: GivenValues): SheetProbl
       return [[name, { printed: value.printed, ...(value.unit === undefined ? {} : { unit: value.unit }) }]];
     }),
   );
+}
+
+/** The lists of counts that the statement names; those that only keys use stay on the server. */
+function printedData(content: ProblemContent, values: GivenValues): SheetProblem['data'] {
+  const named = new Set(namedGivens(content.statement));
+  return content.givens.flatMap(({ name, symbol }) => {
+    const counts = values[name]?.counts;
+    return counts && named.has(name) ? [{ name, symbol, counts: [...counts] }] : [];
+  });
 }
 
 function presentParts({ setProblem, revision }: ProblemOfSet, saved: readonly SavedPart[]): SheetPart[] {

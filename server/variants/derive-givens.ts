@@ -63,6 +63,7 @@ export function derivationOrder(givens: readonly Given[]): {
  * value.
  *
  * @param variants the givens that are drawn or fixed, of any number of variants; they are computed together
+ * @param seeds fix the counts that are drawn, variant by variant; where they are left out the values of the variant do
  * @param deadline the time by `performance.now()` after which what is left is not evaluated
  */
 export async function deriveGivens(
@@ -70,6 +71,7 @@ export async function deriveGivens(
   content: Content,
   variants: readonly GivenValues[],
   deadline = Infinity,
+  seeds: readonly string[] = [],
 ): Promise<readonly DerivedVariant[]> {
   const { order, faults } = derivationOrder(content.givens);
   const results = variants.map((givens) => ({ givens: { ...givens }, faults: [...faults] }));
@@ -79,7 +81,8 @@ export async function deriveGivens(
     const at: FieldProblem['path'] = ['givens', content.givens.indexOf(given), 'expression'];
     const outcomes = await evaluateOutcomes(
       keys,
-      results.map(({ givens }) => ({
+      results.map(({ givens }, index) => ({
+        seed: `${seeds[index] ?? JSON.stringify(variants[index])}\n${given.name}`,
         expression: given.expression,
         givens: scopeOf(givens),
         convention: content.convention,
@@ -89,11 +92,27 @@ export async function deriveGivens(
     const inItsUnit = await valuesInUnit(keys, content, given, outcomes, results);
     for (const [index, result] of results.entries()) {
       const value = inItsUnit[index];
-      if (typeof value === 'number') result.givens[given.name] = printGiven(given, value);
+      const counts = countsIn(outcomes[index]);
+      if (counts) result.givens[given.name] = { value: counts.length, printed: countsInWords(counts), counts };
+      else if (typeof value === 'number') result.givens[given.name] = printGiven(given, value);
       else result.faults.push({ path: at, ...(value ?? { message: `${given.name} has no value.` }) });
     }
   }
   return results;
+}
+
+/** A list of counts that a derived given came to. */
+function countsIn(outcome: Outcomes[number] | undefined): readonly number[] | undefined {
+  const value = outcome?.key?.value;
+  if (!Array.isArray(value) || value.length === 0) return undefined;
+  const counts = (value as readonly unknown[]).filter(
+    (each): each is number => typeof each === 'number' && Number.isInteger(each) && each >= 0,
+  );
+  return counts.length === value.length ? counts : undefined;
+}
+
+function countsInWords(counts: readonly number[]): string {
+  return `${String(counts.length)} ${counts.length === 1 ? 'count' : 'counts'}`;
 }
 
 type Outcomes = Awaited<ReturnType<typeof evaluateOutcomes>>;
@@ -110,7 +129,8 @@ async function valuesInUnit(
   const values: ValueOrFault[] = outcomes.map((outcome) => {
     if (outcome.fault) return outcome.fault;
     const { value, unit } = outcome.key;
-    if (typeof value !== 'number') return { message: `${given.name} must come to one real number.` };
+    if (typeof value !== 'number')
+      return { message: `${given.name} must come to one real number, or to a list of counts.` };
     if (unit !== undefined && given.unit === undefined)
       return { message: `${given.name} comes out in ${unit}; name the unit in which it is printed.` };
     return value;

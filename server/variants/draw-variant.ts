@@ -22,6 +22,8 @@ export async function drawVariants(
     keys,
     content,
     seeds.map((seed) => drawPlainGivens(content, seed)),
+    Infinity,
+    seeds,
   );
   return derived.map(({ givens, faults: [fault] }) => {
     if (fault) throw new VariantError(fault.message);

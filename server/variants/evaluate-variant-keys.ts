@@ -1,8 +1,8 @@
-import { isComputed, type AnswerSpecification } from '@shared/answer-forms';
+import { isComputed } from '@shared/answer-forms';
 import { partLabel, type Part, type ProblemContent } from '@shared/problems';
 import type { Convention } from '@shared/primitives';
 import type { GivenValues } from '@shared/variants';
-import { comparedPoints, formulaPoints } from '../checks/formula-points';
+import { wantedOf } from '../checks/wanted-of';
 import type { Wanted } from '../keys';
 import { evaluateOutcomes, type Keys } from './evaluate-outcomes';
 import { scopeOf, scopeValueOf, type KeyOutcome, type Scope } from './key-outcome';
@@ -26,13 +26,6 @@ export function expressionsOf(part: Pick<Part, 'answer'>): PartExpressions {
   if (!isComputed(part.answer)) return { key: null, slips: [] };
   const { key, slips = [] } = part.answer;
   return { key, slips: slips.map((slip) => slip.expression), wanted: wantedOf(part.answer) };
-}
-
-/** What the expressions of a part are to come to: a state, or a formula's values at the points where it is compared. */
-export function wantedOf(answer: AnswerSpecification): Wanted | undefined {
-  if (answer.form === 'state') return { kind: 'state' };
-  if (answer.form !== 'formula') return undefined;
-  return { kind: 'formula', points: formulaPoints(answer.variables), enough: comparedPoints };
 }
 
 /** The name under which later parts use the value of the part at an index. */

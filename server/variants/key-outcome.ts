@@ -10,7 +10,7 @@ export type Scope = Readonly<Record<string, GivenValue>>;
 /** The givens of a variant as expressions get them: with their units. */
 export function scopeOf(givens: GivenValues): Scope {
   return Object.fromEntries(
-    Object.entries(givens).map(([name, given]) => [name, withUnit(given.value, given.unit)] as const),
+    Object.entries(givens).map(([name, given]) => [name, given.counts ?? withUnit(given.value, given.unit)] as const),
   );
 }
 

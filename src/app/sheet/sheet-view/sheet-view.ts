@@ -24,6 +24,7 @@ import { ScriptsApi } from '../../core/api/scripts-api';
 import { Now } from '../../core/now';
 import { PageTitle } from '../../core/page-title';
 import { Session } from '../../core/session';
+import { CountsTable } from '../../ui/counts-table/counts-table';
 import { ErrorState } from '../../ui/error-state/error-state';
 import { FormulaText } from '../../ui/formula-text/formula-text';
 import { Typesetter } from '../../ui/formula-text/typesetter';
@@ -38,7 +39,17 @@ const hour = 60 * 60_000;
 /** A student's sheet: one column of paper, kept as it is typed, until it closes. */
 @Component({
   selector: 'app-sheet-view',
-  imports: [ErrorState, FormulaText, LoadingBars, MatButtonModule, MatIconModule, MatMenuModule, RouterLink, SheetPart],
+  imports: [
+    CountsTable,
+    ErrorState,
+    FormulaText,
+    LoadingBars,
+    MatButtonModule,
+    MatIconModule,
+    MatMenuModule,
+    RouterLink,
+    SheetPart,
+  ],
   templateUrl: './sheet-view.html',
   styleUrl: './sheet-view.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
