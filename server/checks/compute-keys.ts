@@ -1,10 +1,9 @@
 import type { ComputedSpecification } from '@shared/answer-forms';
-import { compileKey, evaluateKey, evaluateState, KeyError, readGivens, type GivenValue } from '../keys';
-import { stateComponents } from '../keys/state-components';
+import { KeyError, KeyEvaluator, type GivenValue } from '../keys';
 import type { Convention } from '../optics/convention';
 import type { PartKeys } from './check-answer';
-import { comparedPoints, formulaPoints } from './formula-points';
-import { asComplex, computedKey, type ComputedKey } from './key-value';
+import { computedKey, type ComputedKey } from './key-value';
+import { wantedOf } from './wanted-of';
 
 /** What the expressions of a part may name, and the convention that their figures depend on. */
 export interface Surroundings {
@@ -22,48 +21,20 @@ export interface EarlierPart {
   readonly right: boolean;
 }
 
+const evaluator = new KeyEvaluator();
+
 /**
- * Computes a key or a slip of a part in one variant: a number with its unit, a list, a state in a number basis, or a
- * formula's values at the points where it is compared.
+ * Computes a key or a slip of a part in one variant, in this thread: a number with its unit, a list, a state in a number
+ * basis, or a formula's values at the points where it is compared.
  *
  * @throws KeyError where the expression has no value
  */
-export function computeKey(part: ComputedSpecification, expression: string, { givens, convention }: Surroundings) {
-  const values = readGivens(givens);
-  if (part.form === 'formula') return formulaKey(part, expression, { givens, convention });
-  const compiled = compileKey(expression, { names: [...values.keys()], convention });
-  if (part.form === 'state') return { value: stateComponents(evaluateState(compiled, values)) };
-  return computedKey(evaluateKey(compiled, values));
-}
-
-/** A formula's variables win over givens of the same name. Only as many points are computed as are compared. */
-function formulaKey(
-  part: Extract<ComputedSpecification, { form: 'formula' }>,
-  expression: string,
-  { givens, convention }: Surroundings,
-): ComputedKey {
-  const names = [...new Set([...Object.keys(givens), ...Object.keys(part.variables)])];
-  const compiled = compileKey(expression, { names, convention });
-  const fixed = readGivens(givens);
-  let fault: KeyError | undefined;
-  let defined = 0;
-  const atPoints = formulaPoints(part.variables).map((point) => {
-    if (defined >= comparedPoints) return null;
-    try {
-      const { value, unit } = evaluateKey(compiled, new Map([...fixed, ...Object.entries(point)]));
-      if (unit !== undefined) throw new KeyError('A formula has no unit; divide by it.', null);
-      const number = asComplex(computedKey({ value }).value);
-      defined += 1;
-      return number;
-    } catch (error) {
-      // Undefined at this point: another stands in for it.
-      if (!(error instanceof KeyError)) throw error;
-      fault ??= error;
-      return null;
-    }
-  });
-  if (defined === 0 && fault) throw fault;
-  return { value: { atPoints } };
+export function computeKey(part: ComputedSpecification, expression: string, surroundings: Surroundings): ComputedKey {
+  const { key, fault } = evaluator.evaluate({ expression, ...surroundings, wanted: wantedOf(part) });
+  if (fault) throw new KeyError(fault.message, null);
+  if (!('compared' in key)) return computedKey(key);
+  if (!key.compared) throw new KeyError('The expression does not come to what the part asks for.', null);
+  return { value: key.compared };
 }
 
 /** A slip that has no value matches nothing. */
