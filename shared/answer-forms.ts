@@ -104,7 +104,7 @@ export const variableRangeSchema = z.union(
 export type VariableRange = z.infer<typeof variableRangeSchema>;
 
 /** How a formula's variable is printed and what else stands for it, where no given of its name says so. */
-export const variableWritingSchema = z.strictObject({
+const variableWritingSchema = z.strictObject({
   /** KaTeX, for example `\\bar n`. */
   symbol: z.string().trim().min(1).max(60, 'A symbol is at most 60 characters.').optional(),
   spellings: z
@@ -112,7 +112,6 @@ export const variableWritingSchema = z.strictObject({
     .max(12, 'A variable has at most 12 spellings.')
     .optional(),
 });
-export type VariableWriting = z.infer<typeof variableWritingSchema>;
 
 const label = z
   .string()

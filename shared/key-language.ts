@@ -3,17 +3,16 @@ import { plainValue } from './checks';
 import { defineRoute } from './route';
 
 /** An argument of a function of the key language. */
-export const keyArgument = z.object({
+const keyArgument = z.object({
   name: z.string(),
   /** What it is where it is left out; absent where it cannot be. */
   otherwise: z.string().optional(),
   /** What it may be, in words. */
   domain: z.string(),
 });
-export type KeyArgument = z.infer<typeof keyArgument>;
 
 /** A function of the key language, as completion, help with arguments and its page describe it. */
-export const keyFunction = z.object({
+const keyFunction = z.object({
   name: z.string(),
   /** For example `photonProbability(state, n)`. */
   signature: z.string(),
@@ -41,11 +40,10 @@ export const keyFunction = z.object({
 export type KeyFunction = z.infer<typeof keyFunction>;
 
 /** A physical constant. */
-export const keyConstant = z.object({ name: z.string(), value: z.number(), unit: z.string() });
-export type KeyConstant = z.infer<typeof keyConstant>;
+const keyConstant = z.object({ name: z.string(), value: z.number(), unit: z.string() });
 
 /** All names that key expressions may use. */
-export const keyLanguage = z.object({
+const keyLanguage = z.object({
   /** In the order of the page. */
   functions: z.array(keyFunction).readonly(),
   constants: z.array(keyConstant).readonly(),

@@ -8,7 +8,7 @@ import { givenValues } from './variants';
 const pair = z.tuple([z.number(), z.number()]);
 
 /** What the state in a key looks like in one variant; a part that cannot be drawn is null. */
-export const statePicture = z.object({
+const statePicture = z.object({
   /** Modes of the state; of two, `mode` is shown. */
   modes: z.union([z.literal(1), z.literal(2)]),
   mode: z.union([z.literal(1), z.literal(2)]),
@@ -45,7 +45,6 @@ export const statePicture = z.object({
   asked: z.number().int().nullable(),
 });
 export type StatePicture = z.infer<typeof statePicture>;
-export type WignerPicture = NonNullable<StatePicture['wigner']>;
 
 /** A picture of the state that a key expression is about, for those who write keys. */
 export const keyPictureRoute = defineRoute({

@@ -6,6 +6,8 @@ import { splitStatement } from '@shared/statement';
 import { readTypedNumber, typeNumber } from '@shared/typed-number';
 import type { DraftPart } from '@shared/problem-draft';
 import { FormulaText } from '../../ui/formula-text/formula-text';
+import type { PrintedGivens } from '../../ui/formula-text/printed-given';
+import { OpenProblem } from './open-problem';
 import { SampleVariants } from './sample-variants';
 
 /** How long typing may run ahead of the preview. */
@@ -20,6 +22,7 @@ const previewDelay = 60;
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class StudentView {
+  private readonly open = inject(OpenProblem);
   protected readonly samples = inject(SampleVariants);
 
   readonly statement = input.required<string>();
@@ -27,7 +30,12 @@ export class StudentView {
   readonly safety = input('');
 
   private readonly settled = signal('');
-  protected readonly givens = computed(() => this.samples.shown()?.givens ?? {});
+  /** Values of the variant that is shown; until the first is there each given stands as a gap, not as one that is unknown. */
+  protected readonly givens = computed<PrintedGivens>(
+    () =>
+      this.samples.shown()?.givens ??
+      Object.fromEntries((this.open.draft()?.givens ?? []).map(({ name }) => [name.trim(), { printed: '…' }])),
+  );
   protected readonly split = computed(() => splitStatement(this.settled()));
   protected readonly marks = computed(() =>
     this.parts().map((part) => {
