@@ -10,7 +10,7 @@ import {
   type FigureEstimate,
   type Moment,
 } from '../moments/moment-figures';
-import { poisson } from '../special/distributions';
+import { binomialProbability, geometric, poisson } from '../special/distributions';
 import { fallingFactorial } from '../special/factorials';
 import { largestNumber } from '../photon-bounds';
 import { channelsOf, isChannel, type State } from '../state';
@@ -49,6 +49,10 @@ const NEGATIVITY_LOG_WEIGHT = Math.log(1e-26);
  * @throws OpticsError where the figure is not defined
  */
 export function numberFigure(figure: Figure): NumberFigure {
+  if (figure.kind === 'photonProbability') {
+    const value = entryAlone(figure.state, figure.n);
+    if (value !== undefined) return { value, error: 16 * EPS * value, dimension: figure.n + 1, outsideWeight: 0 };
+  }
   let resolution: Resolution = {
     logWeight: firstLogWeight(figure.kind),
     least: leastLevels(figure),
@@ -145,6 +149,23 @@ function leastLevels(figure: Figure): number {
 
 function of(state: NumberState, value: FigureEstimate['value'], error: number, truncation: number): Truncated {
   return { value, error, truncation, dimension: state.levels, outsideWeight: state.outside };
+}
+
+/** P(n) of the states that have it in closed form, without a basis around it. */
+function entryAlone(state: State, n: number): number | undefined {
+  switch (state.kind) {
+    case 'fock':
+      return state.n === n ? 1 : 0;
+    case 'coherent':
+      return poisson(n, abs2(state.alpha));
+    case 'thermal':
+      return geometric(n, state.nbar);
+    case 'lose':
+      if (state.state.kind === 'fock') return binomialProbability(state.state.n, n, state.eta);
+      return undefined;
+    default:
+      return undefined;
+  }
 }
 
 /** Whether phases are averaged somewhere in a state of one mode, so that it is no finite sum of Gaussians. */

@@ -66,7 +66,7 @@ export function resolve(
   { logWeight, least }: Resolution,
 ): { readonly levels: number; readonly outside: number } {
   // Entries that stand alone need no more levels than are asked for.
-  if (logWeight === 0) return { levels: least, outside: 0 };
+  if (logWeight >= 0) return { levels: least, outside: 0 };
   const { levels, outsideWeight } = levelsFor(state, logWeight);
   return { levels: Math.max(levels, least), outside: outsideWeight };
 }
@@ -191,6 +191,8 @@ function countedAs(m: number, n: number, eta: number, gain: number): number {
   return sum;
 }
 
+const LIKELY_LOG_PROBABILITY = Math.log(0.01);
+
 /** A state before it is normalised, and the weight to divide by. */
 export interface Conditioned {
   readonly state: NumberState;
@@ -205,7 +207,11 @@ export interface Conditioned {
  * the state is built again with as much less outside.
  */
 function conditioned(resolution: Resolution, make: (finer: Resolution) => Conditioned): NumberState {
-  let made = make(resolution);
+  // A condition of one in a hundred is common: allowing for it at once saves building most states twice.
+  let made = make({
+    ...resolution,
+    logWeight: resolution.logWeight + (resolution.logWeight < 0 ? LIKELY_LOG_PROBABILITY : 0),
+  });
   let outside = Infinity;
   for (let attempt = 0; attempt < 3; attempt++) {
     const ratio = made.probability / made.reference;
