@@ -1,6 +1,6 @@
 import { eq } from 'drizzle-orm';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
-import { marks, sets } from '@drizzle/schema';
+import { audits, correctionChanges, corrections, jobs, marks, revisions, setProblems, sets } from '@drizzle/schema';
 import type { Held } from '@shared/marking';
 import { setStageNames, type SetStage } from '@shared/primitives';
 import type { ProblemContent } from '@shared/problems';
@@ -26,6 +26,9 @@ const planted = {
   otherAnswer: '4.0000271828',
   setAside: 'planted reason',
   marker: 'Planted Marker',
+  correctionReason: 'planted reason of a correction',
+  correctionNote: 'planted note to students',
+  auditFinding: 'planted finding of an audit',
 } as const;
 
 const secrets = Object.values(planted);
@@ -88,7 +91,70 @@ function plantedSet(stage: SetStage) {
     values: [plantedCheck('4.1'), plantedCheck(planted.otherAnswer)],
   });
   const marker = harness.makeMember(courseId, 'marker', { name: planted.marker });
-  return { ...built, marker };
+  return { ...built, marker, ...plantedCorrection(built) };
+}
+
+/** A correction that was made of the set's problem, an audit of it, and the job behind both. */
+function plantedCorrection({ setProblemId, problemId, part, handedIn }: ReturnType<typeof buildPile>) {
+  const { db, clock } = harness;
+  const lead = harness.makeMember(courseId, 'lead', { name: planted.marker });
+  const revision = db.select().from(revisions).where(eq(revisions.problemId, problemId)).get();
+  if (!revision) throw new Error('The problem has no revision.');
+  const [jobId, correctionId, createdAt] = [newId(), newId(), clock.now() + 1];
+  db.insert(jobs)
+    .values({ id: jobId, kind: 'key audit', input: revision.content, state: 'done', startedById: lead.id, createdAt })
+    .run();
+  db.insert(audits)
+    .values({
+      id: newId(),
+      problemId,
+      digest: 'd',
+      jobId,
+      variants: 1,
+      findings: [
+        {
+          kind: 'slip equals key',
+          grade: 'stops use',
+          part: 0,
+          sentence: planted.auditFinding,
+          variant: null,
+          count: 1,
+        },
+      ],
+      parts: [],
+      at: createdAt,
+    })
+    .run();
+  db.insert(corrections)
+    .values({
+      id: correctionId,
+      revisionId: revision.id,
+      partId: part.id,
+      content: revision.content,
+      courseId,
+      reason: planted.correctionReason,
+      note: planted.correctionNote,
+      state: 'made',
+      byId: lead.id,
+      createdAt,
+      madeAt: createdAt,
+      previewJobId: jobId,
+      jobId,
+      idempotencyKey: newId(),
+    })
+    .run();
+  db.insert(correctionChanges)
+    .values({
+      id: newId(),
+      correctionId,
+      answerId: handedIn[0]?.answerId ?? '',
+      before: { verdict: 'wrong', relation: planted.relation, total: 0 },
+      after: { verdict: 'slip', relation: planted.slipName, total: 1 },
+      deed: 'mark replaced',
+    })
+    .run();
+  db.update(setProblems).set({ correctionId }).where(eq(setProblems.id, setProblemId)).run();
+  return { jobId, correctionId };
 }
 
 /** Every way that a GET route's address can be filled in with what there is. A route with a new parameter must be added here. */
@@ -102,8 +168,8 @@ function addressesOf(built: ReturnType<typeof plantedSet>): string[] {
     number: ['1'],
     membershipId: [built.handedIn[0]?.student.membershipId ?? '', built.marker.membershipId],
     userId: [built.marker.id],
-    jobId: [newId()],
-    correctionId: [newId()],
+    jobId: [built.jobId],
+    correctionId: [built.correctionId],
     pageId: [newId()],
     stage: setStageNames,
   };
@@ -231,7 +297,8 @@ describe('after the release', () => {
     harness.db.update(sets).set({ stage: 'released' }).where(eq(sets.id, built.setId)).run();
     const student = await harness.agent(built.handedIn[0]?.student ?? null);
     const own = await student.get(`/api/sets/${built.setId}/feedback`).expect(200);
-    for (const seen of [planted.keyValue, planted.slipName, planted.slipFeedback]) expect(own.text).toContain(seen);
+    for (const seen of [planted.keyValue, planted.slipName, planted.slipFeedback, planted.correctionNote])
+      expect(own.text).toContain(seen);
 
     const never = [
       planted.keyConstant,
@@ -240,6 +307,8 @@ describe('after the release', () => {
       planted.guidance,
       planted.otherAnswer,
       planted.marker,
+      planted.correctionReason,
+      planted.auditFinding,
     ];
     const others = [
       built.marker.id,
