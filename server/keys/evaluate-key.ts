@@ -16,7 +16,12 @@ export interface KeyResult {
   /** Dimension of the number basis and the weight outside it, where one was used. */
   readonly dimension?: number;
   readonly outsideWeight?: number;
-  readonly second?: { readonly method: string; readonly value: PlainValue };
+  readonly second?: {
+    readonly method: string;
+    readonly value: PlainValue;
+    readonly dimension?: number;
+    readonly outsideWeight?: number;
+  };
   /** Decimal digits to which two methods agree; absent where one method applies. */
   readonly agreesTo?: number;
 }
@@ -81,9 +86,7 @@ function provenance(value: PlainValue, figures: readonly ComparedValue[]): Omit<
     method: weakest.method,
     ...(weakest.dimension === undefined ? {} : { dimension: weakest.dimension }),
     ...(weakest.outsideWeight === undefined ? {} : { outsideWeight: weakest.outsideWeight }),
-    ...(weakest.second && alone
-      ? { second: { method: weakest.second.method, value: weakest.second.value as PlainValue } }
-      : {}),
+    ...(weakest.second && alone ? { second: { ...weakest.second, value: weakest.second.value as PlainValue } } : {}),
     ...(weakest.agreesTo === undefined ? {} : { agreesTo: weakest.agreesTo }),
   };
 }

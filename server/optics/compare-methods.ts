@@ -102,7 +102,12 @@ export function compareMethods(functionName: string, outcomes: readonly MethodOu
   }
   return {
     ...shown,
-    second: { method: second.method, value: second.value },
+    second: {
+      method: second.method,
+      value: second.value,
+      ...(second.dimension === undefined ? {} : { dimension: second.dimension }),
+      ...(second.outsideWeight === undefined ? {} : { outsideWeight: second.outsideWeight }),
+    },
     agreesTo: agreement(best.value, second.value).digits,
   };
 }

@@ -32,7 +32,13 @@ export interface ComparedValue {
   readonly outsideWeight?: number;
   readonly error: number;
   /** The second method and its value, where two apply. */
-  readonly second?: { readonly method: MethodName; readonly value: FigureValue };
+  readonly second?: {
+    readonly method: MethodName;
+    readonly value: FigureValue;
+    /** Levels of its number basis and the weight outside, where it took one. */
+    readonly dimension?: number;
+    readonly outsideWeight?: number;
+  };
   /** Digits to which the two agree (0 … 16), where two apply. */
   readonly agreesTo?: number;
   /** Methods that were not used, and why. */
