@@ -150,6 +150,13 @@ judged('sin(x)^2', { x: [0, 3] }, [
   ['sin(x^2)', wrong],
 ]);
 
+judged('phi', { phi: [0, 3] }, [
+  ['\\varphi', right],
+  ['φ', right],
+  ['ϕ', right],
+  ['\\phi', right],
+]);
+
 judged('tau*eta*mu', { tau: [1, 2], eta: [0, 1], mu: [1, 2] }, [
   ['τημ', right],
   ['τ η μ', right],

@@ -101,7 +101,8 @@ export function plainSubscript(character: string): string | undefined {
  */
 export function canonicalName(text: string): string {
   let result = '';
-  for (const character of text.normalize('NFD')) {
+  const plain = text.replace(/\\var(?=epsilon|theta|kappa|pi|rho|sigma|phi)/g, '');
+  for (const character of plain.normalize('NFD')) {
     if (character in greekLetters) result += greekLetters[character] ?? '';
     else if (character === '\u0304' || character === '\u0305') result += 'bar';
     else if (character === '\u0302') result += 'hat';
