@@ -25,7 +25,7 @@ try {
   const { courseId, setIds, pileId, problemId } = await findDemonstration(lead);
   const course = `/courses/${courseId}`;
   await take(lead, 'problem', `${course}/problems/${problemId}`, async () => {
-    await lead.getByRole('tab', { name: /^\(b\)/ }).click();
+    await lead.getByRole('button', { name: /^\(b\)/ }).click();
   });
   const marker = await open();
   await signIn(marker, people.marker);
