@@ -1,6 +1,6 @@
 import { isComputed, optionLabel, type AnswerSpecification } from '@shared/answer-forms';
 import { typeNumber } from '@shared/typed-number';
-import { toleranceNames } from './correction-fields';
+import { toleranceNames, typeFraction } from './correction-fields';
 
 /** One thing that a correction amends, before and after. */
 export interface Amendment {
@@ -39,7 +39,7 @@ function describe(answer: AnswerSpecification): ReadonlyMap<string, string> {
     const feedback = slip.feedback === '' ? '' : `: ${slip.feedback}`;
     words.set(
       `slip ${String(index + 1)}`,
-      `${slip.name ? `${slip.name}, ` : ''}${slip.expression}, ${typeNumber(slip.fraction)} of the marks${feedback}`,
+      `${slip.name ? `${slip.name}, ` : ''}${slip.expression}, ${typeFraction(slip.fraction)} of the marks${feedback}`,
     );
   }
   return words;

@@ -1,7 +1,7 @@
 import { TestBed } from '@angular/core/testing';
 import { NonNullableFormBuilder } from '@angular/forms';
 import type { AnswerSpecification } from '@shared/answer-forms';
-import { amendedAnswer, correctionForm, slipForm } from './correction-fields';
+import { amendedAnswer, correctionForm, slipForm, typeFraction } from './correction-fields';
 
 const forms: readonly AnswerSpecification[] = [
   {
@@ -26,6 +26,16 @@ describe('the fields of a correction', () => {
   it.each(forms)('give back what they were filled with ($form)', (answer) => {
     const form = correctionForm(TestBed.inject(NonNullableFormBuilder), answer);
     expect(amendedAnswer(answer, form)).toEqual(answer);
+  });
+
+  it.each([
+    [1 / 3, '1/3'],
+    [5 / 6, '5/6'],
+    [0.5, '0.5'],
+    [0, '0'],
+    [0.123456, '0.123456'],
+  ])('write the fraction %d as %s', (fraction, typed) => {
+    expect(typeFraction(fraction)).toBe(typed);
   });
 
   it('amend key, tolerance and slips', () => {

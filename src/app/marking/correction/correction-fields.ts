@@ -43,6 +43,17 @@ export function toleranceNames(answer: AnswerSpecification): readonly ToleranceN
   return answer.form === 'distribution' ? ['totalVariation'] : ['relative', 'absolute', 'significantFigures'];
 }
 
+/** A fraction as people write it, `1/3`, where its decimals would not end soon. */
+export function typeFraction(fraction: number): string {
+  const decimal = typeNumber(fraction);
+  if (decimal.length <= 5) return decimal;
+  for (let below = 3; below <= 12; below += 1) {
+    const above = Math.round(fraction * below);
+    if (above / below === fraction) return `${String(above)}/${String(below)}`;
+  }
+  return decimal;
+}
+
 /** A new row for a slip. */
 export function slipForm(
   fb: NonNullableFormBuilder,
@@ -52,7 +63,7 @@ export function slipForm(
     name: slip.name ?? '',
     expression: slip.expression ?? '',
     feedback: slip.feedback ?? '',
-    fraction: typeNumber(slip.fraction ?? 0),
+    fraction: typeFraction(slip.fraction ?? 0),
   });
 }
 
