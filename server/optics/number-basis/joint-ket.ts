@@ -52,6 +52,10 @@ class KetBuilder {
     block.im[n1]! += im;
   }
 
+  get isEmpty(): boolean {
+    return this.blocks.length === 0;
+  }
+
   get ket(): JointKet {
     return { blocks: Array.from({ length: this.levels }, (_, total) => this.blocks[total]) };
   }
@@ -238,16 +242,14 @@ function branches(
   for (const ket of kets) {
     for (let k = 0; k < most; k++) {
       const builder = new KetBuilder(levels);
-      let any = false;
       eachAmplitude(ket, (n1, n2, re, im) => {
         const own = mode === 1 ? n1 : n2;
         const factor = amplitude(k, own);
         if (factor === 0 || own + sign * k < 0) return;
-        any = true;
         if (mode === 1) builder.add(n1 + sign * k, n2, re * factor, im * factor);
         else builder.add(n1, n2 + sign * k, re * factor, im * factor);
       });
-      if (any) out.push(builder.ket);
+      if (!builder.isEmpty) out.push(builder.ket);
     }
   }
   return out;

@@ -381,18 +381,19 @@ function countsOf(diagonal: NumberDiagonal, m: number, eta: number, dark: number
 
 function blockOf(basis: NumberState, nmax: number): Truncated {
   const side = nmax + 1;
-  let isReal = true;
   let error = 0;
+  // How far the largest imaginary part stands out of its rounding.
+  let imaginary = 0;
   const cells: Complex[][] = Array.from({ length: side }, (_, m) =>
     Array.from({ length: side }, (__, n) => {
       const cell = elementOf(basis, m, n);
       const own = elementError(basis, m, n);
-      if (Math.abs(cell.im) > Math.max(own, EPS * 4)) isReal = false;
+      imaginary = Math.max(imaginary, Math.abs(cell.im) - Math.max(own, EPS * 4));
       error = Math.max(error, own);
       return cell;
     }),
   );
-  const value = isReal ? cells.map((row) => row.map((cell) => cell.re)) : cells;
+  const value = imaginary <= 0 ? cells.map((row) => row.map((cell) => cell.re)) : cells;
   return of(basis, value, error, inside(basis));
 }
 
