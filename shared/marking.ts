@@ -193,6 +193,8 @@ export const benchAnswer = z.object({
   /** Marks this person may see, the oldest first. */
   history: z.array(mark),
   setAside: z.object({ reason: z.string(), byId: identifier.nullable() }).nullable(),
+  /** Why a mark that a person gave is to be looked at again; it stands meanwhile. */
+  anotherLook: z.string().nullable(),
 });
 export type BenchAnswer = z.infer<typeof benchAnswer>;
 

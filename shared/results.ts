@@ -10,7 +10,7 @@ export const releaseCanBeTakenBack = 10 * 60_000;
 
 /** One thing to be looked at before a release. */
 export const readinessItem = z.object({
-  name: z.enum(['closed', 'handed in', 'marked', 'set aside']),
+  name: z.enum(['closed', 'handed in', 'marked', 'set aside', 'another look']),
   ready: z.boolean(),
   /** What is so, or what is to be done. */
   sentence: z.string(),

@@ -18,6 +18,7 @@ import { newId } from '../http/new-id';
 import { workJobs } from '../jobs/work-jobs';
 import type { Emitted } from '../live/live';
 import { studentsRoom } from '../live/rooms';
+import { checkSubmission } from '../scripts/check-submission';
 import { buildCheck, buildContent, buildPile } from '../marking/testing/build-pile';
 import { createHarness, type Harness } from '../testing/harness';
 
@@ -236,13 +237,18 @@ describe('a correction', () => {
     for (const secret of [words.reason, leadPerson.name, leadPerson.id]) expect(text.includes(secret)).toBe(false);
   });
 
-  it('lets a lead say that a mark stands', async () => {
+  it('lets a lead say that a mark stands, which a release waits for', async () => {
     const built = buildAnswered();
     const correction = await make(await proposed(built.pileId));
+    const waits = async () => (await lead.get(`/api/sets/${built.setId}/release`).expect(200)).text;
+    expect(await waits()).toContain('1 mark that a person gave waits for another look');
+    const seen = await lead.get(`/api/answers/${built.byPerson}/bench`).expect(200);
+    expect((seen.body as { anotherLook: string }).anotherLook).toContain(words.reason);
     const path = `/api/corrections/${correction.id}/answers/${built.byPerson}/mark-stands`;
     await lead.post(path).send({}).expect(204);
     expect(answerOf(built.byPerson)).toMatchObject({ anotherLook: null, standingMarkId: built.markId });
     await lead.post(path).send({}).expect(404);
+    expect(await waits()).not.toContain('another look');
     expect(
       harness.db
         .select()
@@ -250,6 +256,55 @@ describe('a correction', () => {
         .all()
         .map(({ action }) => action),
     ).toContain('mark stands');
+  });
+
+  it('is undone for an answer by marking it again: the flag goes with the new mark', async () => {
+    const built = buildAnswered();
+    await make(await proposed(built.pileId));
+    const benchId = newId();
+    await lead.post(`/api/piles/${built.pileId}/holds`).send({ benchId, answerId: built.byPerson }).expect(200);
+    const criteria = built.part.criteria.map(({ id }) => ({ criterionId: id, awarded: true }));
+    await lead
+      .post(`/api/answers/${built.byPerson}/marks`)
+      .set('If-Match', `"${String(answerOf(built.byPerson)?.version)}"`)
+      .set('Idempotency-Key', newId())
+      .send({ benchId, criteria, reason: 'Right by the corrected key.' })
+      .expect(201);
+    expect(answerOf(built.byPerson)).toMatchObject({ anotherLook: null, state: 'marked' });
+    expect(markOf(built.byPerson)).toMatchObject({ total: 3, replacesId: built.markId });
+  });
+
+  it('does not take an answer out of the hand of who marks it', async () => {
+    const built = buildAnswered();
+    const [, twice] = built.handedIn;
+    const marker = await harness.agent(built.marker);
+    const benchId = newId();
+    await marker.post(`/api/piles/${built.pileId}/holds`).send({ benchId, answerId: twice!.answerId }).expect(200);
+    await make(await proposed(built.pileId));
+    // The check is a new one, so the mark that was begun is refused with the answer as it is now, and nothing is lost.
+    expect(answerOf(twice!.answerId)).toMatchObject({ state: 'waits' });
+    const criteria = built.part.criteria.map(({ id }) => ({ criterionId: id, awarded: true }));
+    const send = (version: number) =>
+      marker
+        .post(`/api/answers/${twice!.answerId}/marks`)
+        .set('If-Match', `"${String(version)}"`)
+        .set('Idempotency-Key', newId())
+        .send({ benchId, criteria });
+    await send(1).expect(412);
+    await send(answerOf(twice!.answerId)?.version ?? 0).expect(201);
+  });
+
+  it('judges what is handed in while it is made by the corrected key', async () => {
+    const built = buildAnswered('open');
+    const correction = await proposed(built.pileId);
+    const { submissionId } = harness.db.select().from(checks).get()!;
+    const before = harness.db.select().from(checks).all().length;
+    // Judged under the key before, stored after: what was computed meanwhile must not be kept.
+    const late = checkSubmission(harness.context, submissionId);
+    const made = make(correction);
+    await Promise.all([late, made]);
+    const rows = harness.db.select().from(checks).all().slice(before);
+    expect(rows.every(({ result }) => result.key?.value === 4)).toBe(true);
   });
 
   it('follows through to later parts, whose answers change with it', async () => {

@@ -11,7 +11,7 @@ import type { Keys } from '../variants/evaluate-outcomes';
 export type CorrectionRow = typeof corrections.$inferSelect;
 
 /** The courses that a person leads. */
-export function ledCourses(tx: Queryable, userId: string): readonly string[] {
+function ledCourses(tx: Queryable, userId: string): readonly string[] {
   return tx
     .select({ courseId: memberships.courseId })
     .from(memberships)

@@ -34,7 +34,7 @@ export function demandCorrection(tx: Queryable, correctionId: string): Correctio
 }
 
 /** What a correction builds on: the correction before it, or the revision. */
-export function contentBefore(tx: Queryable, row: Pick<CorrectionRow, 'basedOnId' | 'revisionId'>): ProblemContent {
+function contentBefore(tx: Queryable, row: Pick<CorrectionRow, 'basedOnId' | 'revisionId'>): ProblemContent {
   const before =
     row.basedOnId === null
       ? tx.select().from(revisions).where(eq(revisions.id, row.revisionId)).get()

@@ -133,7 +133,7 @@ function firstAbove(cumulative: readonly number[], share: number): number {
  * Source: normally ordered moments of R. J. Glauber, Phys. Rev. 130 (1963) 2529; their estimate by factorial moments of
  *   counts, L. Mandel and E. Wolf, Optical Coherence and Quantum Optics (1995), chapter 14 (both from memory).
  */
-export function g2Estimate(counts: Value | undefined): number {
+function g2Estimate(counts: Value | undefined): number {
   const list = realList(counts);
   const odd = list.find((each) => !Number.isInteger(each) || each < 0);
   if (odd !== undefined) throw new Refusal(`counts must be whole numbers from 0, got ${String(odd)}`);

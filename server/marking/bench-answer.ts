@@ -62,6 +62,7 @@ export async function presentBenchAnswer(context: Context, viewer: Viewer, answe
     standing: standing ? presentMark(standing) : null,
     history: history.map(presentMark),
     setAside: answer.setAsideReason === null ? null : { reason: answer.setAsideReason, byId: answer.setAsideById },
+    anotherLook: answer.anotherLook,
   };
 }
 

@@ -21,7 +21,7 @@ import { latestRevision } from './problem-queries';
 const longestWait = 40_000;
 
 /** Audits one content of a problem, which need not be saved: the digest tells what the findings are of. */
-export const keyAuditJob = defineJob({
+const keyAuditJob = defineJob({
   kind: 'key audit',
   input: z.object({ problemId: z.uuid(), digest: z.string(), content: problemContent }),
   async run({ db, keys, clock }, { jobId, input, progress }) {
@@ -43,7 +43,7 @@ export const keyAuditJob = defineJob({
 });
 
 /** SHA-256 of all that an audit depends on; title, tags and mark scheme are no part of it. */
-export function auditDigest(content: AuditedContent): string {
+function auditDigest(content: AuditedContent): string {
   const { statement, givens, convention } = content;
   const answers = content.parts.map((part) => part.answer);
   return createHash('sha256').update(inOneOrder({ statement, givens, convention, answers })).digest('hex');
@@ -59,7 +59,7 @@ function inOneOrder(value: unknown): string {
 }
 
 /** The newest audit of a content. */
-export function findAudit(tx: Queryable, problemId: string, digest: string): KeyAudit | null {
+function findAudit(tx: Queryable, problemId: string, digest: string): KeyAudit | null {
   const row = tx
     .select()
     .from(audits)

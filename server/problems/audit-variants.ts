@@ -75,7 +75,7 @@ function auditedOutcome({ key, fault }: KeyOutcome): AuditedOutcome {
 }
 
 /** The other conventions in use, each different from the problem's own in one thing. */
-export function otherConventions(
+function otherConventions(
   own: Convention,
 ): readonly { readonly kind: OtherConvention['kind']; readonly words: string; readonly convention: Convention }[] {
   const variances = ([0.25, 0.5, 1] as const).filter((each) => each !== own.vacuumVariance);

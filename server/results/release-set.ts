@@ -117,7 +117,12 @@ export function takeBackRelease(tx: Queryable, setId: string, version: number, r
 
 function readinessOf(tx: Queryable, { set }: FoundSet): ReadinessItem[] {
   const rows = tx
-    .select({ pileId: answers.pileId, scriptId: answers.scriptId, state: answers.state })
+    .select({
+      pileId: answers.pileId,
+      scriptId: answers.scriptId,
+      state: answers.state,
+      anotherLook: answers.anotherLook,
+    })
     .from(answers)
     .innerJoin(piles, eq(piles.id, answers.pileId))
     .where(eq(piles.setId, set.id))
@@ -126,16 +131,18 @@ function readinessOf(tx: Queryable, { set }: FoundSet): ReadinessItem[] {
   const theirs = rows.filter((row) => inCourse.has(row.scriptId));
   const columns = pilesOfSet(tx, set.id);
   const expected = inCourse.size * columns.length;
-  const missingIn = (state: string) =>
+  const inPiles = (isMissing: (row: (typeof theirs)[number]) => boolean) =>
     columns
       .map(({ pile, setProblem, partLabel }) => ({
         id: pile.id,
         name: `${String(setProblem.position)} (${partLabel})`,
-        missing: theirs.filter((row) => row.pileId === pile.id && row.state === state).length,
+        missing: theirs.filter((row) => row.pileId === pile.id && isMissing(row)).length,
       }))
       .filter((pile) => pile.missing > 0);
-  const waiting = missingIn('waits');
-  const aside = missingIn('set aside');
+  const waiting = inPiles(({ state }) => state === 'waits');
+  const aside = inPiles(({ state }) => state === 'set aside');
+  const again = inPiles(({ anotherLook }) => anotherLook !== null);
+  const againCount = countIn(again);
   const waitingCount = countIn(waiting);
   const asideCount = countIn(aside);
   const notHandedIn = new Set(theirs.filter((row) => row.state === null).map((row) => row.scriptId));
@@ -179,6 +186,17 @@ function readinessOf(tx: Queryable, { set }: FoundSet): ReadinessItem[] {
           : `${plural(asideCount, 'answer is', 'answers are')} set aside and to be looked at.`,
       piles: aside,
     },
+    // Said only after a correction.
+    ...(againCount === 0
+      ? []
+      : [
+          {
+            name: 'another look' as const,
+            ready: false,
+            sentence: `${plural(againCount, 'mark that a person gave waits', 'marks that persons gave wait')} for another look after a correction. Mark the answer again, or say on the correction’s page that the mark stands.`,
+            piles: again,
+          },
+        ]),
   ];
 }
 

@@ -49,7 +49,7 @@ function inWords(figures: number): string {
  * To how many figures students will round: what the statement asks for, or else the fewest figures of the decimals that
  * it prints. A whole number is taken to be exact.
  */
-export function figuresShown(input: AuditInput, index: number): { readonly figures: number; readonly why: string } {
+function figuresShown(input: AuditInput, index: number): { readonly figures: number; readonly why: string } {
   const { stem, parts } = splitStatement(input.content.statement);
   const own = parts.find((part) => part.label === partLabel(index))?.text ?? '';
   for (const text of [own, stem]) {
@@ -68,7 +68,7 @@ export function figuresShown(input: AuditInput, index: number): { readonly figur
 }
 
 /** The figures that a text asks for: `to three significant figures`. */
-export function askedFigures(text: string): number | undefined {
+function askedFigures(text: string): number | undefined {
   const found = new RegExp(`\\b(${words.join('|')}|[1-8])[ -](?:significant[ -])?(?:figures?|digits?)\\b`, 'i').exec(
     text,
   );
