@@ -10,7 +10,7 @@ import type { FieldProblem } from './problem-details';
 import type { DraftAnswer, DraftGiven, DraftPart, DraftVariable, ProblemDraft } from './problem-draft';
 import { problemFaults } from './problem-faults';
 import { given, part, problemContent, type Given, type Part, type ProblemContent } from './problems';
-import { readTypedList, readTypedNumber, typedDecimals, typeNumber } from './typed-number';
+import { readTypedList, readTypedNumber, typedDecimals, typeFraction, typeNumber } from './typed-number';
 
 /** What could be made of a draft. */
 export interface ReadDraft {
@@ -324,8 +324,8 @@ function draftOfGiven(content: Given): DraftGiven {
   }
 }
 
-function typeOptional(value: number | undefined): string {
-  return value === undefined ? '' : typeNumber(value);
+function typeOptional(value: number | undefined, type = typeNumber): string {
+  return value === undefined ? '' : type(value);
 }
 
 function draftOfAnswer(answer: AnswerSpecification): DraftAnswer {
@@ -336,7 +336,7 @@ function draftOfAnswer(answer: AnswerSpecification): DraftAnswer {
     form: answer.form,
     key: computed?.key ?? '',
     unit: answer.form === 'number' ? (answer.unit ?? '') : '',
-    unitFraction: answer.form === 'number' ? typeOptional(answer.unitFraction) : '',
+    unitFraction: answer.form === 'number' ? typeOptional(answer.unitFraction, typeFraction) : '',
     tolerance: {
       relative: percentOf(pick('relative')),
       absolute: pick('absolute'),
@@ -373,9 +373,9 @@ function draftOfAnswer(answer: AnswerSpecification): DraftAnswer {
       name: slip.name ?? '',
       expression: slip.expression,
       feedback: slip.feedback,
-      fraction: typeNumber(slip.fraction),
+      fraction: typeFraction(slip.fraction),
     })),
-    followThrough: typeOptional(computed?.followThrough),
+    followThrough: typeOptional(computed?.followThrough, typeFraction),
   };
 }
 

@@ -50,3 +50,14 @@ export function typedDecimals(text: string): number | undefined {
 export function typeNumber(value: number): string {
   return Object.is(value, -0) ? '0' : String(value);
 }
+
+/** A fraction as people write it, `1/3`, where its decimals would not end soon. */
+export function typeFraction(fraction: number): string {
+  const decimal = typeNumber(fraction);
+  if (decimal.length <= 5) return decimal;
+  for (let below = 3; below <= 12; below += 1) {
+    const above = Math.round(fraction * below);
+    if (above / below === fraction) return `${String(above)}/${String(below)}`;
+  }
+  return decimal;
+}

@@ -1,6 +1,6 @@
 import { type FormArray, type FormControl, type FormGroup, type NonNullableFormBuilder } from '@angular/forms';
 import { isComputed, type AnswerSpecification, type ComputedSpecification } from '@shared/answer-forms';
-import { readTypedNumber, typeNumber } from '@shared/typed-number';
+import { readTypedNumber, typeFraction, typeNumber } from '@shared/typed-number';
 
 /** One slip as it is typed. */
 type SlipForm = FormGroup<{
@@ -41,17 +41,6 @@ export type ToleranceName = keyof typeof toleranceWords;
 export function toleranceNames(answer: AnswerSpecification): readonly ToleranceName[] {
   if (!isComputed(answer) || answer.form === 'state') return [];
   return answer.form === 'distribution' ? ['totalVariation'] : ['relative', 'absolute', 'significantFigures'];
-}
-
-/** A fraction as people write it, `1/3`, where its decimals would not end soon. */
-export function typeFraction(fraction: number): string {
-  const decimal = typeNumber(fraction);
-  if (decimal.length <= 5) return decimal;
-  for (let below = 3; below <= 12; below += 1) {
-    const above = Math.round(fraction * below);
-    if (above / below === fraction) return `${String(above)}/${String(below)}`;
-  }
-  return decimal;
 }
 
 /** A new row for a slip. */
