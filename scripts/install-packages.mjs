@@ -1,4 +1,4 @@
-import { existsSync, readdirSync, writeFileSync } from 'node:fs';
+import { existsSync, readFileSync, readdirSync, rmSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { canRun, howToInstallCompiler, missingForCompiling } from './check-machine.mjs';
 import { hashFiles, isOutdated } from './hash-inputs.mjs';
@@ -6,6 +6,8 @@ import { root } from './root.mjs';
 import { runCommand } from './run-command.mjs';
 
 const marker = join(root, 'node_modules', '.halfsilver-installed');
+/** Holds the process that is installing: two at once would empty each other's folder. */
+const lock = join(root, '.installing');
 
 // Native packages are compiled for one line of Node.js: another one needs them anew.
 const hash = () => hashFiles(root, ['package-lock.json'], process.versions.modules);
@@ -17,7 +19,59 @@ export function rememberInstall() {
 
 /** Installs the packages where they are missing or another lockfile's; says so while it takes its time. */
 export async function installPackages() {
-  if (!isOutdated(marker, hash())) return;
+  if (isOutdated(marker, hash())) {
+    await takeLock();
+    try {
+      // Another command may have done it meanwhile.
+      if (isOutdated(marker, hash())) await install();
+    } finally {
+      rmSync(lock, { force: true });
+    }
+  }
+}
+
+/** Waits until no other command is installing. */
+async function takeLock() {
+  for (let said = false; ; said = true) {
+    try {
+      writeFileSync(lock, String(process.pid), { flag: 'wx' });
+      // A command that ends while it installs leaves no lock behind.
+      process.once('exit', () => {
+        rmSync(lock, { force: true });
+      });
+      return;
+    } catch (error) {
+      if (/** @type {NodeJS.ErrnoException} */ (error).code !== 'EEXIST') throw error;
+    }
+    if (!isRunning(Number(readLock()))) rmSync(lock, { force: true });
+    else {
+      if (!said) console.log('Another command is installing the packages; waiting for it …');
+      await new Promise((resolve) => setTimeout(resolve, 1_000));
+    }
+  }
+}
+
+function readLock() {
+  try {
+    return readFileSync(lock, 'utf8');
+  } catch {
+    return '';
+  }
+}
+
+/** @param {number} pid */
+function isRunning(pid) {
+  if (!Number.isInteger(pid) || pid <= 0) return false;
+  try {
+    process.kill(pid, 0);
+    return true;
+  } catch (error) {
+    // A process of somebody else's may not be asked.
+    return /** @type {NodeJS.ErrnoException} */ (error).code === 'EPERM';
+  }
+}
+
+async function install() {
   const missing = missingForCompiling(canRun, process.platform);
   console.log('Installing packages. This happens once and takes two to four minutes.');
   if (missing.length > 0) {
