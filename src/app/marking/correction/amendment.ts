@@ -1,6 +1,6 @@
 import { isComputed, optionLabel, type AnswerSpecification } from '@shared/answer-forms';
-import { typeNumber } from '@shared/typed-number';
-import { toleranceNames, typeFraction } from './correction-fields';
+import { typeFraction, typeNumber } from '@shared/typed-number';
+import { toleranceNames } from './correction-fields';
 
 /** One thing that a correction amends, before and after. */
 export interface Amendment {

@@ -1,7 +1,8 @@
 import { TestBed } from '@angular/core/testing';
 import { NonNullableFormBuilder } from '@angular/forms';
 import type { AnswerSpecification } from '@shared/answer-forms';
-import { amendedAnswer, correctionForm, slipForm, typeFraction } from './correction-fields';
+import { typeFraction } from '@shared/typed-number';
+import { amendedAnswer, correctionForm, slipForm } from './correction-fields';
 
 const forms: readonly AnswerSpecification[] = [
   {

@@ -317,7 +317,10 @@ export default class Composer {
   }
 
   protected async setStatus(status: ProblemStatus): Promise<void> {
+    // Making ready audits the revision first where that was not done yet.
+    if (status === 'ready') this.audit.lookAgainSoon();
     await this.attempt(() => this.open.setStatus(status));
+    this.audit.lookAgainSoon();
   }
 
   protected async copy(): Promise<void> {

@@ -65,6 +65,13 @@ export class ProblemAudit {
     return findings.length > 0 ? 'to look at' : 'audit clean';
   }
 
+  /** Looks again a little later: something that was asked for may begin an audit, or need one. */
+  lookAgainSoon(): void {
+    clearTimeout(this.timer);
+    const detail = this.open.detail();
+    if (detail) this.timer = setTimeout(() => void this.fetch(detail.id), rest);
+  }
+
   /** Audits what is written, once it is saved. */
   async run(): Promise<void> {
     await this.open.keep();
