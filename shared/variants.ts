@@ -7,7 +7,7 @@ export const givenValue = z.object({
   /** As the statement prints it, without the unit, for example `0.70`; keys use this rounded value. */
   printed: z.string(),
   unit: z.string().optional(),
-  /** Of a list of counts its entries; `value` is how many there are, `printed` says so in words. */
+  /** Of a list of counts its entries; `value` is how many there are, as is printed. */
   counts: z.array(z.number().int()).readonly().optional(),
 });
 export type GivenValue = z.infer<typeof givenValue>;

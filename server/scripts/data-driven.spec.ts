@@ -40,7 +40,7 @@ describe('a part with data of the student’s own', () => {
     expect(more).toEqual([]);
     expect(data).toMatchObject({ name: 'counts', symbol: 'm_j' });
     expect(data?.counts).toHaveLength(200);
-    expect(mine.problems[0]?.givens['counts']).toEqual({ printed: '200 counts' });
+    expect(mine.problems[0]?.givens['counts']).toEqual({ printed: '200', unit: 'counts' });
     expect((await read(student)).problems[0]?.data[0]?.counts).toEqual(data?.counts);
     // Nothing else differs between them: the data are drawn for each, not for each value of the givens.
     expect(theirs.problems[0]?.data[0]?.counts).not.toEqual(data?.counts);

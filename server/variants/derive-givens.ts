@@ -1,6 +1,6 @@
 import type { FieldProblem } from '@shared/problem-details';
 import type { Given, ProblemContent } from '@shared/problems';
-import type { GivenValues } from '@shared/variants';
+import type { GivenValue, GivenValues } from '@shared/variants';
 import { evaluateOutcomes, type Keys } from './evaluate-outcomes';
 import { scopeOf } from './key-outcome';
 import { printGiven } from './print-given';
@@ -93,7 +93,7 @@ export async function deriveGivens(
     for (const [index, result] of results.entries()) {
       const value = inItsUnit[index];
       const counts = countsIn(outcomes[index]);
-      if (counts) result.givens[given.name] = { value: counts.length, printed: countsInWords(counts), counts };
+      if (counts) result.givens[given.name] = countsGiven(counts);
       else if (typeof value === 'number') result.givens[given.name] = printGiven(given, value);
       else result.faults.push({ path: at, ...(value ?? { message: `${given.name} has no value.` }) });
     }
@@ -111,8 +111,9 @@ function countsIn(outcome: Outcomes[number] | undefined): readonly number[] | un
   return counts.length === value.length ? counts : undefined;
 }
 
-function countsInWords(counts: readonly number[]): string {
-  return `${String(counts.length)} ${counts.length === 1 ? 'count' : 'counts'}`;
+function countsGiven(counts: readonly number[]): GivenValue {
+  const { length } = counts;
+  return { value: length, printed: String(length), unit: length === 1 ? 'count' : 'counts', counts };
 }
 
 type Outcomes = Awaited<ReturnType<typeof evaluateOutcomes>>;

@@ -2,9 +2,10 @@ import { ChangeDetectionStrategy, Component, computed, effect, inject, input, si
 import { MatButtonModule } from '@angular/material/button';
 import { MatIconModule } from '@angular/material/icon';
 import { MatTooltipModule } from '@angular/material/tooltip';
-import { splitStatement } from '@shared/statement';
+import { namedGivens, splitStatement } from '@shared/statement';
 import { readTypedNumber, typeNumber } from '@shared/typed-number';
 import type { DraftPart } from '@shared/problem-draft';
+import { CountsTable } from '../../ui/counts-table/counts-table';
 import { FormulaText } from '../../ui/formula-text/formula-text';
 import type { PrintedGivens } from '../../ui/formula-text/printed-given';
 import { OpenProblem } from './open-problem';
@@ -16,7 +17,7 @@ const previewDelay = 60;
 /** The statement as a student sees it, with the values of one sample variant, which can be walked through. */
 @Component({
   selector: 'app-student-view',
-  imports: [FormulaText, MatButtonModule, MatIconModule, MatTooltipModule],
+  imports: [CountsTable, FormulaText, MatButtonModule, MatIconModule, MatTooltipModule],
   templateUrl: './student-view.html',
   styleUrl: './student-view.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -36,6 +37,14 @@ export class StudentView {
       this.samples.shown()?.givens ??
       Object.fromEntries((this.open.draft()?.givens ?? []).map(({ name }) => [name.trim(), { printed: '…' }])),
   );
+  /** Lists of counts that the statement names, as students get them. */
+  protected readonly data = computed(() => {
+    const named = namedGivens(this.settled());
+    return (this.open.draft()?.givens ?? []).flatMap(({ name, symbol }) => {
+      const counts = this.samples.shown()?.givens[name.trim()]?.counts;
+      return counts && named.includes(name.trim()) ? [{ name: name.trim(), symbol, counts }] : [];
+    });
+  });
   protected readonly split = computed(() => splitStatement(this.settled()));
   protected readonly marks = computed(() =>
     this.parts().map((part) => {
