@@ -37,6 +37,18 @@ export function presentJob({ id, kind, state, done, total, problem, createdAt, f
   return { id, kind, state, done, total, problem, createdAt, finishedAt };
 }
 
+/** The oldest job that waits, or that its process left. */
+export function waitingJob(tx: Queryable, now: number): JobRow | undefined {
+  const left = and(eq(jobs.state, 'running'), lt(jobs.aliveAt, now - silence));
+  return tx
+    .select()
+    .from(jobs)
+    .where(or(eq(jobs.state, 'queued'), left))
+    .orderBy(asc(jobs.createdAt))
+    .limit(1)
+    .get();
+}
+
 /**
  * Claims the oldest job that waits, or that its process left. Of several processes one gets it, since they write one
  * after the other.
@@ -44,14 +56,7 @@ export function presentJob({ id, kind, state, done, total, problem, createdAt, f
  * @param claimant names the process
  */
 export function claimJob(tx: Queryable, claimant: string, now: number): JobRow | undefined {
-  const left = and(eq(jobs.state, 'running'), lt(jobs.aliveAt, now - silence));
-  const row = tx
-    .select()
-    .from(jobs)
-    .where(or(eq(jobs.state, 'queued'), left))
-    .orderBy(asc(jobs.createdAt))
-    .limit(1)
-    .get();
+  const row = waitingJob(tx, now);
   if (!row) return undefined;
   if (row.attempts >= mostAttempts) {
     endJob(tx, row.id, 'failed', now, 'It was begun three times and the server stopped each time. Try it again.');

@@ -2,7 +2,17 @@ import type { Context } from '../context';
 import { newId } from '../http/new-id';
 import { personRoom } from '../live/rooms';
 import { JobCancelled, JobFailure, runnerOf } from './job-kinds';
-import { claimJob, endJob, findJob, noteProgress, presentJob, releaseClaims, silence, type JobRow } from './job-queue';
+import {
+  claimJob,
+  endJob,
+  findJob,
+  noteProgress,
+  presentJob,
+  releaseClaims,
+  silence,
+  waitingJob,
+  type JobRow,
+} from './job-queue';
 
 /** Names this process among those that share the database. */
 const thisProcess = newId();
@@ -49,7 +59,8 @@ async function workAll(context: Context): Promise<void> {
   const { db, clock } = context;
   // Every caller's transaction is committed before the first job is looked for.
   await Promise.resolve();
-  for (;;) {
+  // Looking takes no lock; claiming does.
+  while (waitingJob(db, clock.now())) {
     const row = db.transaction((tx) => claimJob(tx, thisProcess, clock.now()), { behavior: 'immediate' });
     if (!row) return;
     await workOn(context, row);
