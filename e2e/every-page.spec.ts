@@ -39,6 +39,7 @@ test('every page of a lead', async ({ page }) => {
     at(`sets/${setIds[4] ?? ''}/settings`),
     at('marking'),
     at(`marking/${pileId}`),
+    at(`marking/${pileId}/correction`),
     at('results'),
     at(`results/${setIds[1] ?? ''}`),
     at(`results/${setIds[2] ?? ''}/release`),
