@@ -32,7 +32,7 @@ import { LoadingBars } from '../../ui/loading-bars/loading-bars';
                     matButton="outlined"
                     [routerLink]="[set.setId, 'release']"
                     [attr.aria-label]="'Release of set ' + set.number"
-                    >Release</a
+                    >{{ isReleased(set) ? 'The release' : 'Release' }}</a
                   >
                 </span>
               </li>
@@ -61,6 +61,10 @@ export default class ResultsList {
     stream: ({ params }) => this.api.resultsList(params),
   });
   protected readonly problem = computed(() => (this.list.error() ? sentenceOf(this.list.error()) : null));
+
+  protected isReleased({ stage }: ResultsSummary): boolean {
+    return stage === 'released' || stage === 'archived';
+  }
 
   protected marksOf(set: ResultsSummary): string {
     const aside = set.setAside > 0 ? `, ${String(set.setAside)} set aside` : '';
