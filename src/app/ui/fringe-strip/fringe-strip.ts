@@ -125,10 +125,11 @@ export class FringeStrip {
   protected readonly brackets = computed(() => {
     const groups = this.layout().groups;
     const last = groups.at(-1);
-    // The last name may lean to the left, where the strip ends before it does.
+    // The last name may lean to the left, where the strip ends before it does, as far as the name before it lets it.
     const lastName = last ? Math.min(textWidth(last.name, 14) + 6, 120) : 0;
     const lean = last !== undefined && this.width() - last.from < lastName;
-    const lastLeft = lean ? this.width() - lastName : (last?.from ?? 0);
+    const before = groups.at(-2)?.from ?? -Infinity;
+    const lastLeft = lean ? Math.min(last.from, Math.max(this.width() - lastName, before + 28)) : (last?.from ?? 0);
     return groups.map((group, index) => {
       const next = index + 2 === groups.length ? lastLeft : (groups[index + 1]?.from ?? this.width() + 8);
       const left = group === last ? lastLeft : group.from;
@@ -137,7 +138,7 @@ export class FringeStrip {
         name: group.name,
         tally: `${group.marked} of ${group.bars.length}`,
         left,
-        room: Math.max(20, next - 8 - left),
+        room: Math.max(20, (group === last ? this.width() : next - 8) - left),
         lean: group === last && lean,
         line: `M${group.from} 2v6H${Math.max(group.to, group.from + 6)}v-6`,
         chosen: group.key === this.chosenGroup(),
