@@ -7,10 +7,11 @@ import { stateFunctions } from '../optics/states';
 import { KeyError } from './key-error';
 import { mathematics } from './mathematics';
 import { binaryOperators, truth, unaryOperators } from './operators';
-import { opticsFunctions, type Surroundings } from './optics-functions';
+import { opticsFunctions } from './optics-functions';
 import { physicalConstants } from './physical-constants';
 import { longestList, plainFunctions, Refusal } from './plain-functions';
 import { SourceText, type Place } from './source-text';
+import type { Surroundings } from './surroundings';
 import { isUnitName, unitOf } from './unit-value';
 import { hasNaN, kindOf, type Value } from './value';
 

@@ -4,9 +4,9 @@ import { figureByMethods } from '../optics/figure-by-methods';
 import { figureFunctions } from '../optics/figures';
 import { isState } from '../optics/state';
 import { stateFunctions } from '../optics/states';
-import type { OpticsFunction, Surroundings } from './optics-functions';
 import { realList, Refusal } from './plain-functions';
 import { seededSource, type RandomSource } from './random-source';
+import type { OpticsFunction, Surroundings } from './surroundings';
 import { kindOf, type Value } from './value';
 
 /** Most trials of a simulated experiment: as long as a list may be. */

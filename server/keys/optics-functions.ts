@@ -3,7 +3,6 @@ import { compareMethods } from '../optics/compare-methods';
 import type { Convention } from '../optics/convention';
 import { figureByMethods } from '../optics/figure-by-methods';
 import { figureFunctions, type FigureValue } from '../optics/figures';
-import type { ComparedValue } from '../optics/methods';
 import {
   photonEnergy,
   photonEnergyOfWavelength,
@@ -18,20 +17,9 @@ import type { State } from '../optics/state';
 import { g2OfStateOrCounts, sampleCounts } from './counted-functions';
 import { mathematics } from './mathematics';
 import { Refusal } from './plain-functions';
+import type { OpticsFunction } from './surroundings';
 import { toSi, unitOf, type SiQuantity } from './unit-value';
 import { isComplex, isUnit, kindOf, type Value } from './value';
-
-/** What a call is made under: the convention, and where computed figures are noted. */
-export interface Surroundings {
-  readonly convention: Convention;
-  /** Fixes what is drawn at random; absent where nothing may be. */
-  readonly seed?: string | undefined;
-  /** Takes note of a figure, for the method and agreement of the result. */
-  note(figure: ComparedValue): void;
-}
-
-/** A function of the language that knows of light. */
-export type OpticsFunction = (values: readonly Value[], surroundings: Surroundings) => Value;
 
 /** A figure's value in the terms of expressions. */
 function fromFigure(value: FigureValue): Value {
@@ -233,7 +221,5 @@ export const opticsFunctions: Readonly<Record<string, OpticsFunction>> = Object.
   Object.fromEntries(
     (Object.keys(figureFunctions) as (keyof typeof figureFunctions)[]).map((name) => [name, ofFigure(name)]),
   ),
-  { g2: g2OfStateOrCounts(ofFigure('g2')), sampleCounts },
-  withUnits,
-  special,
+  { ...withUnits, ...special, g2: g2OfStateOrCounts(ofFigure('g2')), sampleCounts },
 );
