@@ -19,7 +19,9 @@ export class JobWatch {
    */
   follow(job: Job): Observable<Job> {
     let known = job;
-    const asked = timer(between / 2, between).pipe(exhaustMap(() => this.api.job(job.id).pipe(catchError(() => EMPTY))));
+    const asked = timer(between / 2, between).pipe(
+      exhaustMap(() => this.api.job(job.id).pipe(catchError(() => EMPTY))),
+    );
     const told = this.live.of('jobMoved').pipe(
       filter(({ jobId }) => jobId === job.id),
       // Whatever ends it may say more than the fact does.

@@ -27,7 +27,7 @@ export class ApiClient {
     const headers: Record<string, string> = {};
     if (parts.version !== undefined) headers['If-Match'] = `"${String(parts.version)}"`;
     if (parts.idempotencyKey !== undefined) headers['Idempotency-Key'] = parts.idempotencyKey;
-    const url = `/api${pathOf(route, (parts.params ?? {}))}`;
+    const url = `/api${pathOf(route, parts.params ?? {})}`;
     const options = { headers, params: queryOf(parts.query), body: parts.body as unknown };
     return this.http
       .request<unknown>(route.method, url, options)
