@@ -17,6 +17,9 @@ const subjects = [
   'record',
   'files',
   'corrections',
+  'receipts',
+  'queries',
+  'own-data',
 ];
 
 /** What subjects stand on; each folder with those that it may use. */
