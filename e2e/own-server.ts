@@ -49,7 +49,7 @@ export class OwnServer {
 
 /** The tests' `test`, with an empty installation (`DEMO=off`) of the test's own, already started. */
 export const test = base.extend<{ ownServer: OwnServer }>({
-  ownServer: async ({ browserName: _ }, use) => {
+  ownServer: async ({ browser }, use) => {
     const dataDir = mkdtempSync(join(tmpdir(), 'halfsilver-own-'));
     const port = String(await freePort());
     const origin = `http://localhost:${port}`;
@@ -57,6 +57,8 @@ export const test = base.extend<{ ownServer: OwnServer }>({
     const server = new OwnServer(origin, env);
     await server.start();
     await use(server);
+    // Pages that are still open would look for it, and say on the console that it is gone.
+    for (const context of browser.contexts()) await context.close();
     await server.stop();
     rmSync(dataDir, { recursive: true, force: true });
   },
