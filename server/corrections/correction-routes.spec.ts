@@ -397,7 +397,6 @@ describe('a correction is refused', () => {
   it('by the job where it cannot be finished: nothing is half made', async () => {
     const built = buildAnswered();
     const correction = await proposed(built.pileId);
-    await confirm(correction).expect(200);
     // A mark that cannot be written any more, in the middle of the transaction.
     const [, twice] = built.handedIn;
     harness.db
@@ -412,6 +411,7 @@ describe('a correction is refused', () => {
         idempotencyKey: `correction ${correction.id}`,
       })
       .run();
+    await confirm(correction).expect(200);
     await workJobs(harness.context);
     expect(await read(correction.id)).toMatchObject({ state: 'confirmed', job: { state: 'failed' } });
     expect(answerOf(built.handedIn[0]!.answerId)).toMatchObject({ state: 'marked' });
