@@ -188,7 +188,7 @@ class Compiler {
   ) {}
 
   compile(tree: MathNode): Step {
-    return this.step(tree as unknown as Node);
+    return this.step(tree);
   }
 
   private step(node: Node): Step {
