@@ -77,7 +77,7 @@ async function loadReleasedSet(world: World): Promise<void> {
   };
   context.db.transaction(
     (tx) => {
-      releaseSet(tx, set.setId, row.version, undefined, releaser);
+      releaseSet(tx, set.setId, row.version, {}, releaser);
     },
     { behavior: 'immediate' },
   );

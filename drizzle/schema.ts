@@ -3,10 +3,13 @@ import { check, index, integer, real, sqliteTable, text, uniqueIndex } from 'dri
 import type { AuditFinding, PartAudit } from '@shared/audit';
 import type { AnswerDigest, CheckResult } from '@shared/checks';
 import type { CorrectionStep } from '@shared/corrections';
+import type { LateRule } from '@shared/late-rule';
 import type { MarkedCriterion } from '@shared/marking';
 import type { ProblemDraft } from '@shared/problem-draft';
 import type { ProblemContent } from '@shared/problems';
 import { setStageNames } from '@shared/primitives';
+import { queryPolicies } from '@shared/query-policy';
+import { reviewDecisionKinds, type CommentAnchor } from '@shared/review';
 import type { GivenValue } from '@shared/variants';
 
 /*
@@ -76,6 +79,26 @@ export const guesses = sqliteTable('guesses', {
   lockedUntil: time(),
 });
 
+/** Secret addresses of calendar feeds, stored as SHA-256; a person has one at a time. */
+export const calendarAddresses = sqliteTable(
+  'calendar_addresses',
+  {
+    id: id(),
+    userId: text()
+      .notNull()
+      .references(() => users.id),
+    hash: text().notNull(),
+    createdAt: time().notNull(),
+    revokedAt: time(),
+  },
+  (table) => [
+    uniqueIndex('calendar_addresses_hash').on(table.hash),
+    uniqueIndex('calendar_addresses_person')
+      .on(table.userId)
+      .where(sql`revoked_at is null`),
+  ],
+);
+
 // ----------------------------------------------------------------------------------------------------------- courses
 
 export const courses = sqliteTable('courses', {
@@ -89,6 +112,8 @@ export const courses = sqliteTable('courses', {
   splitterPhase: real()
     .notNull()
     .default(Math.PI / 2),
+  /** What a mark query can do to a mark, as the course tells its students. */
+  queryPolicy: text({ enum: queryPolicies }).notNull().default('raise or lower'),
   createdAt: time().notNull(),
   version: version(),
 });
@@ -153,6 +178,88 @@ export const revisions = sqliteTable(
   (table) => [uniqueIndex('revisions_number').on(table.problemId, table.number)],
 );
 
+/** What colleagues say about a problem's draft, and their replies. */
+export const problemComments = sqliteTable(
+  'problem_comments',
+  {
+    id: id(),
+    problemId: text()
+      .notNull()
+      .references(() => problems.id),
+    /** The comment that this one answers; null for one that begins. */
+    repliesToId: text(),
+    /** What it is about. A line's number follows the draft as it is saved. */
+    anchor: text({ mode: 'json' }).$type<CommentAnchor>().notNull(),
+    text: text().notNull(),
+    /** Suggested wording, and what it is to take the place of; both null where none is suggested. */
+    wording: text(),
+    instead: text(),
+    acceptedAt: time(),
+    acceptedById: text().references(() => users.id),
+    byId: text()
+      .notNull()
+      .references(() => users.id),
+    at: time().notNull(),
+    settledAt: time(),
+    settledById: text().references(() => users.id),
+    idempotencyKey: text().notNull(),
+  },
+  (table) => [
+    index('problem_comments_problem').on(table.problemId, table.at),
+    uniqueIndex('problem_comments_key').on(table.problemId, table.byId, table.idempotencyKey),
+  ],
+);
+
+/** Who was asked to review a problem, and by when. */
+export const reviewRequests = sqliteTable(
+  'review_requests',
+  {
+    id: id(),
+    problemId: text()
+      .notNull()
+      .references(() => problems.id),
+    colleagueId: text()
+      .notNull()
+      .references(() => users.id),
+    askedById: text()
+      .notNull()
+      .references(() => users.id),
+    at: time().notNull(),
+    dueAt: time().notNull(),
+    note: text().notNull().default(''),
+    /** When they decided; null while they are waited for. */
+    answeredAt: time(),
+  },
+  (table) => [
+    index('review_requests_problem').on(table.problemId),
+    index('review_requests_colleague').on(table.colleagueId, table.answeredAt),
+    uniqueIndex('review_requests_open')
+      .on(table.problemId, table.colleagueId)
+      .where(sql`answered_at is null`),
+  ],
+);
+
+/** Sign-offs, wishes for changes and overrulings of revisions. Append-only. */
+export const reviewDecisions = sqliteTable(
+  'review_decisions',
+  {
+    id: id(),
+    problemId: text()
+      .notNull()
+      .references(() => problems.id),
+    revisionId: text()
+      .notNull()
+      .references(() => revisions.id),
+    kind: text({ enum: reviewDecisionKinds }).notNull(),
+    byId: text()
+      .notNull()
+      .references(() => users.id),
+    at: time().notNull(),
+    words: text().notNull().default(''),
+  },
+  (table) => [index('review_decisions_problem').on(table.problemId, table.at)],
+);
+
 // -------------------------------------------------------------------------------------------------------------- sets
 
 export const sets = sqliteTable(
@@ -172,6 +279,10 @@ export const sets = sqliteTable(
     individualVariants: integer({ mode: 'boolean' }).notNull().default(true),
     /** Whether students see the key of their variant with their feedback. */
     showKeys: integer({ mode: 'boolean' }).notNull().default(true),
+    /** What becomes of work that comes after the closing time; null: it is not taken. */
+    lateRule: text({ mode: 'json' }).$type<LateRule>(),
+    /** Until when marks can be queried; null: fourteen days after release. */
+    queriesCloseAt: time(),
     /** Random; every variant of the set is drawn from it. */
     seed: text().notNull(),
     createdAt: time().notNull(),
@@ -272,10 +383,42 @@ export const scripts = sqliteTable(
     /** Four characters, drawn at random, unique in the set. */
     code: text().notNull(),
     createdAt: time().notNull(),
+    /** When its student's time was over and what was saved was handed in; from then on it enters the piles. */
+    closedAt: time(),
+    /** When it was released before the set as a whole, because others still had time; null otherwise. */
+    releasedAt: time(),
   },
   (table) => [
     uniqueIndex('scripts_student').on(table.setId, table.membershipId),
     uniqueIndex('scripts_code').on(table.setId, table.code),
+  ],
+);
+
+/** An adjustment for one student in one set. Private to leads and that student; one that was changed is withdrawn first. */
+export const allowances = sqliteTable(
+  'allowances',
+  {
+    id: id(),
+    setId: text()
+      .notNull()
+      .references(() => sets.id),
+    membershipId: text()
+      .notNull()
+      .references(() => memberships.id),
+    /** When the set closes for this student; null: with the set. */
+    closesAt: time(),
+    waivesLateRule: integer({ mode: 'boolean' }).notNull().default(false),
+    reason: text().notNull(),
+    byId: text()
+      .notNull()
+      .references(() => users.id),
+    createdAt: time().notNull(),
+    withdrawnAt: time(),
+  },
+  (table) => [
+    uniqueIndex('allowances_student')
+      .on(table.setId, table.membershipId)
+      .where(sql`withdrawn_at is null`),
   ],
 );
 
@@ -414,6 +557,8 @@ export const marks = sqliteTable(
     /** The mark that this one takes the place of. */
     replacesId: text(),
     reason: text(),
+    /** The application to a pattern that gave it, where it was not seen singly; null where a person saw the answer. */
+    patternApplicationId: text(),
     idempotencyKey: text().notNull(),
   },
   (table) => [
@@ -425,6 +570,121 @@ export const marks = sqliteTable(
       .where(sql`replaces_id is null`),
     uniqueIndex('marks_replaced_once').on(table.replacesId),
   ],
+);
+
+/** Students' reasoned requests to look at a mark again. Append-only: what becomes of one is a row of `query_answers`. */
+export const markQueries = sqliteTable(
+  'mark_queries',
+  {
+    id: id(),
+    answerId: text()
+      .notNull()
+      .references(() => answers.id),
+    /** The mark that stood when it was asked. */
+    markId: text()
+      .notNull()
+      .references(() => marks.id),
+    /** The criterion that it is about; null for the part as a whole. */
+    criterionId: text(),
+    reason: text().notNull(),
+    /** What the student was told that a query can do; it holds for this one whatever the course says later. */
+    policy: text({ enum: queryPolicies }).notNull(),
+    at: time().notNull(),
+    idempotencyKey: text().notNull(),
+  },
+  (table) => [
+    index('mark_queries_answer').on(table.answerId, table.at),
+    uniqueIndex('mark_queries_key').on(table.answerId, table.idempotencyKey),
+  ],
+);
+
+/** Answers to mark queries, one each. Append-only. */
+export const queryAnswers = sqliteTable(
+  'query_answers',
+  {
+    id: id(),
+    queryId: text()
+      .notNull()
+      .references(() => markQueries.id),
+    byId: text()
+      .notNull()
+      .references(() => memberships.id),
+    at: time().notNull(),
+    /** What the student reads. */
+    words: text().notNull(),
+    /** The mark that stands since; where it was changed, a new one that names the one it replaces. */
+    markId: text()
+      .notNull()
+      .references(() => marks.id),
+    isChanged: integer({ mode: 'boolean' }).notNull(),
+    idempotencyKey: text().notNull(),
+  },
+  (table) => [uniqueIndex('query_answers_query').on(table.queryId)],
+);
+
+/** Questions on a pile's part and what the lead decided. A decided one never changes again (a trigger sees to it). */
+export const rulings = sqliteTable(
+  'rulings',
+  {
+    id: id(),
+    pileId: text()
+      .notNull()
+      .references(() => piles.id),
+    question: text().notNull(),
+    askedById: text()
+      .notNull()
+      .references(() => memberships.id),
+    askedAt: time().notNull(),
+    /** In words; null while it is open. */
+    decision: text(),
+    decidedById: text().references(() => memberships.id),
+    decidedAt: time(),
+    idempotencyKey: text().notNull(),
+  },
+  (table) => [
+    index('rulings_pile').on(table.pileId, table.askedAt),
+    uniqueIndex('rulings_key').on(table.pileId, table.askedById, table.idempotencyKey),
+  ],
+);
+
+/** Answers that a ruling concerns, and who said so. Append-only. */
+export const rulingAnswers = sqliteTable(
+  'ruling_answers',
+  {
+    id: id(),
+    rulingId: text()
+      .notNull()
+      .references(() => rulings.id),
+    answerId: text()
+      .notNull()
+      .references(() => answers.id),
+    byId: text()
+      .notNull()
+      .references(() => memberships.id),
+    at: time().notNull(),
+  },
+  (table) => [uniqueIndex('ruling_answers_once').on(table.rulingId, table.answerId)],
+);
+
+/** One act that marked the free answers of a pattern alike. Its marks name it: nobody saw their pages singly. */
+export const patternApplications = sqliteTable(
+  'pattern_applications',
+  {
+    id: id(),
+    pileId: text()
+      .notNull()
+      .references(() => piles.id),
+    /** The pattern's key when it was applied. */
+    pattern: text().notNull(),
+    byId: text()
+      .notNull()
+      .references(() => memberships.id),
+    at: time().notNull(),
+    /** When it was taken back as a whole; null while it holds. */
+    undoneAt: time(),
+    idempotencyKey: text().notNull(),
+  },
+  (table) => [uniqueIndex('pattern_applications_key').on(table.pileId, table.byId, table.idempotencyKey)],
 );
 
 /** A marker's short claim on one answer; at most one an answer, gone when it expires. */

@@ -9,6 +9,7 @@ import { addCourseRoutes } from './courses/courses-routes';
 import { addDeskRoutes } from './desk/desk-routes';
 import { addAuditRoutes } from './problems/audit-routes';
 import { addProblemRoutes } from './problems/problems-routes';
+import { addReviewRoutes } from './problems/review-routes';
 import { addJobRoutes } from './jobs/job-routes';
 import { addRecordRoutes } from './record/record-routes';
 import { contentPolicy } from './http/content-policy';
@@ -19,8 +20,11 @@ import { createServe, type Serve } from './http/serve';
 import { serveClient } from './http/static-client';
 import { translateErrors } from './http/translate-errors';
 import { addMarkingRoutes } from './marking/marking-routes';
+import { addQueriesRoutes } from './queries/queries-routes';
+import { addReceiptsRoutes } from './receipts/receipts-routes';
 import { addResultsRoutes } from './results/results-routes';
 import { addScriptsRoutes } from './scripts/scripts-routes';
+import { addAllowanceRoutes } from './sets/allowance-routes';
 import { addSetsRoutes } from './sets/sets-routes';
 
 /** The application and what tests and the live connection need of it. */
@@ -93,10 +97,14 @@ export function createApp(context: Context, clientFolder?: string): Application 
   addDeskRoutes(serve, context);
   addProblemRoutes(serve, context);
   addAuditRoutes(serve, context);
+  addReviewRoutes(serve, context);
   addJobRoutes(serve, context);
   addRecordRoutes(serve, context);
   addSetsRoutes(serve, context);
+  addAllowanceRoutes(serve, context);
   addScriptsRoutes(serve, context);
+  addReceiptsRoutes(serve, context);
+  addQueriesRoutes(serve, context);
   addMarkingRoutes(serve, context);
   addCorrectionRoutes(serve, context);
   addResultsRoutes(serve, context);

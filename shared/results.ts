@@ -1,5 +1,6 @@
 import * as z from 'zod';
 import { plainValue } from './checks';
+import { deduction } from './late-rule';
 import { printedGiven, workedPage } from './marking';
 import { identifier, instant, setStage, versionNumber } from './primitives';
 import { criterionKind, verdict } from './problems';
@@ -10,7 +11,7 @@ export const releaseCanBeTakenBack = 10 * 60_000;
 
 /** One thing to be looked at before a release. */
 export const readinessItem = z.object({
-  name: z.enum(['closed', 'handed in', 'marked', 'set aside', 'another look']),
+  name: z.enum(['closed', 'still open', 'handed in', 'marked', 'set aside', 'another look']),
   ready: z.boolean(),
   /** What is so, or what is to be done. */
   sentence: z.string(),
@@ -34,6 +35,18 @@ export const release = z.object({
   answers: z.number().int(),
   readiness: z.array(readinessItem),
   ready: z.boolean(),
+  /** Students who still have time; null where there are none. A release waits for the last, or leaves them out. */
+  stillOpen: z
+    .object({
+      students: z.number().int(),
+      /** When the last of them closes. */
+      until: instant,
+      /** Whether all else is in order, so that it can be released to the others. */
+      othersReady: z.boolean(),
+    })
+    .nullable(),
+  /** Students who have their marks already, since others still had time. */
+  releasedBefore: z.number().int(),
   showKeys: z.boolean(),
   /** The totals that go out, the lowest first. */
   totals: z.array(z.number()),
@@ -112,6 +125,9 @@ export const feedback = z.object({
   handedInAt: instant.nullable(),
   /** The receipt's digest. */
   receipt: z.string().nullable(),
+  /** What lateness took off; null where it was in time. */
+  late: deduction.nullable(),
+  /** With what was taken off. */
   total: z.number(),
   outOf: z.number(),
   showKeys: z.boolean(),
@@ -146,6 +162,9 @@ export const resultRow = z.object({
   email: z.string().nullable(),
   /** One for each part, in the order of the columns; null where no mark stands. */
   marks: z.array(z.number().nullable()),
+  /** What lateness took off; null where it was in time, or nothing is taken off. */
+  late: deduction.nullable(),
+  /** With what was taken off. */
   total: z.number(),
 });
 export type ResultRow = z.infer<typeof resultRow>;
@@ -158,6 +177,7 @@ export const results = z.object({
   stage: setStage,
   parts: z.array(resultPart),
   outOf: z.number(),
+  takesLateWork: z.boolean(),
   items: z.array(resultRow),
   total: z.number().int(),
 });
@@ -221,6 +241,8 @@ export const resultsRoutes = {
         .min(1, 'Write something, or take the usual wording.')
         .max(4000, 'A letter has at most 4,000 characters.')
         .optional(),
+      /** Release to all but those who still have time; they get their marks with a later release. */
+      leaveOutOpen: z.boolean().default(false),
     }),
     response: release,
     status: 200,

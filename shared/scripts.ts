@@ -1,6 +1,8 @@
 import * as z from 'zod';
+import { ownAllowance } from './allowances';
 import { answerDigest, type AnswerDigest } from './checks';
 import { convention, identifier, instant } from './primitives';
+import { signedReceipt } from './receipts';
 import { defineRoute } from './route';
 
 /** Longest answer, in characters. */
@@ -109,7 +111,12 @@ export const sheet = z.object({
   title: z.string(),
   coverText: z.string(),
   state: sheetState,
+  /** The student's own closing time. */
   closesAt: instant.nullable(),
+  /** Where late work is taken: until when, and what is taken off. */
+  late: z.object({ until: instant, rule: z.string() }).nullable(),
+  /** What a lead granted this student. */
+  allowance: ownAllowance.nullable(),
   timeZone: z.string(),
   /** The course's, printed on the sheet. */
   convention,
@@ -131,7 +138,10 @@ export const sheetSummary = z.object({
   title: z.string(),
   state: z.enum(['coming', 'open', 'closed', 'released']),
   opensAt: instant.nullable(),
+  /** The student's own closing time. */
   closesAt: instant.nullable(),
+  /** Until when late work is taken; null where none is. */
+  lateUntil: instant.nullable(),
   parts: z.number().int(),
   answered: z.number().int(),
   submission: submissionSummary.nullable(),
@@ -170,6 +180,8 @@ export const receipt = z.object({
   /** The last one counts. */
   submission: submissionSummary,
   earlier: z.array(submissionSummary),
+  /** The last submission, signed by the server. */
+  signed: signedReceipt,
   parts: z.array(receiptPart),
   /** The digest is the SHA-256 over the canonical form of this; `canonicalForm` makes it. */
   content: z.array(answerDigest),

@@ -1,4 +1,5 @@
 import * as z from 'zod';
+import { lateRule } from './late-rule';
 import { identifier, instant, setStage, type SetStage, versionNumber } from './primitives';
 import { problemStatus } from './problems';
 import { defineRoute } from './route';
@@ -36,6 +37,8 @@ export const setFields = z.object({
   individualVariants: z.boolean().default(true),
   /** Whether students see the key of their variant with their feedback. */
   showKeys: z.boolean().default(true),
+  /** What becomes of work that comes after the closing time; null: it is not taken. */
+  lateRule: lateRule.nullable().default(null),
 });
 export type SetFields = z.input<typeof setFields>;
 
@@ -119,6 +122,7 @@ export const setDetail = setSummary.omit({ problems: true }).extend({
   coverText: z.string(),
   individualVariants: z.boolean(),
   showKeys: z.boolean(),
+  lateRule: lateRule.nullable(),
   problems: z.array(setProblem),
   /** The stages that it can be moved to now. */
   moves: z.array(setStage),

@@ -19,8 +19,11 @@ export interface Membership {
   readonly role: Role;
 }
 
-/** Who, in words of the table below. `lead of any course` is the teaching team that owns the bank. */
-type Who = Role | 'administrator' | 'lead of any course';
+/**
+ * Who, in words of the table below. `lead of any course` is the teaching team that owns the bank; `marker of any course`
+ * is a marker who was asked to look at one problem of it.
+ */
+type Who = Role | 'administrator' | 'lead of any course' | 'marker of any course';
 
 /**
  * Who may do what. The one table that decides; whether a thing is in a state in which it can be done, and whether a
@@ -38,12 +41,19 @@ export const policy = {
   'change people': ['lead', 'administrator'],
   'read problems': ['lead of any course'],
   'write problems': ['lead of any course'],
+  'review problems': ['lead of any course', 'marker of any course'],
+  'overrule reviews': ['lead'],
   'read sets': ['lead', 'marker'],
   'change sets': ['lead'],
+  'give allowances': ['lead'],
   'answer a sheet': ['student'],
   'read piles': ['lead', 'marker'],
   mark: ['lead', 'marker'],
   'see all marks': ['lead'],
+  'verify receipts': ['lead', 'marker'],
+  'query a mark': ['student'],
+  'answer mark queries': ['lead', 'marker'],
+  'set terms of mark queries': ['lead'],
   'correct keys': ['lead'],
   release: ['lead'],
   'read the record': ['lead'],
@@ -58,6 +68,7 @@ export function can(person: SignedIn, action: Action, courseId?: string): boolea
   if (person.isAdministrator && allowed.includes('administrator')) return true;
   const memberships = [...person.memberships.values()];
   if (allowed.includes('lead of any course') && memberships.some((each) => each.role === 'lead')) return true;
+  if (allowed.includes('marker of any course') && memberships.some((each) => each.role === 'marker')) return true;
   const here = courseId === undefined ? undefined : person.memberships.get(courseId);
   return here !== undefined && allowed.includes(here.role);
 }

@@ -2,7 +2,13 @@ import { and, count, eq, isNull } from 'drizzle-orm';
 import type { Queryable } from '@drizzle/client';
 import { memberships, problems } from '@drizzle/schema';
 import type { Desk, DeskSet, Need } from '@shared/desk';
+import { setStageNames } from '@shared/primitives';
 import type { Membership } from '../access/policy';
+import { isReleasedTo } from '../results/find-set';
+import { scriptOf } from '../scripts/begin-script';
+import { ownTimes, stillOpen } from '../scripts/own-times';
+import { queryNeeds } from './query-needs';
+import { reviewNeeds } from './review-needs';
 import { markingCounts, submittedAt, submittedCounts, weighedSets, type WeighedSet } from './desk-sets';
 
 /** How long a released set stays among what needs a student, in milliseconds. */
@@ -11,11 +17,11 @@ const newsLasts = 14 * 24 * 3_600_000;
 /** The desk of one person in one course. */
 export function presentDesk(tx: Queryable, member: Membership, now: number): Desk {
   const weighed = weighedSets(tx, member.courseId);
-  const needs = needsFor[member.role](tx, member, weighed, now);
+  const needs = [...needsFor[member.role](tx, member, weighed, now), ...reviewNeeds(tx, member), ...queryNeeds(tx, member)];
   // What has no date needs somebody now; the others by their date.
   const inOrder = [...needs].sort((a, b) => (a.due ?? 0) - (b.due ?? 0));
   const shown = member.role === 'student' ? weighed.filter(({ row }) => isStudents(row.stage)) : weighed;
-  return { now, needs: inOrder, sets: shown.map((each) => presentSet(each, member)) };
+  return { now, needs: inOrder, sets: shown.map((each) => presentSet(tx, each, member, now)) };
 }
 
 type NeedsOf = (tx: Queryable, member: Membership, weighed: readonly WeighedSet[], now: number) => Need[];
@@ -26,7 +32,7 @@ const needsFor: Readonly<Record<Membership['role'], NeedsOf>> = {
   student: studentNeeds,
 };
 
-function leadNeeds(tx: Queryable, member: Membership, weighed: readonly WeighedSet[]): Need[] {
+function leadNeeds(tx: Queryable, member: Membership, weighed: readonly WeighedSet[], now: number): Need[] {
   const ids = weighed.map(({ row }) => row.id);
   const marking = markingCounts(tx, ids);
   const submitted = submittedCounts(tx, ids);
@@ -78,6 +84,7 @@ function leadNeeds(tx: Queryable, member: Membership, weighed: readonly WeighedS
                 },
               ]
             : [];
+        const open = stillOpen(tx, row, now);
         const rest =
           counts.waits > 0
             ? need(row, null, `${String(counts.waits)} of ${String(all)} answers to ${name} are unmarked`, row.title, {
@@ -85,7 +92,7 @@ function leadNeeds(tx: Queryable, member: Membership, weighed: readonly WeighedS
                 page: 'marking',
                 id: null,
               })
-            : need(row, null, `${name} is marked and can be released`, row.title, {
+            : need(row, null, markedInWords(name, open.length), row.title, {
                 label: 'Look at the release',
                 page: 'release',
                 id: row.id,
@@ -153,19 +160,24 @@ function studentNeeds(tx: Queryable, member: Membership, weighed: readonly Weigh
   );
   return weighed.flatMap(({ row, reached }): Need[] => {
     const name = `Set ${String(row.number)}`;
-    if (row.stage === 'open') {
+    const { isOpen, dueAt, endsAt } = ownTimes(tx, row, member.id, now);
+    if (isOpen) {
+      const isLate = dueAt !== null && dueAt <= now;
       const act = {
         label: submitted.has(row.id) ? 'Look at it again' : 'Open the sheet',
         page: 'sheet' as const,
         id: row.id,
       };
-      const title = submitted.has(row.id)
-        ? `${name} is submitted; it can be changed until it closes`
-        : `${name} closes`;
-      return [need(row, row.closesAt, title, row.title, act)];
+      const title = isLate
+        ? `${name} has closed; late work is taken`
+        : submitted.has(row.id)
+          ? `${name} is submitted; it can be changed until it closes`
+          : `${name} closes`;
+      return [need(row, isLate ? endsAt : dueAt, title, row.title, act)];
     }
-    const released = reached.find((each) => each.stage === 'released')?.at;
-    if (row.stage === 'released' && released !== undefined && released > now - newsLasts)
+    const released =
+      reached.find((each) => each.stage === 'released')?.at ?? scriptOf(tx, row.id, member.id)?.releasedAt ?? undefined;
+    if (row.stage !== 'archived' && released !== undefined && released > now - newsLasts)
       return [
         need(row, null, `Marks and feedback for ${name} are ready`, row.title, {
           label: 'Read the feedback',
@@ -179,6 +191,11 @@ function studentNeeds(tx: Queryable, member: Membership, weighed: readonly Weigh
 
 function need(row: WeighedSet['row'], due: number | null, title: string, detail: string, act: Need['act']): Need {
   return { id: `set ${row.id}`, due, title, detail, act };
+}
+
+function markedInWords(name: string, open: number): string {
+  if (open === 0) return `${name} is marked and can be released`;
+  return `${name} is marked; ${open === 1 ? 'one student still has' : `${String(open)} students still have`} time`;
 }
 
 function answersIn(n: number): string {
@@ -198,12 +215,30 @@ function isStudents(stage: DeskSet['stage']): boolean {
   return !['draft', 'review', 'ready'].includes(stage);
 }
 
-function presentSet({ row, reached }: WeighedSet, member: Membership): DeskSet {
-  const { id: setId, number, title, stage, opensAt, closesAt } = row;
-  return { setId, number, title, stage, reached, opensAt, closesAt, act: actOf(row, member.role) };
+function presentSet(tx: Queryable, { row, reached }: WeighedSet, member: Membership, now: number): DeskSet {
+  const { id: setId, number, title, opensAt } = row;
+  if (member.role !== 'student') {
+    const { stage, closesAt } = row;
+    return { setId, number, title, stage, reached, opensAt, closesAt, act: actOf(row, member.role) };
+  }
+  // A student's line is their own: open as long as it is open to them, released once it is to them.
+  const { isOpen, dueAt } = ownTimes(tx, row, member.id, now);
+  const script = scriptOf(tx, row.id, member.id);
+  const stage = isOpen ? 'open' : isReleasedTo(row, script) && row.stage !== 'archived' ? 'released' : row.stage;
+  const own = reached.filter((each) => !isOpen || setStageNames.indexOf(each.stage) <= setStageNames.indexOf('open'));
+  return {
+    setId,
+    number,
+    title,
+    stage,
+    reached: own,
+    opensAt,
+    closesAt: dueAt,
+    act: actOf({ id: setId, stage }, 'student'),
+  };
 }
 
-function actOf({ id, stage }: WeighedSet['row'], role: Membership['role']): DeskSet['act'] {
+function actOf({ id, stage }: Pick<WeighedSet['row'], 'id' | 'stage'>, role: Membership['role']): DeskSet['act'] {
   if (role === 'student') {
     if (stage === 'open') return { label: 'Open the sheet', page: 'sheet', id };
     if (stage === 'released') return { label: 'Read the feedback', page: 'feedback', id };

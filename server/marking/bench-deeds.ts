@@ -163,7 +163,7 @@ export function totalOf(marked: readonly MarkedCriterion[], scheme: readonly Cri
 }
 
 /** Every criterion of the scheme exactly once, in its order. @throws RequestError 400 */
-function settledCriteria(sent: readonly MarkedCriterion[], scheme: readonly Criterion[]): MarkedCriterion[] {
+export function settledCriteria(sent: readonly MarkedCriterion[], scheme: readonly Criterion[]): MarkedCriterion[] {
   for (const [index, each] of sent.entries()) {
     if (!scheme.some((its) => its.id === each.criterionId))
       throw invalidField(['criteria', index, 'criterionId'], 'The mark scheme has no such criterion.');
@@ -187,6 +187,8 @@ function demandVersion(tx: Queryable, doer: Doer, write: Write) {
   if (!marksAreGiven(doer.found.set.stage))
     throw conflict('Marks of this set cannot be changed now: it is not closed yet, or is released.');
   const found = findAnswer(tx, write.answerId);
+  if (found.script.releasedAt !== null)
+    throw conflict('The marks of this script are released to its student already, so they cannot be changed here.');
   if (found.answer.version !== write.version)
     throw staleAnswer(tx, doer, write, 'This answer changed meanwhile. What you typed is kept.');
   return found;

@@ -1,6 +1,6 @@
 import { and, desc, eq } from 'drizzle-orm';
 import type { Queryable } from '@drizzle/client';
-import { answers, checks, marks, scripts, sets, submissions } from '@drizzle/schema';
+import { answers, checks, courses, marks, scripts, sets, submissions } from '@drizzle/schema';
 import { isComputed } from '@shared/answer-forms';
 import type { CheckResult } from '@shared/checks';
 import { partMarks } from '@shared/problems';
@@ -10,7 +10,9 @@ import { correctionsFor } from '../corrections/corrections-in-feedback';
 import { notFound } from '../http/errors';
 import { bandOf, handedInFor, printGivens, variantOf, workedPages } from '../marking/bench-answer';
 import { pilesOfSet, type FoundPile } from '../marking/find-pile';
-import { findSet, isReleased, releasedAt } from './find-set';
+import { stillOpen } from '../scripts/own-times';
+import { findSet, isReleasedTo, releasedAt } from './find-set';
+import { lateScripts } from './late-scripts';
 import { sumOf } from './set-results';
 
 type MarkRow = typeof marks.$inferSelect;
@@ -18,22 +20,25 @@ type MarkRow = typeof marks.$inferSelect;
 /** A student's own sets that are released, the newest first. */
 export function listFeedback(tx: Queryable, courseId: string, membershipId: string): FeedbackSummary[] {
   return tx
-    .select({ set: sets, script: scripts })
+    .select({ set: sets, course: courses, script: scripts })
     .from(scripts)
     .innerJoin(sets, eq(sets.id, scripts.setId))
+    .innerJoin(courses, eq(courses.id, sets.courseId))
     .where(and(eq(sets.courseId, courseId), eq(scripts.membershipId, membershipId)))
     .orderBy(desc(sets.number))
     .all()
-    .filter(({ set }) => isReleased(set.stage))
-    .map(({ set, script }) => {
+    .filter(({ set, script }) => isReleasedTo(set, script))
+    .map(({ set, course, script }) => {
       const columns = pilesOfSet(tx, set.id);
+      const awarded = sumOf(columns.map((found) => standingMark(tx, script.id, found)?.mark?.total ?? null));
+      const outOf = sumOf(columns.map((found) => partMarks(found.part)));
       return {
         setId: set.id,
         number: set.number,
         title: set.title,
-        releasedAt: releasedAt(tx, set.id) ?? 0,
-        total: sumOf(columns.map((found) => standingMark(tx, script.id, found)?.mark?.total ?? null)),
-        outOf: sumOf(columns.map((found) => partMarks(found.part))),
+        releasedAt: script.releasedAt ?? releasedAt(tx, set.id) ?? 0,
+        total: sumOf([awarded, -(lateScripts(tx, set, course.timeZone)(script, awarded, outOf)?.marks ?? 0)]),
+        outOf,
       };
     });
 }
@@ -44,20 +49,21 @@ export function listFeedback(tx: Queryable, courseId: string, membershipId: stri
  *
  * @throws RequestError 404 before the release, and where the student has no script
  */
-export function presentFeedback(tx: Queryable, setId: string, membershipId: string): Feedback {
-  const { set } = findSet(tx, setId);
+export function presentFeedback(tx: Queryable, setId: string, membershipId: string, now: number): Feedback {
+  const { set, course } = findSet(tx, setId);
   const script = tx
     .select()
     .from(scripts)
     .where(and(eq(scripts.setId, setId), eq(scripts.membershipId, membershipId)))
     .get();
-  if (!isReleased(set.stage) || !script) throw notFound('feedback');
+  if (!script || !isReleasedTo(set, script)) throw notFound('feedback');
   const columns = pilesOfSet(tx, setId);
   const positions = [...new Set(columns.map((found) => found.setProblem.position))];
   const problems = positions.map((position) => {
     const own = columns.filter((found) => found.setProblem.position === position);
-    const parts = own.map((found) => presentPart(tx, script.id, found, set.showKeys));
     const [first] = own;
+    const secret = first !== undefined && otherMayStillAnswer(tx, set, first.setProblem.id, script, now);
+    const parts = own.map((found) => presentPart(tx, script.id, found, { showKeys: set.showKeys && !secret, secret }));
     const values = first ? (variantOf(tx, first.setProblem.id, membershipId)?.givens ?? {}) : {};
     return {
       position,
@@ -75,22 +81,50 @@ export function presentFeedback(tx: Queryable, setId: string, membershipId: stri
     .where(eq(submissions.scriptId, script.id))
     .orderBy(desc(submissions.number))
     .get();
+  const awarded = sumOf(problems.map((problem) => problem.total));
+  const outOf = sumOf(problems.map((problem) => problem.outOf));
+  const late = lateScripts(tx, set, course.timeZone)(script, awarded, outOf);
   return {
     setId,
     courseId: set.courseId,
     number: set.number,
     title: set.title,
-    releasedAt: releasedAt(tx, setId) ?? 0,
+    releasedAt: script.releasedAt ?? releasedAt(tx, setId) ?? 0,
     handedInAt: last?.at ?? null,
     receipt: last?.digest ?? null,
-    total: sumOf(problems.map((problem) => problem.total)),
-    outOf: sumOf(problems.map((problem) => problem.outOf)),
+    late,
+    total: sumOf([awarded, -(late?.marks ?? 0)]),
+    outOf,
     showKeys: set.showKeys,
     problems,
   };
 }
 
-function presentPart(tx: Queryable, scriptId: string, found: FoundPile, showKeys: boolean): FeedbackPart {
+/**
+ * Whether somebody who has the same variant of a problem still has time: then nothing that tells the key is shown to
+ * those who have their feedback.
+ */
+function otherMayStillAnswer(
+  tx: Queryable,
+  set: typeof sets.$inferSelect,
+  setProblemId: string,
+  script: typeof scripts.$inferSelect,
+  now: number,
+): boolean {
+  const open = stillOpen(tx, set, now).filter((row) => row.membershipId !== script.membershipId);
+  if (open.length === 0) return false;
+  const givensOf = (membershipId: string) => JSON.stringify(variantOf(tx, setProblemId, membershipId)?.givens ?? null);
+  const own = givensOf(script.membershipId);
+  return open.some((row) => [own, 'null'].includes(givensOf(row.membershipId)));
+}
+
+/** What of the key a student may see: with `secret` nothing that tells it, since another may still answer. */
+interface Showing {
+  readonly showKeys: boolean;
+  readonly secret: boolean;
+}
+
+function presentPart(tx: Queryable, scriptId: string, found: FoundPile, { showKeys, secret }: Showing): FeedbackPart {
   const standing = standingMark(tx, scriptId, found);
   const check = standing?.check ?? null;
   const handedIn = handedInFor(tx, scriptId, found);
@@ -112,7 +146,7 @@ function presentPart(tx: Queryable, scriptId: string, found: FoundPile, showKeys
       band: bandOf(found.part.answer, key),
       answer: check?.value ?? null,
     },
-    slip: slipIn(check, found),
+    slip: secret ? null : slipIn(check, found),
     criteria: found.part.criteria.map(({ id, kind, name, text, marks: itsMarks }) => ({
       id,
       kind,
@@ -122,7 +156,7 @@ function presentPart(tx: Queryable, scriptId: string, found: FoundPile, showKeys
       awarded: awarded.has(id),
     })),
     remark: standing?.mark?.remark ?? '',
-    corrections: standing ? correctionsFor(tx, found, standing.answerId, handedIn.at) : [],
+    corrections: standing && !secret ? correctionsFor(tx, found, standing.answerId, handedIn.at) : [],
     total: standing?.mark?.total ?? 0,
     outOf: partMarks(found.part),
     pages: standing ? workedPages(tx, standing.answerId, handedIn.pageIds) : [],

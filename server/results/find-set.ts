@@ -12,6 +12,14 @@ export function isReleased(stage: SetStage): boolean {
   return released.has(stage);
 }
 
+/** Whether marks and feedback of one script are its student's to see: with the set, or before it. */
+export function isReleasedTo(
+  set: { readonly stage: SetStage },
+  script: Pick<typeof scripts.$inferSelect, 'releasedAt'> | undefined,
+): boolean {
+  return isReleased(set.stage) || (script !== undefined && script.releasedAt !== null);
+}
+
 /** A set with its course. @throws RequestError 404 */
 export function findSet(tx: Queryable, setId: string) {
   const row = tx

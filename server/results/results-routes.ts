@@ -68,7 +68,7 @@ export function addResultsRoutes(serve: Serve, context: Context): void {
 
   serve(resultsRoutes.releaseSet, ({ user, params, body, version }) =>
     change(user, params.setId, (tx, releaser) => {
-      releaseSet(tx, params.setId, version, body.text, releaser);
+      releaseSet(tx, params.setId, version, body, releaser);
     }),
   );
 
@@ -86,6 +86,6 @@ export function addResultsRoutes(serve: Serve, context: Context): void {
 
   serve(resultsRoutes.feedback, ({ user, params }) => {
     const { id } = membershipFor(user, 'answer a sheet', findSet(db, params.setId).set.courseId);
-    return presentFeedback(db, params.setId, id);
+    return presentFeedback(db, params.setId, id, clock.now());
   });
 }

@@ -8,7 +8,8 @@ const table = (name: string) => ({
   stage: 'released' as const,
   parts: [],
   outOf: 3,
-  items: [{ code: 'K7QF', name, email: 'n@northmere.example', marks: [], total: 2.5 }],
+  takesLateWork: false,
+  items: [{ code: 'K7QF', name, email: 'n@northmere.example', marks: [], late: null, total: 2.5 }],
   total: 1,
 });
 

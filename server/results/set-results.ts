@@ -5,6 +5,7 @@ import { partMarks } from '@shared/problems';
 import type { Results, ResultsSummary } from '@shared/results';
 import { pilesOfSet } from '../marking/find-pile';
 import { findSet, isReleased, scriptsOf } from './find-set';
+import { lateScripts } from './late-scripts';
 
 /** The sets of a course that have scripts, the newest first. */
 export function listResults(tx: Queryable, courseId: string): ResultsSummary[] {
@@ -42,10 +43,12 @@ export function listResults(tx: Queryable, courseId: string): ResultsSummary[] {
 
 /** The standing marks of a set, script by script. Until the release scripts have codes only. */
 export function setResults(tx: Queryable, setId: string): Results {
-  const { set } = findSet(tx, setId);
+  const { set, course } = findSet(tx, setId);
   const columns = pilesOfSet(tx, setId);
   const standing = standingTotals(tx, setId);
   const named = isReleased(set.stage);
+  const outOf = sumOf(columns.map((found) => partMarks(found.part)));
+  const late = lateScripts(tx, set, course.timeZone);
   const items = scriptsOf(tx, setId).map(({ script, name, email }) => {
     const own = columns.map(({ pile }) => standing.get(`${script.id} ${pile.id}`) ?? null);
     return {
@@ -53,7 +56,8 @@ export function setResults(tx: Queryable, setId: string): Results {
       name: named ? name : null,
       email: named ? email : null,
       marks: own,
-      total: sumOf(own),
+      late: late(script, sumOf(own), outOf),
+      total: sumOf([sumOf(own), -(late(script, sumOf(own), outOf)?.marks ?? 0)]),
     };
   });
   return {
@@ -66,7 +70,8 @@ export function setResults(tx: Queryable, setId: string): Results {
       label: `${String(found.setProblem.position)} (${found.partLabel})`,
       marks: partMarks(found.part),
     })),
-    outOf: sumOf(columns.map((found) => partMarks(found.part))),
+    outOf,
+    takesLateWork: set.lateRule !== null,
     items,
     total: items.length,
   };
@@ -93,12 +98,14 @@ export function sumOf(values: readonly (number | null)[]): number {
  * take for a formula is written with an apostrophe before it.
  */
 export function resultsAsCsv(results: Results): string {
-  const head = ['script', 'name', 'e-mail', ...results.parts.map((part) => part.label), 'total', 'out of'];
+  const lateHead = results.takesLateWork ? ['days late', 'taken off'] : [];
+  const head = ['script', 'name', 'e-mail', ...results.parts.map((part) => part.label), ...lateHead, 'total', 'out of'];
   const rows = results.items.map((row) => [
     row.code,
     row.name ?? '',
     row.email ?? '',
     ...row.marks.map((mark) => mark ?? ''),
+    ...(results.takesLateWork ? [row.late?.days ?? 0, row.late?.marks ?? 0] : []),
     row.total,
     results.outOf,
   ]);

@@ -32,7 +32,15 @@ export function beginScript(
       .all()
       .map((row) => row.code),
   );
-  const script = { id: newId(), setId: set.id, membershipId, code: drawScriptCode(taken), createdAt: now };
+  const script = {
+    id: newId(),
+    setId: set.id,
+    membershipId,
+    code: drawScriptCode(taken),
+    createdAt: now,
+    closedAt: null,
+    releasedAt: null,
+  };
   tx.insert(scripts).values(script).run();
   for (const { id } of tx.select({ id: piles.id }).from(piles).where(eq(piles.setId, set.id)).all())
     tx.insert(answers).values({ id: newId(), scriptId: script.id, pileId: id }).run();

@@ -15,7 +15,7 @@ import { enterPile } from './standing-checks';
 
 /**
  * Checks what was handed in, on the server, and keeps the results; nothing of them shows to the student. Once the set is
- * closed the answers enter their piles too. It may be called again at any time: a check that was made is not made again,
+ * closed and the student's time is over, the answers enter their piles too. It may be called again at any time: a check that was made is not made again,
  * and an answer that is on its pile is left alone.
  */
 export async function checkSubmission(context: Context, submissionId: string): Promise<void> {
@@ -38,12 +38,17 @@ export async function checkSubmission(context: Context, submissionId: string): P
       if (correctionsIn(tx, script.setId) !== under) return true;
       const set = tx.select().from(sets).where(eq(sets.id, script.setId)).get();
       storeChecks(tx, script, submission, results, clock.now());
-      if (set && marksAreGiven(set.stage)) enterPiles(tx, script, submission, clock.now());
+      if (set && marksAreGiven(set.stage) && isClosed(tx, script.id)) enterPiles(tx, script, submission, clock.now());
       return false;
     },
     { behavior: 'immediate' },
   );
   if (isCorrected) await checkSubmission(context, submissionId);
+}
+
+/** Whether its student's time is over: what is handed in before may still be replaced. */
+function isClosed(tx: Queryable, scriptId: string): boolean {
+  return tx.select().from(scripts).where(eq(scripts.id, scriptId)).get()?.closedAt != null;
 }
 
 /** The corrections that hold in a set, as one text. */

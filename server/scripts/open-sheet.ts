@@ -3,7 +3,7 @@ import { conflict } from '../http/errors';
 import { drawSetVariants, storeVariants } from '../sets/draw-set-variants';
 import { demandSet } from '../sets/set-queries';
 import { beginScript, scriptOf, type ScriptRow } from './begin-script';
-import { isOpenNow } from './own-answer';
+import { ownTimes } from './own-times';
 
 /**
  * The script behind a student's sheet, begun when they first open it. Who was added to the course after the set had opened
@@ -18,11 +18,11 @@ export async function openSheet(context: Context, setId: string, membershipId: s
   const { set } = demandSet(db, setId);
   const refuse = () =>
     conflict('This set had closed before you opened a sheet of it. Your lead can tell you what to do.');
-  if (!isOpenNow(set, clock.now())) throw refuse();
+  if (!ownTimes(db, set, membershipId, clock.now()).isOpen) throw refuse();
   const drawn = await drawSetVariants(context, set, [membershipId]);
   return db.transaction(
     (tx) => {
-      if (!isOpenNow(demandSet(tx, setId).set, clock.now())) throw refuse();
+      if (!ownTimes(tx, demandSet(tx, setId).set, membershipId, clock.now()).isOpen) throw refuse();
       storeVariants(tx, drawn);
       return beginScript(tx, set, membershipId, clock.now());
     },

@@ -4,6 +4,8 @@ import { answers, courses, memberships, pages, scripts, sets } from '@drizzle/sc
 import { fullMomentOf, secondOf } from '@shared/times';
 import { membershipFor, type SignedIn } from '../access/policy';
 import { conflict, notFound } from '../http/errors';
+import { handInAtClosing } from './hand-in-at-closing';
+import { ownTimes } from './own-times';
 import { latestVersion, pagesOf } from './saved-answers';
 
 /** An answer with its script, set and course, where it is the person's own. @throws RequestError 404 otherwise */
@@ -31,16 +33,20 @@ export function ownPage(tx: Queryable, person: SignedIn, pageId: string) {
   return { page, ...ownAnswer(tx, person, page.answerId) };
 }
 
-/** Whether students can still work on a set. The closing time decides by itself, before the clock has closed the set. */
-export function isOpenNow(set: Pick<typeof sets.$inferSelect, 'stage' | 'closesAt'>, now: number): boolean {
-  return set.stage === 'open' && (set.closesAt === null || now < set.closesAt);
-}
-
-/** @throws RequestError 409 that says when the sheet closed and what of this answer was kept */
-export function demandOpen(tx: Queryable, { set, course, answer }: OwnAnswer, now: number): void {
-  if (isOpenNow(set, now)) return;
+/**
+ * Lets a change of an answer through while the sheet is open to its student. Once their closing time is over, what was
+ * saved in time is handed in before anything late is saved.
+ *
+ * @throws RequestError 409 that says when the sheet closed and what of this answer was kept
+ */
+export function demandOpen(tx: Queryable, { set, course, script, answer }: OwnAnswer, now: number): void {
+  const { isOpen, endsAt } = ownTimes(tx, set, script.membershipId, now);
+  if (isOpen) {
+    handInAtClosing(tx, set, script, now);
+    return;
+  }
   const zone = course.timeZone;
-  const when = set.closesAt === null ? '' : ` ${fullMomentOf(set.closesAt, zone)}`;
+  const when = endsAt === null ? '' : ` ${fullMomentOf(endsAt, zone)}`;
   const latest = latestVersion(tx, answer.id);
   const pageCount = pagesOf(tx, answer.id).reduce((sum, page) => sum + page.pageCount, 0);
   const kept = [

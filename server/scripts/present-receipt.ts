@@ -4,9 +4,11 @@ import { answers, pages, submissions } from '@drizzle/schema';
 import { partLabel } from '@shared/problems';
 import type { Receipt } from '@shared/scripts';
 import { notFound } from '../http/errors';
+import { receiptOf } from '../receipts/receipt-of';
 import { demandSet, problemsOfSet } from '../sets/set-queries';
 import type { ScriptRow } from './begin-script';
 import { hasChanged, presentSubmission, sheetStateOf } from './present-sheet';
+import { ownTimes } from './own-times';
 import { savedParts } from './saved-answers';
 
 /** Proof of what a script handed in, and when. @throws RequestError 404 where nothing was handed in */
@@ -19,6 +21,7 @@ export function presentReceipt(tx: Queryable, script: ScriptRow, now: number): R
     .orderBy(desc(submissions.number))
     .all();
   if (!last) throw notFound('receipt');
+  const times = ownTimes(tx, set, script.membershipId, now);
   const sizes = pageSizes(
     tx,
     script.id,
@@ -42,6 +45,7 @@ export function presentReceipt(tx: Queryable, script: ScriptRow, now: number): R
     code: script.code,
     submission: presentSubmission(last),
     earlier: earlier.map(presentSubmission),
+    signed: receiptOf(script, last),
     parts: last.content.flatMap(({ setProblemId, partId, text, pages: own }) => {
       const place = places.get(`${setProblemId} ${partId}`);
       if (!place) return [];
@@ -54,8 +58,8 @@ export function presentReceipt(tx: Queryable, script: ScriptRow, now: number): R
       ];
     }),
     content: [...last.content],
-    state: sheetStateOf(set, now),
-    closesAt: set.closesAt,
+    state: sheetStateOf(set, script, times),
+    closesAt: times.dueAt,
     changedSince: hasChanged(last, savedParts(tx, script)),
   };
 }

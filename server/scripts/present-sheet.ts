@@ -4,6 +4,7 @@ import { desc, eq } from 'drizzle-orm';
 import { answerField, type AnswerSpecification } from '@shared/answer-forms';
 import type { SetStage } from '@shared/primitives';
 import { partLabel, partMarks, problemMarks, type Part, type ProblemContent } from '@shared/problems';
+import { lateRuleInWords } from '@shared/late-rule';
 import type {
   Sheet,
   SheetField,
@@ -18,12 +19,12 @@ import { fullMomentOf } from '@shared/times';
 import type { GivenValues } from '@shared/variants';
 import { conflict, notFound } from '../http/errors';
 import { conventionOf } from '../courses/convention';
-import { isReleased } from '../results/find-set';
+import { isReleasedTo } from '../results/find-set';
 import { variantsOfStudent } from '../sets/draw-set-variants';
 import { demandSet, problemsOfSet, type ProblemOfSet, type SetRow } from '../sets/set-queries';
 import { scriptOf, type ScriptRow } from './begin-script';
 import { digestOf, lastSubmission, type SubmissionRow } from './hand-in';
-import { isOpenNow } from './own-answer';
+import { ownTimes, type OwnTimes } from './own-times';
 import { contentOf, savedParts, type SavedPart } from './saved-answers';
 import { presentPage } from './worked-pages';
 
@@ -33,9 +34,22 @@ function isHidden(stage: SetStage): boolean {
 }
 
 /** Where a sheet stands for its student. Marking and moderation are not theirs to know. */
-export function sheetStateOf(set: Pick<SetRow, 'stage' | 'closesAt'>, now: number): SheetState {
-  if (isOpenNow(set, now)) return 'open';
-  return isReleased(set.stage) ? 'released' : 'closed';
+export function sheetStateOf(
+  set: Pick<SetRow, 'stage'>,
+  script: Pick<ScriptRow, 'releasedAt'> | undefined,
+  { isOpen }: Pick<OwnTimes, 'isOpen'>,
+): SheetState {
+  if (isOpen) return 'open';
+  return isReleasedTo(set, script) ? 'released' : 'closed';
+}
+
+/** What a sheet says of the late rule; nothing where no time is left for late work. */
+function lateOf({ lateRule }: SetRow, { dueAt, endsAt, allowance }: OwnTimes): Sheet['late'] {
+  if (lateRule === null || dueAt === null || endsAt === null || endsAt <= dueAt) return null;
+  return {
+    until: endsAt,
+    rule: allowance?.waivesLateRule ? 'nothing is taken off for you' : lateRuleInWords(lateRule),
+  };
 }
 
 /** @throws RequestError 404 where students know nothing of the set yet, 409 before it opens */
@@ -83,6 +97,7 @@ export function presentSheet(tx: Queryable, setId: string, script: ScriptRow, no
     };
   });
   const last = lastSubmission(tx, script.id);
+  const times = ownTimes(tx, set, script.membershipId, now);
   return {
     setId,
     courseId: course.id,
@@ -90,8 +105,14 @@ export function presentSheet(tx: Queryable, setId: string, script: ScriptRow, no
     number: set.number,
     title: set.title,
     coverText: set.coverText,
-    state: sheetStateOf(set, now),
-    closesAt: set.closesAt,
+    state: sheetStateOf(set, script, times),
+    closesAt: times.dueAt,
+    late: lateOf(set, times),
+    allowance: times.allowance && {
+      othersCloseAt: set.closesAt,
+      closesAt: times.allowance.closesAt,
+      waivesLateRule: times.allowance.waivesLateRule,
+    },
     timeZone: course.timeZone,
     convention,
     marks: problems.reduce((sum, each) => sum + each.marks, 0),
@@ -196,7 +217,8 @@ export function listSheets(tx: Queryable, courseId: string, membershipId: string
     .all()
     .filter((set) => !isHidden(set.stage))
     .map((set): SheetSummary => {
-      const { id, number, title, opensAt, closesAt } = set;
+      const { id, number, title, opensAt } = set;
+      const times = ownTimes(tx, set, membershipId, now);
       const script = scriptOf(tx, id, membershipId);
       const saved = script ? savedParts(tx, script) : [];
       const last = script && lastSubmission(tx, script.id);
@@ -204,9 +226,10 @@ export function listSheets(tx: Queryable, courseId: string, membershipId: string
         setId: id,
         number,
         title,
-        state: set.stage === 'ready' ? 'coming' : sheetStateOf(set, now),
+        state: set.stage === 'ready' ? 'coming' : sheetStateOf(set, script, times),
         opensAt,
-        closesAt,
+        closesAt: times.dueAt,
+        lateUntil: lateOf(set, times)?.until ?? null,
         parts:
           set.stage === 'ready'
             ? 0

@@ -43,7 +43,8 @@ export function enterPile(tx: Queryable, entering: EnteringAnswer): 'waits' | 'm
     total: totalOf(criteria, part.criteria),
     at: now,
     replacesId: before?.id ?? null,
-    idempotencyKey: `check ${check.id}`,
+    // A script that was given more time comes back, perhaps as it was.
+    idempotencyKey: before ? `check ${check.id} after ${before.id}` : `check ${check.id}`,
   };
   tx.insert(marks).values(mark).run();
   tx.update(answers).set({ state: 'marked', standingMarkId: mark.id, version }).where(eq(answers.id, answerId)).run();

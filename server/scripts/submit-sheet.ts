@@ -4,8 +4,8 @@ import { conflict } from '../http/errors';
 import { demandSet } from '../sets/set-queries';
 import type { ScriptRow } from './begin-script';
 import { handIn, lastSubmission, type SubmissionRow } from './hand-in';
-import { isOpenNow } from './own-answer';
-import { contentOf, savedParts } from './saved-answers';
+import { handInAtClosing, nothingSaved } from './hand-in-at-closing';
+import { ownTimes } from './own-times';
 
 /**
  * Hands in what a student has saved. Until the set closes it can be handed in again; the last submission counts.
@@ -20,16 +20,16 @@ export function submitSheet(
   return db.transaction(
     (tx) => {
       const { set, course } = demandSet(tx, script.setId);
+      const { isOpen, endsAt } = ownTimes(tx, set, script.membershipId, handing.now);
+      if (isOpen) handInAtClosing(tx, set, script, handing.now);
       const last = lastSubmission(tx, script.id);
-      if (!isOpenNow(set, handing.now)) {
+      if (!isOpen) {
         if (last?.idempotencyKey === handing.idempotencyKey) return last;
-        const when = set.closesAt === null ? '' : ` ${fullMomentOf(set.closesAt, course.timeZone)}`;
+        const when = endsAt === null ? '' : ` ${fullMomentOf(endsAt, course.timeZone)}`;
         throw conflict(`This sheet closed${when}. What was saved by then is handed in; the receipt shows it.`);
       }
-      const isEmpty = contentOf(savedParts(tx, script)).every(
-        (part) => part.text.trim() === '' && part.pages.length === 0,
-      );
-      if (isEmpty && !last) throw conflict('There is nothing to hand in yet: no part has an answer or a page.');
+      if (nothingSaved(tx, script) && !last)
+        throw conflict('There is nothing to hand in yet: no part has an answer or a page.');
       return handIn(tx, script, { by: 'student', at: handing.now, idempotencyKey: handing.idempotencyKey });
     },
     { behavior: 'immediate' },

@@ -1,4 +1,5 @@
-import { and, eq, isNull } from 'drizzle-orm';
+import { and, eq, isNotNull, isNull } from 'drizzle-orm';
+import type { Queryable } from '@drizzle/client';
 import { answers, piles, scripts } from '@drizzle/schema';
 import type { Context } from '../context';
 import { conflict } from '../http/errors';
@@ -6,16 +7,17 @@ import { nextSequence } from '../marking/sequence';
 import { tellPileChanged } from '../marking/tell-piles';
 import { beginScript } from '../scripts/begin-script';
 import { checkSubmission } from '../scripts/check-submission';
-import { handIn, lastSubmission } from '../scripts/hand-in';
+import { lastSubmission } from '../scripts/hand-in';
+import { handInAtClosing } from '../scripts/hand-in-at-closing';
 import { drawSetVariants, storeVariants } from './draw-set-variants';
 import { enterStage, tellStage, type Mover } from './enter-stage';
 import { obstaclesTo } from './preview-stage';
-import { demandSet, studentsOf } from './set-queries';
+import { demandSet, studentsOf, type SetRow } from './set-queries';
 import { demandCurrent } from './set-rules';
 
 /**
- * Closes a set: in one transaction it is closed, and what is saved is handed in for every student, also for those who
- * never opened their sheet. Call `checkClosedSet` afterwards; until it is done, the clock takes it up again.
+ * Closes a set: in one transaction it is closed, and what is saved is handed in for every student whose time is over, also
+ * for those who never opened their sheet. Call `checkClosedSet` afterwards; until it is done, the clock takes it up again.
  *
  * @param version the version that was looked at; absent for the clock
  * @throws RequestError 404, 409, 412
@@ -37,14 +39,33 @@ export async function closeSet(context: Context, setId: string, mover: Mover, ve
       storeVariants(tx, drawn);
       for (const { membershipId } of studentsOf(tx, set.courseId)) beginScript(tx, set, membershipId, now);
       // What the clock closes was closed at its time, however late the server noticed.
-      const closedAt = mover.userId === null ? (set.closesAt ?? now) : now;
-      enterStage(tx, set, 'closed', mover, now, { closesAt: closedAt });
-      for (const script of tx.select().from(scripts).where(eq(scripts.setId, setId)).all())
-        handIn(tx, script, { by: 'closing', at: closedAt, idempotencyKey: `closing ${setId}` });
+      enterStage(tx, set, 'closed', mover, now, { closesAt: Math.min(set.closesAt ?? now, now) });
+      handInWhatIsDue(tx, demandSet(tx, setId).set, now);
     },
     { behavior: 'immediate' },
   );
   tellStage(context, before, 'closed');
+}
+
+/** Hands in the scripts of a set whose students' closing time is over. @returns how many there were */
+function handInWhatIsDue(tx: Queryable, set: SetRow, now: number): number {
+  const waiting = tx
+    .select()
+    .from(scripts)
+    .where(and(eq(scripts.setId, set.id), set.lateRule === null ? isNull(scripts.closedAt) : undefined))
+    .all();
+  for (const script of waiting) handInAtClosing(tx, set, script, now);
+  return waiting.length;
+}
+
+/**
+ * Hands in what is due by students' own closing times, and, where late work is taken, by the closing time of all; call it
+ * again and again.
+ *
+ * @param setId a set that is open or closed
+ */
+export function handInByTheClock({ db, clock }: Pick<Context, 'db' | 'clock'>, setId: string): void {
+  db.transaction((tx) => handInWhatIsDue(tx, demandSet(tx, setId).set, clock.now()), { behavior: 'immediate' });
 }
 
 /** How many scripts are checked at once. */
@@ -96,17 +117,18 @@ async function enterScript(context: Context, scriptId: string): Promise<void> {
   }
 }
 
-/** Scripts with an answer that is on no pile yet. */
+/** Scripts whose student's time is over, with an answer that is on no pile yet. */
 function scriptsToEnter({ db }: Pick<Context, 'db'>, setId: string) {
   return db
     .selectDistinct({ id: scripts.id })
     .from(scripts)
     .innerJoin(answers, eq(answers.scriptId, scripts.id))
-    .where(and(eq(scripts.setId, setId), isNull(answers.state)))
+    .where(and(eq(scripts.setId, setId), isNotNull(scripts.closedAt), isNull(answers.state)))
     .all();
 }
 
-function tellPiles(context: Context, setId: string): void {
+/** Tells the benches of a set's piles that answers came or went. */
+export function tellPiles(context: Context, setId: string): void {
   const { db } = context;
   const changed = db.transaction(
     (tx) =>

@@ -2,8 +2,10 @@ import { and, eq, isNotNull, isNull } from 'drizzle-orm';
 import type { Queryable } from '@drizzle/client';
 import { answers, scripts } from '@drizzle/schema';
 import type { SetStage } from '@shared/primitives';
+import { lateRuleInWords } from '@shared/late-rule';
 import { stageMoves, type StagePreview } from '@shared/sets';
 import { momentOf, spanOf } from '@shared/times';
+import { allowancesOf, closesToAllAt, timesUnder } from '../scripts/own-times';
 import {
   countsOf,
   demandSet,
@@ -49,7 +51,7 @@ export function obstaclesTo({ tx, set, now }: Look, to: SetStage): string[] {
   }
   if (to === 'ready' || to === 'open') return obstaclesToOpening(tx, set, now);
   if (to === 'marking' && set.stage === 'closed') {
-    const missing = unenteredScripts(tx, set.id);
+    const missing = unenteredScripts(tx, set.id, now);
     return missing > 0
       ? [`${scriptsInWords(missing)} still being handed in and checked. This takes a moment; look again soon.`]
       : [];
@@ -72,14 +74,35 @@ function obstaclesToOpening(tx: Queryable, set: SetRow, now: number): string[] {
   return obstacles;
 }
 
-/** Scripts of a set that have not entered their piles. */
-export function unenteredScripts(tx: Queryable, setId: string): number {
+/** Scripts of a set that have not entered their piles, though their students' time is over. */
+export function unenteredScripts(tx: Queryable, setId: string, now: number): number {
+  const { set } = demandSet(tx, setId);
+  const own = allowancesOf(tx, setId);
   return tx
-    .selectDistinct({ id: scripts.id })
+    .selectDistinct({ id: scripts.id, membershipId: scripts.membershipId })
     .from(scripts)
     .innerJoin(answers, eq(answers.scriptId, scripts.id))
     .where(and(eq(scripts.setId, setId), isNull(answers.state)))
-    .all().length;
+    .all()
+    .filter(({ membershipId }) => !timesUnder(set, own.get(membershipId) ?? null, now).isOpen).length;
+}
+
+/** Students of the course who have more time than a set gives, with the last of their times. */
+function withMoreTime({ tx, set, now }: Look): { readonly students: number; readonly last: number } {
+  const own = allowancesOf(tx, set.id);
+  const from = Math.max(now, set.closesAt ?? 0);
+  const times = studentsOf(tx, set.courseId).flatMap(({ membershipId }) => own.get(membershipId)?.closesAt ?? []);
+  const later = times.filter((at) => at > from);
+  return { students: later.length, last: Math.max(...later) };
+}
+
+function moreTimeInWords(look: Look): string[] {
+  const { students, last } = withMoreTime(look);
+  if (students === 0) return [];
+  const who = `${studentsIn(students)} ${students === 1 ? 'has' : 'have'} an allowance`;
+  return [
+    `${who} and can go on until ${momentOf(last, look.course.timeZone)}${students === 1 ? '' : ' at the latest'}. Their answers enter the piles after that.`,
+  ];
 }
 
 function effectsOf(look: Look, to: SetStage): string[] {
@@ -141,10 +164,16 @@ function effectsOfOpening({ tx, set, course, now }: Look): string[] {
       : [
           `It closes by itself ${momentOf(set.closesAt, course.timeZone)}, in ${spanOf(Math.max(0, set.closesAt - now))}.`,
         ]),
+    ...(set.lateRule === null
+      ? []
+      : [
+          `Late work is taken until ${momentOf(closesToAllAt(set) ?? now, course.timeZone)}; ${lateRuleInWords(set.lateRule)}.`,
+        ]),
   ];
 }
 
-function effectsOfClosing({ tx, set, course, now }: Look): string[] {
+function effectsOfClosing(look: Look): string[] {
+  const { tx, set, course, now } = look;
   const counts = countsOf(tx, set);
   const open = counts.students - counts.handedIn;
   const early =
@@ -155,7 +184,10 @@ function effectsOfClosing({ tx, set, course, now }: Look): string[] {
       : [];
   return [
     ...early,
-    'No student can type, add a page or hand in any more.',
+    withMoreTime(look).students === 0
+      ? 'No student can type, add a page or hand in any more.'
+      : 'No other student can type, add a page or hand in any more.',
+    ...moreTimeInWords(look),
     open === 0
       ? 'All students have handed in. What they saved since is handed in too.'
       : `${studentsIn(open)} ${open === 1 ? 'has' : 'have'} not handed in. What they have saved is handed in for them; ${String(counts.students - counts.answered)} of all sheets hold no answer.`,

@@ -1,12 +1,13 @@
-import { and, eq, inArray, isNull, lte } from 'drizzle-orm';
+import { and, eq, inArray, isNotNull, isNull, lte } from 'drizzle-orm';
 import { answers, scripts, sets } from '@drizzle/schema';
 import type { Context } from '../context';
-import { checkClosedSet, closeSet } from './close-set';
+import { closesToAllAt } from '../scripts/own-times';
+import { checkClosedSet, closeSet, handInByTheClock } from './close-set';
 import { theClock } from './enter-stage';
 import { openSet } from './open-set';
 
 /**
- * What is due by the clock: sets open and close at their times, and checks of closed sets that were broken off go on. Call it
+ * What is due by the clock: sets open and close at their times, also for students with times of their own, and checks of closed sets that were broken off go on. Call it
  * once at start and every few seconds; it does nothing twice.
  *
  * @returns how many sets it opened, closed, and went on checking
@@ -17,7 +18,7 @@ export async function runClockStages(
   const { db, clock } = context;
   const due = (stage: 'ready' | 'open', column: typeof sets.opensAt | typeof sets.closesAt) =>
     db
-      .select({ id: sets.id })
+      .select()
       .from(sets)
       .where(and(eq(sets.stage, stage), lte(column, clock.now())))
       .all();
@@ -25,18 +26,34 @@ export async function runClockStages(
   let opened = 0;
   for (const { id } of due('ready', sets.opensAt)) opened += await attempt(context, id, openSet);
   let closed = 0;
-  for (const { id } of due('open', sets.closesAt)) closed += await attempt(context, id, closeSet);
+  for (const set of due('open', sets.closesAt)) {
+    if ((closesToAllAt(set) ?? 0) <= clock.now()) closed += await attempt(context, set.id, closeSet);
+    else handInByTheClock(context, set.id);
+  }
+  for (const { id } of withScriptsOut(context)) handInByTheClock(context, id);
 
   const unchecked = db
     .selectDistinct({ id: sets.id })
     .from(sets)
     .innerJoin(scripts, eq(scripts.setId, sets.id))
     .innerJoin(answers, eq(answers.scriptId, scripts.id))
-    .where(and(inArray(sets.stage, ['closed', 'marking', 'moderation']), isNull(answers.state)))
+    .where(
+      and(inArray(sets.stage, ['closed', 'marking', 'moderation']), isNotNull(scripts.closedAt), isNull(answers.state)),
+    )
     .all();
   let checked = 0;
   for (const { id } of unchecked) checked += (await checkClosedSet(context, id)) > 0 ? 1 : 0;
   return { opened, closed, checked };
+}
+
+/** Closed sets with scripts that are not handed in, since their students had more time. */
+function withScriptsOut({ db }: Context) {
+  return db
+    .selectDistinct({ id: sets.id })
+    .from(sets)
+    .innerJoin(scripts, eq(scripts.setId, sets.id))
+    .where(and(inArray(sets.stage, ['closed', 'marking', 'moderation']), isNull(scripts.closedAt)))
+    .all();
 }
 
 /** Why sets could not be moved, so that it is logged once and not with every beat. */

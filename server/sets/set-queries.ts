@@ -176,6 +176,7 @@ export function presentSet(tx: Queryable, setId: string): SetDetail {
     coverText: set.coverText,
     individualVariants: set.individualVariants,
     showKeys: set.showKeys,
+    lateRule: set.lateRule,
     problems: own.map(({ setProblem, revision, status }): SetProblem => {
       const newest = latest.get(setProblem.problemId) ?? revision;
       return {

@@ -106,9 +106,13 @@ export function demandCurrent(tx: Queryable, setId: string, version: number) {
   return found;
 }
 
-function demandTimes({ opensAt, closesAt }: ReturnType<typeof setFields.parse>): void {
+function demandTimes({ opensAt, closesAt, lateRule }: ReturnType<typeof setFields.parse>): void {
   if (opensAt !== null && closesAt !== null && closesAt <= opensAt)
     throw invalidField(['closesAt'], 'The set must close after it opens.');
+  if (lateRule === null) return;
+  if (closesAt === null) throw invalidField(['closesAt'], 'Late work needs a closing time that it comes after.');
+  if (lateRule.until <= closesAt)
+    throw invalidField(['lateRule', 'until'], 'The last date for late work must come after the closing time.');
 }
 
 function demandChangeable(set: SetRow, fields: ReturnType<typeof setFields.parse>, now: number): void {
@@ -123,8 +127,17 @@ function demandChangeable(set: SetRow, fields: ReturnType<typeof setFields.parse
     if (fields.closesAt <= now)
       throw invalidField(['closesAt'], 'Choose a time to come, or close the set by hand on its page.');
   }
+  if (!isSameRule(fields.lateRule, set.lateRule) && set.stage !== 'open')
+    throw invalidField(['lateRule'], 'The set is closed; what becomes of late work stays as it is.');
+  if (fields.lateRule === null && set.lateRule !== null && fields.closesAt !== null && fields.closesAt <= now)
+    throw invalidField(['lateRule'], 'Late work is being taken already. Close the set by hand to end that.');
   if (fields.showKeys !== set.showKeys && (set.stage === 'released' || set.stage === 'archived'))
     throw invalidField(['showKeys'], 'The set is released; what students see of the keys stays as it is.');
+}
+
+function isSameRule(one: SetRow['lateRule'], other: SetRow['lateRule']): boolean {
+  if (one === null || other === null) return one === other;
+  return one.percent === other.percent && one.of === other.of && one.per === other.per && one.until === other.until;
 }
 
 function isSameChoice(tx: Queryable, setId: string, chosen: readonly ChosenProblem[]): boolean {
@@ -216,8 +229,8 @@ export function listUsableProblems(tx: Queryable, courseId: string, userId: stri
 }
 
 function settingsOf(set: SetRow) {
-  const { title, coverText, opensAt, closesAt, individualVariants, showKeys } = set;
-  return { title, coverText, opensAt, closesAt, individualVariants, showKeys };
+  const { title, coverText, opensAt, closesAt, individualVariants, showKeys, lateRule } = set;
+  return { title, coverText, opensAt, closesAt, individualVariants, showKeys, lateRule };
 }
 
 function sentenceOf(set: SetRow, fields: ReturnType<typeof setFields.parse>, deed: Deed, timeZone: string): string {
