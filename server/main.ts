@@ -14,6 +14,7 @@ import { createKeyPool } from './keys';
 import { createLive } from './live/live';
 import { leaveJobs, workJobs } from './jobs/work-jobs';
 import { sweepHolds } from './marking/marking-routes';
+import { openReceiptKey } from './receipts/receipt-key';
 import { runClockStages } from './sets/run-clock-stages';
 import { sendDueLetters, smtpTransport } from './mail/post-office';
 
@@ -23,6 +24,7 @@ const heartbeat = 2_000;
 async function main(): Promise<void> {
   const config = readConfig(process.env);
   mkdirSync(config.dataDir, { recursive: true });
+  openReceiptKey(config.dataDir);
   const log = pino({ level: config.logLevel, base: null });
   const keys = createKeyPool({});
   const live = createLive();

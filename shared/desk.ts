@@ -16,6 +16,7 @@ export const deskPages = [
   'sheet',
   'receipt',
   'feedback',
+  'queries',
 ] as const;
 
 /** One thing that needs this person now. */

@@ -50,6 +50,7 @@ export const policy = {
   'read piles': ['lead', 'marker'],
   mark: ['lead', 'marker'],
   'see all marks': ['lead'],
+  'decide rulings': ['lead'],
   'verify receipts': ['lead', 'marker'],
   'query a mark': ['student'],
   'answer mark queries': ['lead', 'marker'],

@@ -260,7 +260,7 @@ function refuseLastLead(tx: Queryable, courseId: string): void {
   if ((leads?.n ?? 0) < 2) throw conflict('A course needs a lead. Make somebody else lead first.');
 }
 
-function presentCourse(row: typeof courses.$inferSelect): Course {
+function presentCourse(row: Omit<typeof courses.$inferSelect, 'queryPolicy'>): Course {
   const { id, title, term, timeZone, createdAt, version } = row;
   return { id, title, term, timeZone, convention: conventionOf(row), createdAt, version };
 }

@@ -25,7 +25,10 @@ async function handedIn() {
     .set('Idempotency-Key', newId())
     .send({ text: '2.5' })
     .expect(200);
-  const submitted = await client.post(`/api/sets/${built.setId}/submissions`).set('Idempotency-Key', newId()).expect(201);
+  const submitted = await client
+    .post(`/api/sets/${built.setId}/submissions`)
+    .set('Idempotency-Key', newId())
+    .expect(201);
   return { ...built, receipt: submitted.body as Receipt };
 }
 
@@ -35,7 +38,8 @@ async function verdictOf(person: { id: string } | null, courseId: string, text: 
     .body as ReceiptVerdict;
 }
 
-const failing = (verdict: ReceiptVerdict) => verdict.findings.filter(({ holds }) => holds === false).map(({ test }) => test);
+const failing = (verdict: ReceiptVerdict) =>
+  verdict.findings.filter(({ holds }) => holds === false).map(({ test }) => test);
 
 describe('a receipt', () => {
   it('is verified by anyone on the team, from its file and from its letter', async () => {

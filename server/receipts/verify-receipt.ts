@@ -71,7 +71,11 @@ function signatureFinding(read: ReceiptFile): ReceiptFinding {
 
 function contentsFinding(read: ReceiptFile): ReceiptFinding {
   if (!read.content)
-    return { test: 'contents', holds: null, sentence: 'It carries no contents, so none were compared with its digest.' };
+    return {
+      test: 'contents',
+      holds: null,
+      sentence: 'It carries no contents, so none were compared with its digest.',
+    };
   const holds = createHash('sha256').update(canonicalForm(read.content), 'utf8').digest('hex') === read.digest;
   return {
     test: 'contents',

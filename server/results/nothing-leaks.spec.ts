@@ -170,6 +170,7 @@ function addressesOf(built: ReturnType<typeof plantedSet>): string[] {
     userId: [built.marker.id],
     jobId: [built.jobId],
     correctionId: [built.correctionId],
+    queryId: [newId()],
     pageId: [newId()],
     stage: setStageNames,
   };

@@ -7,6 +7,7 @@ import { canonicalForm } from '@shared/scripts';
 import { fullMomentOf } from '@shared/times';
 import { newId } from '../http/new-id';
 import { queueLetter } from '../mail/letters';
+import { receiptOf } from '../receipts/receipt-of';
 import type { ScriptRow } from './begin-script';
 import { contentOf, savedParts } from './saved-answers';
 
@@ -91,7 +92,8 @@ function sendReceipt(tx: Queryable, script: ScriptRow, submission: SubmissionRow
         `Parts with an answer: ${String(answered)} of ${String(submission.content.length)}`,
         `Digest (SHA-256): ${submission.digest}`,
       ].join('\n'),
-      'Keep this letter: time and digest prove what was handed in.',
+      'Keep this letter: time, digest and signature prove what was handed in. Anyone on the course’s team can verify what stands between the braces.',
+      JSON.stringify(receiptOf(script, submission), null, 2),
     ].join('\n\n'),
     now: submission.at,
   });

@@ -89,6 +89,7 @@ export default class Desk {
       case 'problems':
       case 'people':
       case 'marking':
+      case 'queries':
         return [...course, page];
       case 'new set':
         return [...course, 'sets', 'new'];
