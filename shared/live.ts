@@ -1,6 +1,7 @@
 import * as z from 'zod';
 import { jobState } from './jobs';
 import { identifier, setStage } from './primitives';
+import { ruling } from './rulings';
 
 /** Where the live connection is found on the server. */
 export const livePath = '/live';
@@ -46,12 +47,18 @@ export const liveEvents = {
   answerSetAside: answerFact.extend({ byId: identifier }),
   /** An answer waits again: it was returned to the pile, or its mark was undone. */
   answerReturned: answerFact,
+  /** A ruling was asked for, or one more answer waits on it. */
+  rulingAsked: pileFact.extend({ ruling }),
+  /** The lead has decided. */
+  rulingDecided: pileFact.extend({ ruling }),
   /** Answers were handed in, or checked anew: fetch the pile again. */
   pileChanged: pileFact,
   /** Who is on the pile now. */
   presenceChanged: z.object({ pileId: identifier, present: z.array(presence) }),
   /** A set entered a stage. */
   stageChanged: z.object({ courseId: identifier, setId: identifier, stage: setStage }),
+  /** Somebody commented on a problem, settled a comment, was asked, or decided: fetch its review again. */
+  reviewChanged: z.object({ problemId: identifier }),
   /** Long work went on, or ended. It is told to who started it. */
   jobMoved: z.object({ jobId: identifier, state: jobState, done: z.number().int(), total: z.number().int() }),
 } as const;
@@ -64,9 +71,10 @@ export type LiveEvent<Name extends LiveEventName> = z.infer<(typeof liveEvents)[
 /** The events as the two ends of the connection type them. */
 export type ServerEvents = { [Name in LiveEventName]: (body: LiveEvent<Name>) => void };
 
-/** What a page asks for: the bench of a pile with an identifier of its own, or a course's news. */
+/** What a page asks for: the bench of a pile with an identifier of its own, a course's news, or a problem's review. */
 export const watchPile = z.object({ pileId: identifier, benchId: identifier });
 export const watchCourse = z.object({ courseId: identifier });
+export const watchProblem = z.object({ problemId: identifier });
 
 /** The answer to a wish to watch. */
 export type Watching = { readonly ok: true } | { readonly ok: false; readonly detail: string };
@@ -78,4 +86,6 @@ export interface ClientEvents {
   leavePile: (wish: z.infer<typeof watchPile>) => void;
   watchCourse: (wish: z.infer<typeof watchCourse>, acknowledge: (watching: Watching) => void) => void;
   leaveCourse: (wish: z.infer<typeof watchCourse>) => void;
+  watchProblem: (wish: z.infer<typeof watchProblem>, acknowledge: (watching: Watching) => void) => void;
+  leaveProblem: (wish: z.infer<typeof watchProblem>) => void;
 }

@@ -4,6 +4,7 @@ import { colleague, holdKind, presence } from './live';
 import { identifier, instant, setStage, versionNumber } from './primitives';
 import { criterion, verdict } from './problems';
 import { defineRoute } from './route';
+import { ruling } from './rulings';
 
 /** One criterion as a mark settles it. */
 export const markedCriterion = z.object({
@@ -120,6 +121,8 @@ export const pile = pileHeading.extend({
   answers: z.array(pileAnswer),
   team: z.array(colleague),
   present: z.array(presence),
+  /** Open and decided ones, in the order in which they were asked. */
+  rulings: z.array(ruling),
   /** Who asks. */
   me: identifier,
   seesAllMarks: z.boolean(),

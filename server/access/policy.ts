@@ -46,6 +46,7 @@ export const policy = {
   'read sets': ['lead', 'marker'],
   'change sets': ['lead'],
   'give allowances': ['lead'],
+  'preview sheets': ['lead'],
   'answer a sheet': ['student'],
   'read piles': ['lead', 'marker'],
   mark: ['lead', 'marker'],

@@ -9,6 +9,8 @@ import { findAnswer, findPile, marksAreGiven, teamOf } from './find-pile';
 import { dropExpiredHolds, letGo, renewHolds, shortenHolds, takeHolds } from './holds';
 import { listPiles, presentHeading } from './list-piles';
 import { presentAnswers } from './present-answers';
+import { addRulingRoutes } from './ruling-routes';
+import { rulingsOf } from './rulings';
 import { tellStage } from '../sets/enter-stage';
 import { presentOn, tellDeed, tellHolds, tellPresence } from './tell-piles';
 import { conflict } from '../http/errors';
@@ -55,6 +57,7 @@ export function addMarkingRoutes(serve: Serve, context: Context): void {
       answers,
       team: teamOf(db, set.courseId),
       present: presentOn(context, db, set.courseId, params.pileId),
+      rulings: rulingsOf(db, params.pileId),
       me: viewer.membershipId,
       seesAllMarks: viewer.seesAllMarks,
     };
@@ -111,6 +114,8 @@ export function addMarkingRoutes(serve: Serve, context: Context): void {
       returnAnswer(tx, doer, { ...params, version, now: clock.now() }),
     ),
   );
+
+  addRulingRoutes(serve, context);
 
   live.onBenchOpened((bench) => {
     tellPresence(context, bench.pileId);
