@@ -7,6 +7,7 @@ import {
   livePath,
   watchCourse,
   watchPile,
+  watchProblem,
   type ClientEvents,
   type LiveEvent,
   type LiveEventName,
@@ -16,7 +17,7 @@ import {
 import type { SignedIn } from '../access/policy';
 import type { Config } from '../config';
 import { isSameOrigin } from '../http/same-origin';
-import { personRoom, roomOfCourse, seatAt } from './rooms';
+import { personRoom, roomOfCourse, roomOfProblem, seatAt } from './rooms';
 
 /** Finds the person behind a `Cookie` header. */
 export type Authenticate = (cookieHeader: string) => Promise<SignedIn | null>;
@@ -67,6 +68,7 @@ interface SocketData {
   person: SignedIn;
   benches: Map<string, OpenBench>;
   courses: Set<string>;
+  problems: Set<string>;
   signedOut?: boolean;
 }
 
@@ -75,7 +77,7 @@ type LiveSocket = Socket<ClientEvents, ServerEvents, Record<string, never>, Sock
 /** How often an open connection's session and rooms are looked at again, in milliseconds. */
 const recheck = 60_000;
 
-/** Most benches and courses that one connection may watch. */
+/** Most benches, courses and problems that one connection may watch, of each. */
 const mostWatched = 8;
 
 /** Makes the live connection. Until it is attached to a server, facts reach observers only, which serves tests. */
@@ -99,6 +101,7 @@ export function createLive(): Live {
   function connect(socket: LiveSocket, world: World, authenticate: Authenticate): void {
     socket.data.benches = new Map();
     socket.data.courses = new Set();
+    socket.data.problems = new Set();
     void socket.join(personRoom(socket.data.person.id));
     const whoNow = () => authenticate(socket.handshake.headers.cookie ?? '');
 
@@ -149,6 +152,27 @@ export function createLive(): Live {
       socket.data.courses.delete(asked.courseId);
       leaveRooms(socket, `course:${asked.courseId}`);
     });
+    socket.on('watchProblem', (wish, acknowledge) => {
+      const asked = read(watchProblem, wish);
+      if (!asked) return;
+      void whoNow().then((person) => {
+        if (!socket.connected) return;
+        const room = person && roomOfProblem(world.db, person, asked.problemId);
+        if (!room || socket.data.problems.size >= mostWatched) {
+          answer(acknowledge, refusal);
+          return;
+        }
+        socket.data.problems.add(asked.problemId);
+        void socket.join(room);
+        answer(acknowledge, { ok: true });
+      }, disconnect);
+    });
+    socket.on('leaveProblem', (wish) => {
+      const asked = read(watchProblem, wish);
+      if (!asked) return;
+      socket.data.problems.delete(asked.problemId);
+      leaveRooms(socket, `problem:${asked.problemId}`);
+    });
     socket.on('disconnect', (reason) => {
       // A page that is closed says so; all else may come back.
       const closed = reason === 'client namespace disconnect';
@@ -174,7 +198,8 @@ export function createLive(): Live {
       const still =
         person !== null &&
         piles.every((pileId) => isIn(socket, seatAt(world.db, person, pileId)?.room)) &&
-        [...socket.data.courses].every((courseId) => isIn(socket, roomOfCourse(person, courseId)));
+        [...socket.data.courses].every((courseId) => isIn(socket, roomOfCourse(person, courseId))) &&
+        [...socket.data.problems].every((problemId) => isIn(socket, roomOfProblem(world.db, person, problemId)));
       if (!still) end(socket);
     }
   }

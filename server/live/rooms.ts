@@ -2,6 +2,7 @@ import { eq } from 'drizzle-orm';
 import type { Queryable } from '@drizzle/client';
 import { piles, sets } from '@drizzle/schema';
 import { can, type SignedIn } from '../access/policy';
+import { mayReadProblem } from '../access/problem-readers';
 
 /** Those who watch a pile and see their own marks only, and those who may see every mark. */
 export const pileRoom = (pileId: string) => `pile:${pileId}`;
@@ -13,6 +14,14 @@ export const personRoom = (userId: string) => `person:${userId}`;
 /** The teaching team's and the students' news of a course. */
 export const teamRoom = (courseId: string) => `course:${courseId}:team`;
 export const studentsRoom = (courseId: string) => `course:${courseId}:students`;
+
+/** Those who have a problem open. */
+export const problemRoom = (problemId: string) => `problem:${problemId}`;
+
+/** The room of a problem that a person may enter; null where they may not. */
+export function roomOfProblem(tx: Queryable, person: SignedIn, problemId: string): string | null {
+  return mayReadProblem(tx, person, problemId) ? problemRoom(problemId) : null;
+}
 
 /** What a person may watch of a pile, by the same policy that HTTP uses, and as whom; null where they may not. */
 export function seatAt(

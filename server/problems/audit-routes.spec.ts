@@ -109,6 +109,8 @@ describe('the audit of a draft', () => {
 describe('making a problem ready', () => {
   it('audits the revision first', async () => {
     const problem = await revise(await begin());
+    const overruling = { revision: 1, reason: 'No colleague this term.', courseId };
+    await lead.post(`/api/problems/${problem.id}/overruling`).send(overruling).expect(201);
     const { body } = await makeReady(problem).expect(200);
     expect(body).toMatchObject({ status: 'ready' });
     expect(harness.db.select().from(audits).all()).toHaveLength(1);

@@ -4,14 +4,14 @@ import type { Context } from '../context';
 import type { Serve } from '../http/serve';
 import { auditStateOf, beginAudit } from './audit-rules';
 import { demandProblem } from './problem-rules';
+import { demandReader } from './review-rules';
 
 /** The key audit of a problem's draft. */
 export function addAuditRoutes(serve: Serve, context: Context): void {
   const { db } = context;
 
   serve(auditRoutes.audit, ({ user, params }) => {
-    demand(user, 'read problems');
-    const { draft } = demandProblem(db, params.problemId, user.id);
+    const { draft } = demandReader(db, user, params.problemId);
     return auditStateOf(db, params.problemId, draft);
   });
 

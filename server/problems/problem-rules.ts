@@ -11,8 +11,10 @@ import { newId } from '../http/new-id';
 import { enter } from '../record/enter';
 import type { Keys } from '../variants/evaluate-outcomes';
 import { demandCleanAudit } from './audit-rules';
+import { followLines } from './comment-lines';
 import { keyFaults } from './key-faults';
 import { findProblem, latestRevision, presentSummary, type ProblemRow } from './problem-queries';
+import { demandSignOff, letsUse, signOffOf } from './sign-off';
 
 /** Who does it, and when. */
 export interface Deed {
@@ -106,13 +108,15 @@ export function saveDraft(
         .set({ draft, draftSavedAt: deed.now, version: version + 1 })
         .where(and(eq(problems.id, problemId), eq(problems.version, version)))
         .run();
+      followLines(tx, problemId, row.draft.statement, draft.statement);
       return readProblem(tx, problemId, deed.personId);
     },
     { behavior: 'immediate' },
   );
 }
 
-function demandCurrent(tx: Queryable, problemId: string, version: number, personId: string): ProblemRow {
+/** @throws RequestError 404; 412 with the current state */
+export function demandCurrent(tx: Queryable, problemId: string, version: number, personId: string): ProblemRow {
   const row = demandProblem(tx, problemId, personId);
   if (row.version !== version) {
     throw stale(
@@ -157,8 +161,10 @@ export async function makeRevision(
           createdAt: deed.now,
         })
         .run();
+      // What was signed off is used no further once its sign-off is void; sets keep the revision they have.
+      const goesBack = row.status === 'ready' && !letsUse(signOffOf(tx, problemId));
       tx.update(problems)
-        .set({ version: row.version + 1 })
+        .set({ version: row.version + 1, ...(goesBack ? { status: 'in review' as const } : {}) })
         .where(eq(problems.id, problemId))
         .run();
       enter(tx, {
@@ -167,7 +173,7 @@ export async function makeRevision(
         action: 'revision made',
         thing: 'problem',
         thingId: problemId,
-        sentence: `Revision ${String(number)} of “${content.title}” made.`,
+        sentence: `Revision ${String(number)} of “${content.title}” made.${goesBack ? ' It needs a fresh sign-off, so the problem is in review again.' : ''}`,
         reason: revise.reason,
       });
       return readProblem(tx, problemId, deed.personId);
@@ -188,7 +194,8 @@ async function demandContent(keys: Keys, draft: ProblemDraft): Promise<ProblemCo
  * Puts a problem in another state.
  *
  * @throws RequestError 404; 412; 409 where that state does not follow, where there is no revision, or where the key audit of
- *   the latest revision found something that stops use, or was not made (`auditForUse` makes it)
+ *   the latest revision found something that stops use, or was not made (`auditForUse` makes it), or where that revision
+ *   is neither signed off nor overruled
  */
 export function setProblemStatus(
   db: Database,
@@ -208,7 +215,10 @@ export function setProblemStatus(
         );
       }
       const revision = latestRevision(tx, problemId);
-      if (change.status === 'ready' && revision) demandCleanAudit(tx, problemId, revision.content);
+      if (change.status === 'ready' && revision) {
+        demandCleanAudit(tx, problemId, revision.content);
+        demandSignOff(tx, problemId);
+      }
       tx.update(problems)
         .set({ status: change.status, version: row.version + 1 })
         .where(eq(problems.id, problemId))

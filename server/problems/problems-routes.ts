@@ -6,7 +6,7 @@ import { keyLanguageRoute } from '@shared/key-language';
 import { keyPictureRoute } from '@shared/key-picture';
 import { problemRoutes as routes } from '@shared/problem-routes';
 import { readDraft } from '@shared/read-draft';
-import { demand, membershipFor, type SignedIn } from '../access/policy';
+import { can, demand, membershipFor, type SignedIn } from '../access/policy';
 import type { Context } from '../context';
 import { conventionOf } from '../courses/convention';
 import { conflict, invalidField, notFound } from '../http/errors';
@@ -27,6 +27,7 @@ import {
   saveDraft,
   setProblemStatus,
 } from './problem-rules';
+import { demandReader } from './review-rules';
 import { sampleDraft } from './sample-draft';
 
 /** The bank: problems, their drafts and revisions. */
@@ -58,13 +59,14 @@ export function addProblemRoutes(serve: Serve, context: Context): void {
   });
 
   serve(routes.sampleProblem, async ({ user, body }) => {
-    demand(user, 'write problems');
+    demand(user, 'review problems');
     return sampleDraft(keys, body.draft, body);
   });
 
   serve(routes.problem, ({ user, params }) => {
-    demand(user, 'read problems');
-    return readProblem(db, params.problemId, user.id);
+    demandReader(db, user, params.problemId);
+    const problem = readProblem(db, params.problemId, user.id);
+    return can(user, 'write problems') ? problem : { ...problem, nextStatuses: [] };
   });
 
   serve(routes.saveDraft, ({ user, params, body, version }) => {
@@ -78,15 +80,13 @@ export function addProblemRoutes(serve: Serve, context: Context): void {
   });
 
   serve(routes.revisions, ({ user, params }) => {
-    demand(user, 'read problems');
-    demandProblem(db, params.problemId, user.id);
+    demandReader(db, user, params.problemId);
     const items = listRevisions(db, params.problemId).map(presentRevision);
     return { items, total: items.length };
   });
 
   serve(routes.revision, ({ user, params }) => {
-    demand(user, 'read problems');
-    demandProblem(db, params.problemId, user.id);
+    demandReader(db, user, params.problemId);
     const found = listRevisions(db, params.problemId).find((revision) => revision.number === params.number);
     if (!found) throw notFound('revision');
     return presentRevision(found);
@@ -114,12 +114,12 @@ export function addProblemRoutes(serve: Serve, context: Context): void {
   });
 
   serve(keyPictureRoute, ({ user, body }) => {
-    demand(user, 'write problems');
+    demand(user, 'review problems');
     return drawKey(keys, body);
   });
 
   serve(keyLanguageRoute, ({ user, query }) => {
-    demand(user, 'write problems');
+    demand(user, 'review problems');
     return query.examples === 'run' ? language.withExamples() : language.plain;
   });
 }
