@@ -3,6 +3,7 @@ import { defaultConvention, type Convention } from '../optics/convention';
 import type { ComparedValue } from '../optics/methods';
 import { OpticsError } from '../optics/optics-error';
 import { isState } from '../optics/state';
+import { forgetStates } from '../optics/state-memo';
 import { stateFunctions } from '../optics/states';
 import { KeyError } from './key-error';
 import { mathematics } from './mathematics';
@@ -78,10 +79,15 @@ export function compileKey(expression: string, options: CompileOptions): Compile
     uses: [...compiler.uses],
     run: (values, look, seed) => {
       const figures: ComparedValue[] = [];
-      const value = guarded(source.whole, undefined, () =>
-        step({ values, look, seed, convention, note: (figure) => void figures.push(figure) }),
-      );
-      return { value, figures };
+      forgetStates();
+      try {
+        const value = guarded(source.whole, undefined, () =>
+          step({ values, look, seed, convention, note: (figure) => void figures.push(figure) }),
+        );
+        return { value, figures };
+      } finally {
+        forgetStates();
+      }
     },
   };
 }

@@ -31,7 +31,11 @@ export class KeyEvaluator {
     try {
       const compiled = this.compile(request);
       const givens = readGivens(request.givens);
-      return { key: request.wanted ? evaluateWanted(compiled, givens, request.wanted) : evaluateKey(compiled, givens, request.seed) };
+      return {
+        key: request.wanted
+          ? evaluateWanted(compiled, givens, request.wanted)
+          : evaluateKey(compiled, givens, request.seed),
+      };
     } catch (error) {
       if (error instanceof KeyError) return { fault: error.toFault() };
       throw error;

@@ -1,7 +1,7 @@
 import { MethodDoesNotApply } from '../optics/method-does-not-apply';
 import { eachAmplitude, type JointKet } from '../optics/number-basis/joint-ket';
-import { ensembleOf } from '../optics/number-basis/joint-states';
-import { defaultResolution, numberState } from '../optics/number-basis/number-states';
+import { ensembleOf, numberState } from '../optics/number-basis/number-states';
+import { defaultResolution } from '../optics/number-basis/resolution';
 import type { NumberState } from '../optics/number-basis/one-mode';
 import type { State } from '../optics/state';
 import { KeyError } from './key-error';

@@ -2,6 +2,7 @@ import { abs2 } from './complex';
 import { gaussianOf, type GaussianState } from './gaussian/gaussian-state';
 import { MethodDoesNotApply } from './method-does-not-apply';
 import { channelOf, type State } from './state';
+import { StateMemo } from './state-memo';
 
 /** Levels of the largest ket or diagonal state. */
 export const MOST_LEVELS = 16_384;
@@ -209,7 +210,7 @@ export function levelsFor(
   return { levels: best, outsideWeight: finite === undefined ? Math.exp(bestBound - best * bestT) : 0 };
 }
 
-const knownBounds = new WeakMap<State, Float64Array>();
+const knownBounds = new StateMemo<Float64Array>();
 
 /** logGenerating at each of LOG_TS, found when it is first asked for. */
 function boundsOf(state: State): (k: number) => number {

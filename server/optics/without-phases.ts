@@ -1,6 +1,7 @@
 import type { State } from './state';
+import { StateMemo } from './state-memo';
 
-const cache = new WeakMap<State, State>();
+const cache = new StateMemo<State>();
 
 /**
  * A state of one mode with the same photon numbers but without phase averages, dephasing and phase shifts.

@@ -1,5 +1,6 @@
 import { phase, type Complex } from '../complex';
 import { channelOf, type Mode, type State } from '../state';
+import { StateMemo } from '../state-memo';
 
 /** A Gaussian state: means and covariances of (x₁, p₁, x₂, p₂), ħ = 1, vacuum variance 1/2. */
 export interface GaussianState {
@@ -9,7 +10,7 @@ export interface GaussianState {
   readonly covariance: Float64Array;
 }
 
-const cache = new WeakMap<State, GaussianState | 'not Gaussian'>();
+const cache = new StateMemo<GaussianState | 'not Gaussian'>();
 
 /** The mean and covariance of a state that is Gaussian by the way it is written; undefined for others. */
 export function gaussianOf(state: State): GaussianState | undefined {

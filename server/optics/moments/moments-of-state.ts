@@ -2,6 +2,7 @@ import { abs, abs2, add, complex, conjugate, exponential, multiply, phase, times
 import { MethodDoesNotApply, StateVanishes } from '../method-does-not-apply';
 import { binomial, fallingFactorial, logFactorial } from '../special/factorials';
 import { channelOf, type State, type Superposition } from '../state';
+import { StateMemo } from '../state-memo';
 import { productTermsOf, type ModeKet, type ProductTerm } from './product-terms';
 import type { Moment, MomentSource } from './moment-figures';
 
@@ -9,7 +10,7 @@ import type { Moment, MomentSource } from './moment-figures';
 const HIGHEST_POWER = 80;
 const EPS = 2 ** -52;
 
-const cache = new WeakMap<State, MomentSource>();
+const cache = new StateMemo<MomentSource>();
 const ZERO_MOMENT: Moment = { value: complex(0), error: 0 };
 
 /**

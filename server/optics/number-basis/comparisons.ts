@@ -3,9 +3,11 @@ import { MethodDoesNotApply } from '../method-does-not-apply';
 import type { FigureEstimate } from '../moments/moment-figures';
 import type { State } from '../state';
 import { checkJointSize, innerProductOf, sliceOf, weightOf, type JointKet } from './joint-ket';
-import { ensembleOf, jointState, ketsOf } from './joint-states';
+import { ketsOf } from './joint-maps';
 import { singularValues } from './linear-algebra';
-import { asKet, beforeMixing, numberState, type Resolution } from './number-states';
+import { ensembleOf, jointState, numberState } from './number-states';
+import { asKet } from './one-mode-maps';
+import { beforeMixing, type Resolution } from './resolution';
 import { diagonalOf, simplest, type NumberState } from './one-mode';
 import { transposedNorm } from './transposed-norm';
 

@@ -1,9 +1,11 @@
 import { MethodDoesNotApply } from '../method-does-not-apply';
 import { channelsOf, type Channel, type State } from '../state';
 import { eachAmplitude } from './joint-ket';
-import { ensembleOf, pushedIn } from './joint-states';
-import { channelOnDiagonal, numberDiagonal, resolve, type Resolution } from './number-states';
+import { channelOnDiagonal } from './channels-on-numbers';
+import { ensembleOf, numberDiagonal } from './number-states';
 import type { NumberDiagonal } from './one-mode';
+import { pushedIn } from './operations-on-factors';
+import { builtOnce, resolve, type Resolution } from './resolution';
 
 /** P(n, m) of two modes, row by row of n. */
 export interface JointDiagonal {
@@ -19,27 +21,12 @@ const MOST_JOINT_LEVELS = 2000;
 /** Most multiplications of one channel. */
 const MOST_WORK = 2e8;
 
-const cache = new WeakMap<State, Map<string, JointDiagonal>>();
-
 /**
  * Joint photon probabilities; losses and amplifiers behind the last coherent operation need no coherences.
  *
  * @throws MethodDoesNotApply where the state would be too large
  */
-export function jointDiagonal(state: State, resolution: Resolution): JointDiagonal {
-  const key = `${resolution.logWeight}/${resolution.least}`;
-  let known = cache.get(state);
-  if (known === undefined) {
-    known = new Map();
-    cache.set(state, known);
-  }
-  let built = known.get(key);
-  if (built === undefined) {
-    built = build(state, resolution);
-    known.set(key, built);
-  }
-  return built;
-}
+export const jointDiagonal = builtOnce(build);
 
 function checkLevels(levels: number): void {
   if (levels > MOST_JOINT_LEVELS) {

@@ -17,11 +17,13 @@ import { channelsOf, isChannel, type State } from '../state';
 import { negativityOf, withoutGaussianUnitaries } from '../wigner-negativity';
 import { jointDiagonal } from './joint-diagonal';
 import { eachAmplitude } from './joint-ket';
-import { clickWeight, ensembleOf, pushedIn } from './joint-states';
+import { clickWeight } from './detection';
 import { entropyOf, fidelityOf, jointFidelity, jointPurity, logNegativityOf, overlapOf, purityOf } from './comparisons';
 import { loseDiagonal } from './number-maps';
-import { numberDiagonal, numberState, defaultResolution, type Resolution } from './number-states';
+import { ensembleOf, numberDiagonal, numberState } from './number-states';
 import { elementOf, simplest, type NumberDiagonal, type NumberState } from './one-mode';
+import { pushedIn } from './operations-on-factors';
+import { defaultResolution, type Resolution } from './resolution';
 import { wignerOnGrid } from './wigner-grid';
 import { densityAt, displacementTrace, husimiAt, wignerAt } from './wave-functions';
 

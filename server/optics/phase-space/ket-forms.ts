@@ -1,5 +1,6 @@
 import { abs2, complex, conjugate, multiply, times, logarithm, type Complex } from '../complex';
 import type { State, Superposition } from '../state';
+import { StateMemo } from '../state-memo';
 import {
   addConstant,
   addLinear,
@@ -25,7 +26,7 @@ export interface Forms {
   readonly relative: number;
 }
 
-const cache = new WeakMap<State, Forms>();
+const cache = new StateMemo<Forms>();
 
 /**
  * A pure state as a sum of Gaussians in holomorphic form: ψ(z) = Σ ψ_n zⁿ/√n!, one outer variable a mode.

@@ -1,6 +1,7 @@
 import { complex, conjugate, phase, times, type Complex } from '../complex';
 import { MethodDoesNotApply, StateVanishes } from '../method-does-not-apply';
 import { channelOf, type Channel, type Mode, type State } from '../state';
+import { StateMemo } from '../state-memo';
 import {
   addConstant,
   addLinear,
@@ -22,8 +23,8 @@ import { ketForms, type Forms } from './ket-forms';
 /** Most Gaussians that one state is summed of. */
 const MOST_TERMS = 400;
 
-const cache = new WeakMap<State, Forms>();
-const traces = new WeakMap<State, FormSum>();
+const cache = new StateMemo<Forms>();
+const traces = new StateMemo<FormSum>();
 
 /**
  * A state as a sum of Gaussians: its normally ordered characteristic function χ(ξ, η) = Tr[ρ e^{ξa†} e^{−ηa}] with

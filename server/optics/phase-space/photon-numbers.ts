@@ -1,6 +1,7 @@
 import { abs, complex, type Complex } from '../complex';
 import { MethodDoesNotApply } from '../method-does-not-apply';
 import type { State } from '../state';
+import { StateMemo } from '../state-memo';
 import { coefficientTable, LARGEST_TABLE, tableSize } from './coefficients';
 import { addConstant, outerToSources, substitute, type Form } from './form';
 import { normOfKetForms, sumOfForms, type FormSum } from './form-products';
@@ -39,7 +40,7 @@ export function isNormalisedAsWritten(state: State, kets: boolean): boolean {
   }
 }
 
-const norms = new WeakMap<State, { readonly norm: number; readonly relative: number }>();
+const norms = new StateMemo<{ readonly norm: number; readonly relative: number }>();
 
 /** ⟨ψ|ψ⟩ of a pure state's Gaussians, and its relative error. */
 export function ketNorm(state: State): { readonly norm: number; readonly relative: number } {

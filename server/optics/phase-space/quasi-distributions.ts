@@ -2,6 +2,7 @@ import { complex, phase, type Complex } from '../complex';
 import { MethodDoesNotApply } from '../method-does-not-apply';
 import { OpticsError } from '../optics-error';
 import type { State } from '../state';
+import { StateMemo } from '../state-memo';
 import { addConstant, addQuadratic, atValue, directSum, integrate, substitute, type Form } from './form';
 import { sumOfForms, type FormSum } from './form-products';
 import { operatorForms } from './operator-forms';
@@ -11,7 +12,7 @@ const I: Complex = { re: 0, im: 1 };
 const MINUS_I: Complex = { re: 0, im: -1 };
 const ONE = complex(1);
 
-const wignerCache = new WeakMap<State, readonly Form[]>();
+const wignerCache = new StateMemo<readonly Form[]>();
 
 /**
  * The s-ordered quasi-distribution of each Gaussian, as a form in the outer variables Re α and Im α.
