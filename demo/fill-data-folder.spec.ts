@@ -1,10 +1,11 @@
 import { mkdirSync, mkdtempSync, readdirSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
+import { eq } from 'drizzle-orm';
 import { pino } from 'pino';
 import { afterAll, describe, expect, it } from 'vitest';
 import { openDatabase } from '@drizzle/client';
-import { answers, courses, marks, memberships, problems, scripts, sets, users } from '@drizzle/schema';
+import { answers, courses, marks, memberships, problems, reviewDecisions, scripts, sets, users } from '@drizzle/schema';
 import { readConfig } from '../server/config';
 import { databaseName, filesName, systemClock } from '../server/context';
 import { createKeyPool } from '../server/keys';
@@ -44,6 +45,9 @@ describe('the demonstration course', () => {
       expect(roles.filter(({ role }) => role === 'marker')).toHaveLength(4);
       expect(roles.filter(({ role }) => role === 'student')).toHaveLength(8);
       expect(db.select().from(problems).all().length).toBeGreaterThanOrEqual(8);
+      const ready = db.select().from(problems).where(eq(problems.status, 'ready')).all();
+      const signedOff = db.select().from(reviewDecisions).where(eq(reviewDecisions.kind, 'signed off')).all();
+      expect(ready.filter(({ id }) => !signedOff.some(({ problemId }) => problemId === id))).toEqual([]);
       expect(db.select().from(scripts).all().length).toBeGreaterThan(16);
       expect(db.select().from(answers).all().length).toBeGreaterThan(100);
       expect(db.select().from(marks).all().length).toBeGreaterThan(20);

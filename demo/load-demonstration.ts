@@ -3,6 +3,8 @@ import { letters } from '@drizzle/schema';
 import { partLabel } from '@shared/problems';
 import type { Context } from '../server/context';
 import { findPile, pilesOfSet } from '../server/marking/find-pile';
+import type { SignedIn } from '../server/access/policy';
+import { askForReview, decide } from '../server/problems/review-rules';
 import { releaseSet } from '../server/results/release-set';
 import { checkClosedSet } from '../server/sets/close-set';
 import { moveStage } from '../server/sets/move-stage';
@@ -14,6 +16,7 @@ import { day, DemoClock, hour } from './demo-clock';
 import { workOnSheet, type Effort, type OpenSet } from './hand-in-scripts';
 import { addProblems, makeCourse, type DemonstrationPeople, type DemonstrationProblem } from './make-course';
 import { markPile } from './mark-pile';
+import { commentOn } from './review-problem';
 
 type Tell = (line: string) => void;
 
@@ -52,7 +55,7 @@ export async function loadDemonstration(outer: Context, tell: Tell, studentCount
 
 async function loadReleasedSet(world: World): Promise<void> {
   const { context, clock, people } = world;
-  const problems = await addProblems(context, people.lead, '1-counting-quanta', 'ready');
+  const problems = await addProblems(context, people, '1-counting-quanta', 'ready');
   const closesAt = clock.daysAgo(27, '18:00');
   const set = await makeSet(world, {
     number: 1,
@@ -86,7 +89,7 @@ async function loadReleasedSet(world: World): Promise<void> {
 async function loadSetInMarking(world: World): Promise<void> {
   const { context, clock, people } = world;
   clock.moveTo(clock.daysAgo(30, '09:30'));
-  const problems = await addProblems(context, people.lead, '2-splitters-and-losses', 'ready');
+  const problems = await addProblems(context, people, '2-splitters-and-losses', 'ready');
   const closesAt = clock.daysAgo(2, '18:00');
   const set = await makeSet(world, {
     number: 2,
@@ -114,7 +117,7 @@ async function loadSetInMarking(world: World): Promise<void> {
 async function loadOpenSet(world: World): Promise<void> {
   const { context, clock, people } = world;
   clock.moveTo(clock.daysAgo(15, '13:00'));
-  const problems = await addProblems(context, people.lead, '3-damping-and-gain', 'ready');
+  const problems = await addProblems(context, people, '3-damping-and-gain', 'ready');
   const set = await makeSet(world, {
     number: 3,
     title: 'Damping and gain',
@@ -134,7 +137,8 @@ async function loadOpenSet(world: World): Promise<void> {
 async function loadSetInReview(world: World): Promise<void> {
   const { context, clock, people } = world;
   clock.moveTo(clock.daysAgo(5, '11:00'));
-  const problems = await addProblems(context, people.lead, '4-fringes-and-superpositions', 'in review');
+  const problems = await addProblems(context, people, '4-fringes-and-superpositions', 'in review');
+  reviewSome(world, problems);
   await makeSet(world, {
     number: 4,
     title: 'Fringes and superpositions',
@@ -143,6 +147,49 @@ async function loadSetInReview(world: World): Promise<void> {
     closesAt: clock.daysAgo(-17, '18:00'),
     stages: { review: clock.daysAgo(2, '14:30') },
   });
+}
+
+/** Two markers are asked; one has signed a problem off, the other wants another changed. */
+function reviewSome({ context, clock, people }: World, problems: readonly DemonstrationProblem[]): void {
+  const { db } = context;
+  const [first, second] = people.markers;
+  const [cat, night, fringes] = ['a-cat-behind-a-loss', 'a-night-at-the-counter', 'fringes-of-one-quantum'].map(
+    (name) => problems.find((problem) => problem.name === name)?.problemId,
+  );
+  if (!first || !second || !cat || !night || !fringes) throw new Error('The review of the demonstration has gaps.');
+  const dueAt = clock.daysAgo(-2, '18:00');
+  const ask = (problemId: string, ...colleagues: readonly SignedIn[]) => {
+    const colleagueIds = colleagues.map(({ id }) => id);
+    askForReview(db, problemId, { colleagueIds, dueAt, note: '' }, people.lead, clock.now());
+  };
+  ask(cat, first, second);
+  ask(night, first);
+  ask(fringes, first, second);
+  const signedAt = clock.daysAgo(4, '10:20');
+  decide(db, cat, { revision: 1, kind: 'signed off', words: '' }, { personId: second.id, now: signedAt });
+  commentOn(context, people.lead, cat, {
+    colleague: second,
+    at: clock.daysAgo(4, '10:05'),
+    lineWith: 'quanta pass to the surroundings',
+    text: 'The hint on orthogonal terms comes late. Could it stand first?',
+  });
+  commentOn(context, people.lead, fringes, {
+    colleague: second,
+    at: clock.daysAgo(4, '11:02'),
+    lineWith: 'equal weight',
+    text: 'This leaves open whether both paths keep one polarisation. I lost four minutes over it.',
+    reply: 'They do. I shall say so.',
+  });
+  commentOn(context, people.lead, fringes, {
+    colleague: second,
+    at: clock.daysAgo(4, '11:06'),
+    lineWith: 'With what visibility',
+    text: 'They look for a number.',
+    instead: ['With what visibility do fringes show?', 'What is the visibility of the fringes?'],
+  });
+  const words = 'Please say what is assumed about polarisation before students ask.';
+  const decidedAt = clock.daysAgo(4, '11:10');
+  decide(db, fringes, { revision: 1, kind: 'changes asked', words }, { personId: second.id, now: decidedAt });
 }
 
 interface SetPlan {

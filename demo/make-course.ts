@@ -11,6 +11,7 @@ import { newId } from '../server/http/new-id';
 import { auditForUse } from '../server/problems/audit-rules';
 import { readProblemFile } from '../server/problems/problem-file';
 import { createFromContent, makeRevision, setProblemStatus } from '../server/problems/problem-rules';
+import { signOff } from './review-problem';
 import { administrator, demonstrationPassword, lead, markers, students, type DemonstrationPerson } from './accounts';
 import { timeZone } from './demo-clock';
 
@@ -67,10 +68,13 @@ export interface DemonstrationProblem {
   readonly content: ProblemContent;
 }
 
-/** Reads the problems of one set from their files into the bank, and makes their first revisions. */
+/**
+ * Reads the problems of one set from their files into the bank, and makes their first revisions; those that are to be
+ * ready are signed off by a marker first.
+ */
 export async function addProblems(
   context: Context,
-  author: SignedIn,
+  { lead: author, markers: colleagues }: DemonstrationPeople,
   folder: string,
   status: 'ready' | 'in review',
 ): Promise<DemonstrationProblem[]> {
@@ -82,8 +86,14 @@ export async function addProblems(
     const deed = { personId: author.id, now: clock.now() };
     const { id: problemId, version } = createFromContent(db, content, deed);
     const revised = await makeRevision(db, keys, problemId, { reason: 'First wording', version }, deed);
-    if (status === 'ready') await auditForUse(context, problemId, author.id);
-    setProblemStatus(db, problemId, { status, version: revised.version }, deed);
+    const reviewed = setProblemStatus(db, problemId, { status: 'in review', version: revised.version }, deed);
+    if (status === 'ready') {
+      const colleague = colleagues[made.length % colleagues.length];
+      if (!colleague) throw new Error('Nobody can sign off a problem.');
+      await auditForUse(context, problemId, author.id);
+      const now = signOff(context, { author, colleague, problemId });
+      setProblemStatus(db, problemId, { status, version: reviewed.version }, { ...deed, now });
+    }
     if (!revised.latestRevision) throw new Error('A revision that was made is not there.');
     made.push({ name: basename(file, '.md'), problemId, revisionId: revised.latestRevision.id, content });
   }

@@ -82,9 +82,15 @@ test('a problem is written, set, answered, marked by two at once, released and r
     await lead.getByLabel('What is new in revision 1').fill('First wording');
     await lead.getByRole('button', { name: 'Save revision 1' }).click();
     await expect(lead.getByRole('button', { name: 'Save as revision 2' })).toBeDisabled();
-    await lead.getByRole('button', { name: 'More', exact: true }).click();
-    await lead.getByRole('menuitem', { name: /ready/i }).click();
+    await markReady(lead);
+    await expect(lead.getByText(/Nobody has signed off revision 1 yet.*overrule with a reason/)).toBeVisible();
+    await lead.getByRole('button', { name: 'Use without a sign-off' }).click();
+    await lead.getByLabel('Why revision 1 is used without a sign-off').fill('Nobody else teaches this term.');
+    await lead.getByRole('button', { name: 'Overrule' }).click();
+    await expect(lead.getByText('Ada Quist let revision 1 be used without a sign-off.')).toBeVisible();
+    await markReady(lead);
     await expect(lead.getByText(/revision 1, ready/)).toBeVisible();
+    await expectAccessible(lead);
   });
 
   await test.step('the lead builds a set and opens it', async () => {
@@ -234,6 +240,11 @@ async function addNumberPart(page: Page, label: string, key: string): Promise<vo
   await page.getByRole('button', { name: 'Part', exact: true }).click();
   await typeKey(page, label, key);
   await page.getByRole('textbox', { name: 'relative' }).fill('1%');
+}
+
+async function markReady(page: Page): Promise<void> {
+  await page.getByRole('button', { name: 'More', exact: true }).click();
+  await page.getByRole('menuitem', { name: /ready/i }).click();
 }
 
 async function typeKey(page: Page, label: string, key: string): Promise<void> {
