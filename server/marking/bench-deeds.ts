@@ -264,10 +264,11 @@ function markOfKey(tx: Queryable, write: KeyedWrite): MarkRow | undefined {
 }
 
 /** A first mark, or the next in the chain of those that replaced each other. */
-function appendMark(
+export function appendMark(
   tx: Queryable,
-  write: KeyedWrite,
-  content: Pick<MarkRow, 'markerId' | 'criteria' | 'total' | 'remark' | 'reason'>,
+  write: Pick<KeyedWrite, 'answerId' | 'now' | 'idempotencyKey'>,
+  content: Pick<MarkRow, 'markerId' | 'criteria' | 'total' | 'remark' | 'reason'> &
+    Partial<Pick<MarkRow, 'patternApplicationId'>>,
 ): MarkRow {
   const ofAnswer = and(eq(marks.answerId, write.answerId), eq(marks.kind, 'first'));
   const replaced = tx

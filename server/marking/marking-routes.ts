@@ -9,6 +9,7 @@ import { findAnswer, findPile, marksAreGiven, teamOf } from './find-pile';
 import { dropExpiredHolds, letGo, renewHolds, shortenHolds, takeHolds } from './holds';
 import { listPiles, presentHeading } from './list-piles';
 import { presentAnswers } from './present-answers';
+import { addPatternMarkRoutes } from './pattern-mark-routes';
 import { addRulingRoutes } from './ruling-routes';
 import { rulingsOf } from './rulings';
 import { tellStage } from '../sets/enter-stage';
@@ -116,6 +117,7 @@ export function addMarkingRoutes(serve: Serve, context: Context): void {
   );
 
   addRulingRoutes(serve, context);
+  addPatternMarkRoutes(serve, context, doerAt);
 
   live.onBenchOpened((bench) => {
     tellPresence(context, bench.pileId);
