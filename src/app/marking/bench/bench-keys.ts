@@ -15,6 +15,7 @@ export const benchKeys: readonly KeyWords[] = [
   { keys: ['Enter'], does: 'save and take next' },
   { keys: ['m'], does: 'write the remark; Escape leaves it' },
   { keys: ['x'], does: 'set aside' },
+  { keys: ['r'], does: 'ask for a ruling about the answer in hand' },
   { keys: ['z'], does: 'undo the last save' },
   { keys: ['←', '→'], does: 'walk the strip' },
   { keys: ['[', ']'], does: 'go to the pattern before or after' },

@@ -27,6 +27,7 @@ import type { RulerAnswer } from '../../ui/tolerance-ruler/tolerance-ruler';
 import { CorrectPattern } from '../correction/correct-pattern';
 import { Dock } from '../dock/dock';
 import { AnswerCard, type CardPlace } from '../light-table/answer-card';
+import { Rulings } from '../rulings/rulings';
 import { BenchHand } from './bench-hand';
 import { benchKeys, chooseSingleKeys, criterionKeys, singleKeysChosen, takesEnter, takesText } from './bench-keys';
 import { BenchNotices } from './bench-notices';
@@ -51,6 +52,7 @@ const cardPlaces: readonly CardPlace[] = ['in hand', 'next', 'after that'];
     MarkerToken,
     MatButtonModule,
     RouterLink,
+    Rulings,
   ],
   providers: [PileWatch, BenchHand, BenchNotices, HoldKeeper],
   templateUrl: './bench.html',
@@ -65,6 +67,7 @@ export default class Bench {
   protected readonly hand = inject(BenchHand);
   private readonly strip = viewChild(FringeStrip);
   private readonly dock = viewChild(Dock);
+  private readonly rulings = viewChild(Rulings);
   private readonly cards = viewChildren(AnswerCard);
   private readonly table = viewChild<ElementRef<HTMLElement>>('table');
   private readonly keySheet = viewChild<ElementRef<HTMLDialogElement>>('keySheet');
@@ -283,6 +286,7 @@ export default class Bench {
       },
       m: () => this.dock()?.focusRemark(),
       x: () => this.dock()?.askAside(),
+      r: () => this.rulings()?.ask(),
       z: () => {
         this.hand.undo();
       },

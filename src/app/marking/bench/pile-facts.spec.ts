@@ -46,6 +46,7 @@ function buildPile(answers: PileAnswer[]): Pile {
     answers,
     team: [],
     present: [],
+    rulings: [],
     me,
     seesAllMarks: false,
   };

@@ -1,5 +1,6 @@
 import type { Pile, PileAnswer } from '@shared/marking';
 import type { Fact } from '../../core/live-connection';
+import { withRuling } from '../rulings/ruling-lists';
 
 /** What a fact does to a pile: the pile with it, or that the pile must be fetched again. */
 export type AfterFact = { readonly pile: Pile } | 'fetch again';
@@ -10,15 +11,23 @@ export type AfterFact = { readonly pile: Pile } | 'fetch again';
  */
 export function takeFact(pile: Pile, fact: Fact): AfterFact {
   if (fact.name === 'stageChanged') return fact.body.setId === pile.setId ? 'fetch again' : { pile };
-  if (fact.name === 'jobMoved' || fact.body.pileId !== pile.id) return { pile };
+  if (!isOfPiles(fact) || fact.body.pileId !== pile.id) return { pile };
   if (fact.name === 'presenceChanged') return { pile: { ...pile, present: fact.body.present } };
   const { sequence } = fact.body;
   if (sequence <= pile.sequence) return { pile };
   if (sequence > pile.sequence + 1 || fact.name === 'pileChanged') return 'fetch again';
+  if (fact.name === 'rulingAsked' || fact.name === 'rulingDecided')
+    return { pile: { ...pile, sequence, rulings: withRuling(pile.rulings, fact.body.ruling) } };
   return { pile: { ...pile, sequence, answers: answersAfter(pile, fact) } };
 }
 
-type AnswerFact = Exclude<Fact, { name: 'stageChanged' | 'presenceChanged' | 'pileChanged' | 'jobMoved' }>;
+type PileFact = Extract<Fact, { body: { pileId: string } }>;
+
+function isOfPiles(fact: Fact): fact is PileFact {
+  return 'pileId' in fact.body;
+}
+
+type AnswerFact = Exclude<PileFact, { name: 'presenceChanged' | 'pileChanged' | 'rulingAsked' | 'rulingDecided' }>;
 
 function answersAfter(pile: Pile, fact: AnswerFact): PileAnswer[] {
   switch (fact.name) {

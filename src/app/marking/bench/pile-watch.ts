@@ -2,8 +2,10 @@ import { DestroyRef, Injectable, computed, inject, signal } from '@angular/core'
 import { takeUntilDestroyed } from '@angular/core/rxjs-interop';
 import { firstValueFrom } from 'rxjs';
 import type { CurrentAnswer, Pile } from '@shared/marking';
+import type { Ruling } from '@shared/rulings';
 import { MarkingApi } from '../../core/api/marking-api';
 import { LiveConnection } from '../../core/live-connection';
+import { withRuling } from '../rulings/ruling-lists';
 import { change, takeFact } from './pile-facts';
 
 /** A pile as it is now: fetched, then kept up by the facts that the server tells. One for each bench. */
@@ -87,6 +89,11 @@ export class PileWatch {
   learn(current: CurrentAnswer): void {
     const { sequence: _sequence, ...answer } = current;
     this.state.update((pile) => pile && { ...pile, answers: change(pile, answer.id, () => answer) });
+  }
+
+  /** Takes in what the answer to one's own request says of a ruling. */
+  learnRuling(ruling: Ruling): void {
+    this.state.update((pile) => pile && { ...pile, rulings: withRuling(pile.rulings, ruling) });
   }
 
   private async fetchNow(pileId: string): Promise<void> {
