@@ -37,7 +37,7 @@ export const routes: Routes = [
           { path: 'desk', title: 'Desk', loadComponent: () => import('./desk/desk') },
           {
             path: 'problems',
-            canActivate: [whoIs('lead')],
+            canActivate: [whoIs('lead', 'marker')],
             loadChildren: () => import('./problems/problems.routes'),
           },
           { path: 'sets', canActivate: [whoIs('lead')], loadChildren: () => import('./sets/sets.routes') },
@@ -47,6 +47,17 @@ export const routes: Routes = [
             loadChildren: () => import('./marking/marking.routes'),
           },
           { path: 'results', canActivate: [whoIs('lead')], loadChildren: () => import('./results/results.routes') },
+          {
+            path: 'queries',
+            canActivate: [whoIs('lead', 'marker')],
+            loadChildren: () => import('./results/queries.routes'),
+          },
+          {
+            path: 'receipts',
+            title: 'Verify a receipt',
+            canActivate: [whoIs('lead', 'marker')],
+            loadComponent: () => import('./results/verify-receipt/verify-receipt'),
+          },
           { path: 'people', canActivate: [whoIs('lead')], loadChildren: () => import('./people/people.routes') },
           { path: 'record', canActivate: [whoIs('lead')], loadChildren: () => import('./record/record.routes') },
           { path: 'sheets', canActivate: [whoIs('student')], loadChildren: () => import('./sheet/sheet.routes') },

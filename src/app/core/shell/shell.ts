@@ -38,6 +38,7 @@ const places: Readonly<Record<Role, readonly Place[]>> = {
   marker: [
     { path: 'desk', name: 'Desk' },
     { path: 'marking', name: 'Marking' },
+    { path: 'queries', name: 'Queries' },
   ],
   student: [
     { path: 'desk', name: 'Desk' },

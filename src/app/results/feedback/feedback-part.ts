@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, computed, inject, input } from '@angular/core';
+import { ChangeDetectionStrategy, Component, computed, inject, input, output } from '@angular/core';
 import { MatIconModule } from '@angular/material/icon';
 import type { Verdict } from '@shared/problems';
 import { printComplex, printNumber } from '@shared/reading/print';
@@ -34,6 +34,10 @@ export class FeedbackPart {
 
   readonly part = input.required<Part>();
   readonly givens = input<PrintedGivens>({});
+  /** Whether a criterion that was not awarded can be queried now. */
+  readonly mayQuery = input(false);
+  /** The student wants to query this criterion. */
+  readonly queried = output<string>();
 
   protected readonly verdict = computed(() => {
     const { verdict, relation, slip } = this.part();

@@ -15,7 +15,11 @@ import { LoadingBars } from '../../ui/loading-bars/loading-bars';
   imports: [EmptyState, ErrorState, LoadingBars, MatButtonModule, RouterLink],
   template: `
     <div class="page">
-      <h1>Results</h1>
+      <header class="pages">
+        <h1>Results</h1>
+        <a matButton routerLink="../queries">Mark queries</a>
+        <a matButton routerLink="../receipts">Verify a receipt</a>
+      </header>
       @if (problem(); as sentence) {
         <app-error-state [text]="sentence" (retried)="list.reload()" />
       } @else if (list.hasValue()) {

@@ -74,12 +74,13 @@ export default class ReceiptPage {
     });
   }
 
-  /** The canonical form as a file, for those who want to compute the digest themselves. */
+  /** The receipt as a file: what was signed, the signature, the public key, and what the digest is of. */
   protected download(its: Receipt): void {
-    const address = URL.createObjectURL(new Blob([canonicalForm(its.content)], { type: 'application/json' }));
+    const file = JSON.stringify({ ...its.signed, content: its.content }, null, 2);
+    const address = URL.createObjectURL(new Blob([file], { type: 'application/json' }));
     const link = document.createElement('a');
     link.href = address;
-    link.download = `set-${String(its.number)}-${its.code}-submission-${String(its.submission.number)}.json`;
+    link.download = `receipt-set-${String(its.number)}-${its.code}-submission-${String(its.submission.number)}.json`;
     link.click();
     URL.revokeObjectURL(address);
   }
