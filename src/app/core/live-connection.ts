@@ -89,6 +89,20 @@ export class LiveConnection {
     });
   }
 
+  /** Watches what colleagues say about a problem. @returns ends it */
+  watchProblem(problemId: string, joined: () => void = () => undefined): () => void {
+    return this.watch({
+      begin: (socket) => {
+        socket.emit('watchProblem', { problemId }, (watching) => {
+          this.settle(watching, joined);
+        });
+      },
+      end: (socket) => {
+        socket.emit('leaveProblem', { problemId });
+      },
+    });
+  }
+
   private watch(watch: Watch): () => void {
     this.watches.add(watch);
     if (this.socket?.connected) watch.begin(this.socket);

@@ -1,8 +1,15 @@
 import type { Routes } from '@angular/router';
+import { whoIs } from '../core/guards';
 import { keepBeforeLeaving } from './composer/keep-before-leaving';
 
 const routes: Routes = [
-  { path: '', pathMatch: 'full', title: 'Problems', loadComponent: () => import('./problem-list/problem-list') },
+  {
+    path: '',
+    pathMatch: 'full',
+    title: 'Problems',
+    canActivate: [whoIs('lead')],
+    loadComponent: () => import('./problem-list/problem-list'),
+  },
   {
     path: 'key-language',
     title: 'The key language',

@@ -42,6 +42,10 @@ import { MarkScheme } from './mark-scheme';
 import { OpenProblem } from './open-problem';
 import { PartBench } from './part-bench';
 import { PartHeading } from './part-heading';
+import { ChangesSince } from './review/changes-since';
+import { ColleaguesMargin } from './review/colleagues-margin';
+import type { CommentPlace } from './review/comment-words';
+import { OpenReview } from './review/open-review';
 import { RevisionList } from './revision-list';
 import { SampleVariants } from './sample-variants';
 import { SaveRevision } from './save-revision';
@@ -66,6 +70,8 @@ const noLanguage: KeyLanguage = { functions: [], constants: [] };
   imports: [
     AboutProblem,
     AuditFindings,
+    ChangesSince,
+    ColleaguesMargin,
     ErrorState,
     FormulaText,
     GivensTable,
@@ -85,7 +91,7 @@ const noLanguage: KeyLanguage = { functions: [], constants: [] };
     TwoStates,
     TypedField,
   ],
-  providers: [OpenProblem, ProblemAudit, SampleVariants],
+  providers: [OpenProblem, OpenReview, ProblemAudit, SampleVariants],
   templateUrl: './composer.html',
   styleUrl: './composer.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -98,6 +104,8 @@ export default class Composer {
   protected readonly open = inject(OpenProblem);
   protected readonly samples = inject(SampleVariants);
   protected readonly audit = inject(ProblemAudit);
+  protected readonly review = inject(OpenReview);
+  private readonly statementEditor = viewChild(StatementEditor);
   private readonly tabList = viewChild<ElementRef<HTMLElement>>('tabList');
 
   readonly courseId = input.required<string>();
@@ -111,6 +119,12 @@ export default class Composer {
   });
   protected readonly isSaving = signal(false);
   protected readonly showsRevisions = signal(false);
+  /** The revision that is shown beside the draft; null for none. */
+  protected readonly comparesWith = signal<number | null>(null);
+  /** The line of the statement where the cursor stands. */
+  protected readonly line = signal(1);
+  /** Markers who were asked to review read and comment; they write nothing here. */
+  protected readonly isLead = computed(() => this.session.role() === 'lead');
   /** What went wrong with something asked for on this page. */
   protected readonly notice = signal('');
   protected readonly removed = signal<{ readonly label: string; readonly undo: () => void } | null>(null);
@@ -235,7 +249,11 @@ export default class Composer {
   constructor() {
     effect(() => {
       const problemId = this.problemId();
-      untracked(() => void this.open.load(problemId));
+      untracked(() => {
+        if (!this.isLead()) this.open.readOnly();
+        void this.open.load(problemId);
+        void this.review.load(problemId);
+      });
     });
     // The tab that is shown is in sight on narrow screens too.
     effect(() => {
@@ -286,6 +304,16 @@ export default class Composer {
     this.open.change((draft) => ({ ...draft, statement }));
   }
 
+  protected comeToLine(line: number): void {
+    this.line.set(line);
+    this.review.showLine(line);
+  }
+
+  protected showPlace({ line, tab }: CommentPlace): void {
+    if (line !== null) this.statementEditor()?.showLine(line);
+    else this.goTo(tab);
+  }
+
   protected goTo(tab: string | null): void {
     if (tab !== null) void this.router.navigate([], { queryParams: { at: tab }, queryParamsHandling: 'merge' });
   }
@@ -314,6 +342,12 @@ export default class Composer {
         this.goTo(partLabel(index));
       },
     });
+  }
+
+  /** A new revision may void a sign-off. */
+  protected closeSaving(): void {
+    this.isSaving.set(false);
+    void this.review.reload();
   }
 
   protected async setStatus(status: ProblemStatus): Promise<void> {

@@ -25,6 +25,16 @@ export function editorLook(nonce: string | null): Extension {
       '.cm-number': { color: 'var(--silver-4)' },
       '.cm-formula': { color: 'var(--ft)' },
       '.cm-opening': { fontWeight: '600' },
+      '.cm-noted': { position: 'relative', paddingRight: '64px', backgroundColor: 'var(--silver-1)' },
+      '.cm-noted-shown': { backgroundColor: 'var(--line-wash)' },
+      '.cm-noted::after': {
+        content: 'attr(data-by)',
+        position: 'absolute',
+        top: '0',
+        right: '8px',
+        font: '600 12px/20px var(--ui)',
+      },
+      '.cm-noted-shown::after': { color: 'var(--line)' },
       '.cm-matchingBracket, &.cm-focused .cm-matchingBracket': {
         backgroundColor: 'var(--silver-1)',
         outline: '1px solid var(--silver-2)',

@@ -35,6 +35,7 @@ export class OpenProblem {
   private readonly failureSignal = signal<ProblemDetails | null>(null);
   private readonly fromServer = signal<readonly FieldProblem[]>([]);
   private readonly showAllSignal = signal(false);
+  private readonly readsOnly = signal(false);
   private timer: ReturnType<typeof setTimeout> | undefined;
   private unkeptSince = 0;
   private failures = 0;
@@ -52,7 +53,7 @@ export class OpenProblem {
   readonly failure = this.failureSignal.asReadonly();
   /** Whether empty fields show what they lack; they do once a revision was asked for. */
   readonly showsAll = this.showAllSignal.asReadonly();
-  readonly canEdit = computed(() => this.detail()?.status !== 'retired' && this.other() === null);
+  readonly canEdit = computed(() => !this.readsOnly() && this.detail()?.status !== 'retired' && this.other() === null);
 
   /** What is wrong with the draft as it stands, keys aside. */
   readonly faults = computed<readonly FieldProblem[]>(() => {
@@ -194,6 +195,23 @@ export class OpenProblem {
     this.later(tries[Math.min(this.failures++, tries.length - 1)] ?? 0);
   }
 
+  /** Says that the person reads and reviews, but writes nothing here. */
+  readOnly(): void {
+    this.readsOnly.set(true);
+  }
+
+  /** Lets a deed change the problem on the server, after what is typed was kept, and takes what it gives. */
+  async takeFrom(deed: (problemId: string, version: number) => Promise<ProblemDetail>): Promise<void> {
+    if (!(await this.keep())) return;
+    const detail = this.detail();
+    if (detail) this.take(await deed(detail.id, detail.version));
+  }
+
+  /** Takes the problem as the server has it now, unless something typed is not kept yet. */
+  refresh(): Promise<void> {
+    return this.takeFrom((problemId) => firstValueFrom(this.api.problem(problemId)));
+  }
+
   /** Goes on with what is typed here, over what was saved elsewhere. */
   async goOnWithMine(): Promise<void> {
     const [other, draft] = [this.other(), this.draft()];
@@ -230,8 +248,6 @@ export class OpenProblem {
 
   /** Puts the problem in another state. @throws RequestFailure where that cannot be */
   async setStatus(status: ProblemStatus): Promise<void> {
-    if (!(await this.keep())) return;
-    const detail = this.detail();
-    if (detail) this.take(await firstValueFrom(this.api.setStatus(detail.id, detail.version, status)));
+    await this.takeFrom((problemId, version) => firstValueFrom(this.api.setStatus(problemId, version, status)));
   }
 }

@@ -21,7 +21,7 @@ import { defaultKeymap, history, historyKeymap } from '@codemirror/commands';
 import { markdown } from '@codemirror/lang-markdown';
 import { HighlightStyle, syntaxHighlighting } from '@codemirror/language';
 import { setDiagnostics, type Diagnostic } from '@codemirror/lint';
-import { Compartment, EditorState, Facet } from '@codemirror/state';
+import { Compartment, EditorState, Facet, RangeSetBuilder } from '@codemirror/state';
 import {
   Decoration,
   EditorView,
@@ -36,6 +36,7 @@ import {
 import { tags } from '@lezer/highlight';
 import { editorLook } from './editor-look';
 import type { ExpressionFault } from './expression-editor';
+import type { NotedLine } from './review/comment-words';
 
 /** A given as the statement's editor offers it. */
 export interface NamedGiven {
@@ -102,6 +103,18 @@ function completeGiven(context: CompletionContext): CompletionResult | null {
   };
 }
 
+/** Lines that colleagues commented on, with their initials at the right. */
+function noteLines(state: EditorState, lines: readonly NotedLine[]) {
+  const builder = new RangeSetBuilder<Decoration>();
+  for (const { line, initials, isShown } of lines) {
+    if (line > state.doc.lines) continue;
+    const attributes = { 'data-by': initials };
+    const { from } = state.doc.line(line);
+    builder.add(from, from, Decoration.line({ class: isShown ? 'cm-noted cm-noted-shown' : 'cm-noted', attributes }));
+  }
+  return EditorView.decorations.of(builder.finish());
+}
+
 /** The editor of a statement: Markdown with numbered lines; `\val{name}` in colour and completed. */
 @Component({
   selector: 'app-statement-editor',
@@ -114,19 +127,26 @@ export class StatementEditor {
   private readonly box = viewChild.required<ElementRef<HTMLElement>>('box');
   private readonly namesInForce = new Compartment();
   private readonly editable = new Compartment();
+  private readonly notes = new Compartment();
   private view: EditorView | null = null;
 
   readonly value = input.required<string>();
   readonly givens = input.required<readonly NamedGiven[]>();
   readonly faults = input<readonly ExpressionFault[]>([]);
   readonly disabled = input(false);
+  /** Lines with comments, in their order. */
+  readonly noted = input<readonly NotedLine[]>([]);
   /** The element that says what is wrong with the statement. */
   readonly describedBy = input('');
   readonly valueChange = output<string>();
+  /** The line that the cursor came to, from 1. */
+  readonly lineChange = output<number>();
 
   constructor() {
     afterNextRender(() => {
-      this.view = this.createView();
+      const view = this.createView();
+      this.view = view;
+      view.dispatch({ effects: this.notes.reconfigure(noteLines(view.state, this.noted())) });
       this.showFaults();
     });
     effect(() => {
@@ -144,6 +164,11 @@ export class StatementEditor {
       this.view?.dispatch({ effects: this.editable.reconfigure(EditorView.editable.of(editable)) });
     });
     effect(() => {
+      const noted = this.noted();
+      const view = this.view;
+      view?.dispatch({ effects: this.notes.reconfigure(noteLines(view.state, noted)) });
+    });
+    effect(() => {
       this.faults();
       this.showFaults();
     });
@@ -153,6 +178,15 @@ export class StatementEditor {
   /** Puts the cursor into the text. */
   focus(): void {
     this.view?.focus();
+  }
+
+  /** Puts the cursor at a line (from 1) and brings it into sight. */
+  showLine(line: number): void {
+    const view = this.view;
+    if (!view) return;
+    const { from } = view.state.doc.line(Math.max(1, Math.min(line, view.state.doc.lines)));
+    view.dispatch({ selection: { anchor: from }, effects: EditorView.scrollIntoView(from, { y: 'center' }) });
+    view.focus();
   }
 
   private createView(): EditorView {
@@ -169,6 +203,7 @@ export class StatementEditor {
           this.namesInForce.of(givensInForce.of(this.givens())),
           this.editable.of(EditorView.editable.of(!this.disabled())),
           colours,
+          this.notes.of([]),
           autocompletion({ override: [completeGiven], icons: false }),
           history(),
           EditorView.lineWrapping,
@@ -181,6 +216,8 @@ export class StatementEditor {
           keymap.of([...completionKeymap, ...defaultKeymap, ...historyKeymap]),
           EditorView.updateListener.of((update) => {
             if (update.docChanged) this.valueChange.emit(update.state.doc.toString());
+            if (update.selectionSet)
+              this.lineChange.emit(update.state.doc.lineAt(update.state.selection.main.head).number);
           }),
         ],
       }),
