@@ -13,7 +13,8 @@ afterAll(() => pool.close());
 
 describe('a key that runs away', () => {
   it('is stopped after two seconds, and others are served meanwhile', async () => {
-    await pool.evaluateMany([{ expression: '1', givens: {}, convention }]);
+    // As many batches as it takes for both workers to have started.
+    await pool.evaluateMany(Array.from({ length: 500 }, () => ({ expression: '1', givens: {}, convention })));
     const began = Date.now();
     const run = { isOver: false };
     const stopped = pool.evaluateMany([{ expression: runaway, givens: {}, convention }]).then((outcomes) => {

@@ -22,6 +22,17 @@ const MOST_WORK = 6e8;
 
 const newBlock = (total: number): Block => ({ re: new Float64Array(total + 1), im: new Float64Array(total + 1) });
 
+/** Blocks out of one array of so many amplitudes: many small arrays take longer to make and to collect. */
+function roomFor(amplitudes: number): (total: number) => Block {
+  const store = new Float64Array(2 * amplitudes);
+  let taken = 0;
+  return (total) => {
+    const re = store.subarray(taken, taken + total + 1);
+    taken += 2 * (total + 1);
+    return { re, im: store.subarray(taken - total - 1, taken) };
+  };
+}
+
 const isEmpty = (block: Block): boolean => block.re.every((x) => x === 0) && block.im.every((x) => x === 0);
 
 /** Amplitudes held by some kets. */
@@ -106,39 +117,59 @@ export function splitKets(kets: readonly JointKet[], transmittance: number, dire
     });
   }
   checkJointSize(sizeOfKets(kets), work);
-  const angle = Math.atan2(direction.im, direction.re);
+  const turns = turnsOf(direction, levels);
+  const room = roomFor(sizeOfKets(kets));
   const out: (Block | undefined)[][] = kets.map(() => new Array<Block | undefined>(levels).fill(undefined));
   for (let total = 0; total < levels; total++) {
     if (kets.every((ket) => ket.blocks[total] === undefined)) continue;
     const side = total + 1;
     const columns = new Map<number, Float64Array>();
-    const turns = Array.from({ length: side }, (_, n) => phase(angle * n));
     kets.forEach((ket, index) => {
       const block = ket.blocks[total];
       if (block === undefined) return;
-      const next = newBlock(total);
+      const next = room(total);
+      const { re: nextRe, im: nextIm } = next;
       for (let n = 0; n < side; n++) {
-        const turn = turns[total - n]!;
-        const re = block.re[n]! * turn.re - block.im[n]! * turn.im;
-        const im = block.re[n]! * turn.im + block.im[n]! * turn.re;
-        if (re === 0 && im === 0) continue;
+        const a = block.re[n]!;
+        const b = block.im[n]!;
+        if (a === 0 && b === 0) continue;
+        const c = turns.re[total - n]!;
+        const s = turns.im[total - n]!;
+        const re = a * c - b * s;
+        const im = a * s + b * c;
         let column = columns.get(n);
         if (column === undefined) columns.set(n, (column = splitterColumn(total, n, transmittance)));
         for (let k = 0; k < side; k++) {
-          next.re[k]! += column[k]! * re;
-          next.im[k]! += column[k]! * im;
+          const factor = column[k]!;
+          nextRe[k]! += factor * re;
+          nextIm[k]! += factor * im;
         }
       }
       for (let k = 0; k < side; k++) {
-        const turn = turns[total - k]!;
-        const re = next.re[k]!;
-        next.re[k] = re * turn.re + next.im[k]! * turn.im;
-        next.im[k] = next.im[k]! * turn.re - re * turn.im;
+        const c = turns.re[total - k]!;
+        const s = turns.im[total - k]!;
+        const re = nextRe[k]!;
+        const im = nextIm[k]!;
+        nextRe[k] = re * c + im * s;
+        nextIm[k] = im * c - re * s;
       }
       out[index]![total] = next;
     });
   }
   return out.map((blocks) => ({ blocks }));
+}
+
+/** e^{iφn} for n = 0 … levels − 1. */
+function turnsOf(direction: Complex, levels: number): Block {
+  const angle = Math.atan2(direction.im, direction.re);
+  const re = new Float64Array(levels);
+  const im = new Float64Array(levels);
+  for (let n = 0; n < levels; n++) {
+    const turn = phase(angle * n);
+    re[n] = turn.re;
+    im[n] = turn.im;
+  }
+  return { re, im };
 }
 
 function countFilled({ re, im }: Block): number {
@@ -149,15 +180,17 @@ function countFilled({ re, im }: Block): number {
 
 /** Multiplies each amplitude by a phase that depends on one mode's number. */
 export function shiftKet(ket: JointKet, mode: 1 | 2, direction: Complex): JointKet {
-  const angle = Math.atan2(direction.im, direction.re);
+  const turns = turnsOf(direction, ket.blocks.length);
   return {
     blocks: ket.blocks.map((block, total) => {
       if (block === undefined) return undefined;
       const next = newBlock(total);
       for (let n = 0; n <= total; n++) {
-        const turn = phase(angle * (mode === 1 ? n : total - n));
-        next.re[n] = block.re[n]! * turn.re - block.im[n]! * turn.im;
-        next.im[n] = block.re[n]! * turn.im + block.im[n]! * turn.re;
+        const own = mode === 1 ? n : total - n;
+        const c = turns.re[own]!;
+        const s = turns.im[own]!;
+        next.re[n] = block.re[n]! * c - block.im[n]! * s;
+        next.im[n] = block.re[n]! * s + block.im[n]! * c;
       }
       return next;
     }),
@@ -280,6 +313,18 @@ export function applyToMode(ket: JointKet, mode: 1 | 2, unitary: NumberUnitary, 
     }
   }
   return builder.ket;
+}
+
+/** How many amplitudes of the other mode are not 0 where `mode` has n photons. */
+export function filledIn({ blocks }: JointKet, mode: 1 | 2, n: number): number {
+  let count = 0;
+  for (let other = 0; n + other < blocks.length; other++) {
+    const block = blocks[n + other];
+    if (block === undefined) continue;
+    const at = mode === 1 ? n : other;
+    if (block.re[at] !== 0 || block.im[at] !== 0) count++;
+  }
+  return count;
 }
 
 /** The amplitudes of the other mode where `mode` has n photons. */

@@ -11,6 +11,7 @@ import {
   loseKets,
   productKet,
   sizeOfKets,
+  filledIn,
   sliceOf,
   type JointKet,
 } from './joint-ket';
@@ -167,9 +168,9 @@ function gather(joint: Ensemble, kept: 1 | 2, weight: (other: number) => number)
     for (let n = 0; n < levels; n++) {
       const factor = weight(n);
       if (factor === 0) continue;
-      const slice = sliceOf(ket, other, n);
-      const count = filled(slice);
+      const count = filledIn(ket, other, n);
       if (count === 0) continue;
+      const slice = sliceOf(ket, other, n);
       if (count > 1) diagonal = false;
       const root = Math.sqrt(factor);
       if (factor !== 1) {
