@@ -4,6 +4,7 @@ import { pinoHttp } from 'pino-http';
 import { addAccountRoutes } from './accounts/accounts-routes';
 import { createSessions, type Sessions } from './accounts/sessions';
 import type { Context } from './context';
+import { addCalendarRoutes } from './calendar/calendar-routes';
 import { addCorrectionRoutes } from './corrections/correction-routes';
 import { addCourseRoutes } from './courses/courses-routes';
 import { addDeskRoutes } from './desk/desk-routes';
@@ -20,6 +21,7 @@ import { createServe, type Serve } from './http/serve';
 import { serveClient } from './http/static-client';
 import { translateErrors } from './http/translate-errors';
 import { addMarkingRoutes } from './marking/marking-routes';
+import { addOwnDataRoutes } from './own-data/own-data-routes';
 import { addQueriesRoutes } from './queries/queries-routes';
 import { addReceiptsRoutes } from './receipts/receipts-routes';
 import { addResultsRoutes } from './results/results-routes';
@@ -63,7 +65,8 @@ export function createApp(context: Context, clientFolder?: string): Application 
       serializers: {
         req: (request: { method: string; url: string }) => ({
           method: request.method,
-          path: request.url.split('?')[0],
+          // The address of a calendar is a secret.
+          path: request.url.split('?')[0]?.replace(/(\/calendars\/)[^/]+/, '$1…'),
         }),
         res: (response: { statusCode: number }) => ({ status: response.statusCode }),
       },
@@ -94,6 +97,7 @@ export function createApp(context: Context, clientFolder?: string): Application 
   app.use('/api', (request, response, next) => sessions.middleware(request, response, next));
   addAccountRoutes(serve, context, sessions);
   addCourseRoutes(serve, context);
+  addCalendarRoutes(serve, context);
   addDeskRoutes(serve, context);
   addProblemRoutes(serve, context);
   addAuditRoutes(serve, context);
@@ -105,6 +109,7 @@ export function createApp(context: Context, clientFolder?: string): Application 
   addScriptsRoutes(serve, context);
   addReceiptsRoutes(serve, context);
   addQueriesRoutes(serve, context);
+  addOwnDataRoutes(serve, context);
   addMarkingRoutes(serve, context);
   addCorrectionRoutes(serve, context);
   addResultsRoutes(serve, context);

@@ -3,6 +3,7 @@ import { lateRule } from './late-rule';
 import { identifier, instant, setStage, type SetStage, versionNumber } from './primitives';
 import { problemStatus } from './problems';
 import { defineRoute } from './route';
+import { sheet } from './scripts';
 
 /** The stages that a lead can move a set to from each stage. Releasing is an act of its own, with its own route. */
 export const stageMoves: Readonly<Record<SetStage, readonly SetStage[]>> = {
@@ -195,6 +196,27 @@ export const setsRoutes = {
     body: editedSet,
     response: setDetail,
     versioned: true,
+  }),
+  copySet: defineRoute({
+    method: 'POST',
+    path: '/sets/:setId/copies',
+    summary: 'Begin a draft with the problems and settings of a set, its dates moved by whole weeks',
+    params: setParams,
+    body: z.object({
+      weeks: z
+        .number({ error: 'Say by how many weeks the dates move.' })
+        .int('Dates move by whole weeks.')
+        .min(1, 'Dates move by at least a week.')
+        .max(260, 'Dates move by at most five years.'),
+    }),
+    response: setDetail,
+  }),
+  previewSheet: defineRoute({
+    method: 'GET',
+    path: '/sets/:setId/students/:membershipId/sheet',
+    summary: 'The sheet of any student with their own numbers and times, without their answers; for leads',
+    params: setParams.extend({ membershipId: identifier }),
+    response: sheet.extend({ student: z.string() }),
   }),
   usableProblems: defineRoute({
     method: 'GET',

@@ -83,3 +83,9 @@ export function instantAt(wallClock: string, timeZone: string): number {
   const later = asUtc - offsetAt(asUtc + day);
   return wallClockOf(later, timeZone) === wallClock ? later : earlier;
 }
+
+/** A moment some weeks later by the clock on the wall: the same weekday and time of day in the zone, also past a change of the clock. */
+export function movedByWeeks(instant: number, weeks: number, timeZone: string): number {
+  const wall = Date.parse(`${wallClockOf(instant, timeZone)}:00Z`) + weeks * 7 * day;
+  return instantAt(new Date(wall).toISOString().slice(0, 16), timeZone) + (((instant % minute) + minute) % minute);
+}

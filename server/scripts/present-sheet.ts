@@ -21,7 +21,7 @@ import { conflict, notFound } from '../http/errors';
 import { conventionOf } from '../courses/convention';
 import { isReleasedTo } from '../results/find-set';
 import { variantsOfStudent } from '../sets/draw-set-variants';
-import { demandSet, problemsOfSet, type ProblemOfSet, type SetRow } from '../sets/set-queries';
+import { demandSet, problemsOfSet, type CourseRow, type ProblemOfSet, type SetRow } from '../sets/set-queries';
 import { scriptOf, type ScriptRow } from './begin-script';
 import { digestOf, lastSubmission, type SubmissionRow } from './hand-in';
 import { ownTimes, type OwnTimes } from './own-times';
@@ -72,9 +72,38 @@ export function demandOpened(tx: Queryable, setId: string) {
  */
 export function presentSheet(tx: Queryable, setId: string, script: ScriptRow, now: number): Sheet {
   const { set, course } = demandOpened(tx, setId);
-  const convention = conventionOf(course);
   const saved = savedParts(tx, script);
   const variants = variantsOfStudent(tx, setId, script.membershipId);
+  const last = lastSubmission(tx, script.id);
+  const times = ownTimes(tx, set, script.membershipId, now);
+  return {
+    ...presentPaper(tx, { set, course, times, saved, givensOf: (id) => variants.get(id)?.givens ?? {} }),
+    state: sheetStateOf(set, script, times),
+    submission: last ? presentSubmission(last) : null,
+    changedSince: hasChanged(last, saved),
+    now,
+  };
+}
+
+/** A part of a sheet as it is shown: saved, or empty in a preview. */
+export type ShownPart = Omit<SavedPart, 'answer'> & { readonly answer: Pick<SavedPart['answer'], 'id'> };
+
+interface Paper {
+  readonly set: SetRow;
+  readonly course: CourseRow;
+  readonly times: OwnTimes;
+  readonly saved: readonly ShownPart[];
+  /** The values of a problem of the set. */
+  readonly givensOf: (setProblemId: string) => GivenValues;
+}
+
+/** What a sheet asks and when it closes, whoever looks at it. */
+export function presentPaper(
+  tx: Queryable,
+  { set, course, times, saved, givensOf }: Paper,
+): Omit<Sheet, 'state' | 'submission' | 'changedSince' | 'now'> {
+  const setId = set.id;
+  const convention = conventionOf(course);
   const own = problemsOfSet(tx, setId);
   const problems = own.map((each): SheetProblem => {
     const { content } = each.revision;
@@ -90,14 +119,12 @@ export function presentSheet(tx: Queryable, setId: string, script: ScriptRow, no
       marks: problemMarks(content),
       stem: splitStatement(content.statement).stem,
       safety: content.safety,
-      givens: printedGivens(content, variants.get(each.setProblem.id)?.givens ?? {}),
-      data: printedData(content, variants.get(each.setProblem.id)?.givens ?? {}),
+      givens: printedGivens(content, givensOf(each.setProblem.id)),
+      data: printedData(content, givensOf(each.setProblem.id)),
       convention: isOwn ? theirs : null,
       parts: presentParts(each, saved),
     };
   });
-  const last = lastSubmission(tx, script.id);
-  const times = ownTimes(tx, set, script.membershipId, now);
   return {
     setId,
     courseId: course.id,
@@ -105,7 +132,6 @@ export function presentSheet(tx: Queryable, setId: string, script: ScriptRow, no
     number: set.number,
     title: set.title,
     coverText: set.coverText,
-    state: sheetStateOf(set, script, times),
     closesAt: times.dueAt,
     late: lateOf(set, times),
     allowance: times.allowance && {
@@ -117,9 +143,6 @@ export function presentSheet(tx: Queryable, setId: string, script: ScriptRow, no
     convention,
     marks: problems.reduce((sum, each) => sum + each.marks, 0),
     problems,
-    submission: last ? presentSubmission(last) : null,
-    changedSince: hasChanged(last, saved),
-    now,
   };
 }
 
@@ -143,7 +166,7 @@ function printedData(content: ProblemContent, values: GivenValues): SheetProblem
   });
 }
 
-function presentParts({ setProblem, revision }: ProblemOfSet, saved: readonly SavedPart[]): SheetPart[] {
+function presentParts({ setProblem, revision }: ProblemOfSet, saved: readonly ShownPart[]): SheetPart[] {
   const { content } = revision;
   const texts = new Map(splitStatement(content.statement).parts.map((part) => [part.label, part.text]));
   return content.parts.flatMap((part, index): SheetPart[] => {

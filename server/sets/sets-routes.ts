@@ -2,7 +2,9 @@ import { setsRoutes } from '@shared/sets';
 import { demand, type SignedIn } from '../access/policy';
 import type { Context } from '../context';
 import type { Serve } from '../http/serve';
+import { previewSheet } from '../scripts/preview-sheet';
 import { checkClosedSet } from './close-set';
+import { copySet } from './copy-set';
 import { moveStage } from './move-stage';
 import { previewStage } from './preview-stage';
 import { countsOf, demandSet, listSets, presentSet } from './set-queries';
@@ -34,6 +36,16 @@ export function addSetsRoutes(serve: Serve, context: Context): void {
   serve(setsRoutes.changeSet, ({ user, params, body, version }) => {
     demand(user, 'change sets', courseOf(params.setId));
     return changeSet(db, params.setId, version, body, deed(user));
+  });
+
+  serve(setsRoutes.copySet, ({ user, params, body }) => {
+    demand(user, 'change sets', courseOf(params.setId));
+    return copySet(db, params.setId, body.weeks, deed(user));
+  });
+
+  serve(setsRoutes.previewSheet, ({ user, params }) => {
+    demand(user, 'preview sheets', courseOf(params.setId));
+    return previewSheet(context, params.setId, params.membershipId);
   });
 
   serve(setsRoutes.usableProblems, ({ user, params, query }) => {
