@@ -128,6 +128,11 @@ export class BenchHand {
     });
   }
 
+  /** Takes in what the bench holds after an act that changed more than the answer in hand. */
+  takeOver(held: Held): void {
+    this.hold(held);
+  }
+
   /** Goes back from an answer that was looked at to the one in hand. */
   goBack(): void {
     this.lookedAt.set(null);

@@ -287,6 +287,8 @@ export default class Bench {
       m: () => this.dock()?.focusRemark(),
       x: () => this.dock()?.askAside(),
       r: () => this.rulings()?.ask(),
+      p: () => this.dock()?.askPattern(),
+      Z: () => this.dock()?.undoPattern(),
       z: () => {
         this.hand.undo();
       },

@@ -13,6 +13,7 @@ import { MatButtonModule } from '@angular/material/button';
 import type { BenchAnswer } from '@shared/marking';
 import type { Criterion } from '@shared/problems';
 import { CriterionToggle } from '../../ui/criterion-toggle/criterion-toggle';
+import { ApplyPattern } from '../pattern/apply-pattern';
 import { FormulaText } from '../../ui/formula-text/formula-text';
 import { BenchHand } from '../bench/bench-hand';
 import { BenchNotices } from '../bench/bench-notices';
@@ -21,7 +22,7 @@ import { criterionKeys } from '../bench/bench-keys';
 /** Where marks are given: the mark scheme, the remark, the total, and what to do with the answer. */
 @Component({
   selector: 'app-dock',
-  imports: [CriterionToggle, FormulaText, MatButtonModule],
+  imports: [ApplyPattern, CriterionToggle, FormulaText, MatButtonModule],
   templateUrl: './dock.html',
   styleUrl: './dock.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -31,6 +32,7 @@ export class Dock {
   protected readonly notices = inject(BenchNotices);
   private readonly remark = viewChild<ElementRef<HTMLTextAreaElement>>('remark');
   private readonly reason = viewChild<ElementRef<HTMLTextAreaElement>>('asideReason');
+  private readonly pattern = viewChild(ApplyPattern);
   private readonly dialog = viewChild<ElementRef<HTMLDialogElement>>('asideDialog');
 
   readonly criteria = input.required<readonly Criterion[]>();
@@ -64,6 +66,16 @@ export class Dock {
   /** Puts the cursor into the remark. */
   focusRemark(): void {
     this.remark()?.nativeElement.focus();
+  }
+
+  /** Shows what the mark in hand would reach if it were applied to its pattern. */
+  askPattern(): void {
+    void this.pattern()?.ask();
+  }
+
+  /** Takes the last application to a pattern back. */
+  undoPattern(): void {
+    void this.pattern()?.undo();
   }
 
   /** Asks for the reason to set the answer aside. */
