@@ -71,7 +71,6 @@ export class ColleaguesMargin {
   protected readonly showsSettled = signal(false);
   protected readonly count = computed(() => {
     const open = this.review.unsettled().length;
-    if (open === 0) return '';
-    return open === 1 ? '1 open comment' : `${String(open)} open comments`;
+    return open === 0 ? '' : `${String(open)} open`;
   });
 }
