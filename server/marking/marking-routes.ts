@@ -9,6 +9,8 @@ import { findAnswer, findPile, marksAreGiven, teamOf } from './find-pile';
 import { dropExpiredHolds, letGo, renewHolds, shortenHolds, takeHolds } from './holds';
 import { listPiles, presentHeading } from './list-piles';
 import { presentAnswers } from './present-answers';
+import { recordLook } from '../record/record-look';
+import { isReleasedTo } from '../results/find-set';
 import { addPatternMarkRoutes } from './pattern-mark-routes';
 import { addRulingRoutes } from './ruling-routes';
 import { rulingsOf } from './rulings';
@@ -65,8 +67,10 @@ export function addMarkingRoutes(serve: Serve, context: Context): void {
   });
 
   serve(markingRoutes.benchAnswer, ({ user, params }) => {
-    const { answer } = findAnswer(db, params.answerId);
-    const viewer = viewerIn(user, findPile(db, answer.pileId).set.courseId);
+    const { answer, script } = findAnswer(db, params.answerId);
+    const { set } = findPile(db, answer.pileId);
+    const viewer = viewerIn(user, set.courseId);
+    if (isReleasedTo(set, script)) recordLook(db, { set, script }, user, clock.now());
     return presentBenchAnswer(context, viewer, params.answerId);
   });
 

@@ -3,6 +3,7 @@ import { demand, membershipFor, type SignedIn } from '../access/policy';
 import type { Context } from '../context';
 import type { Serve } from '../http/serve';
 import { tellPileChanged } from '../marking/tell-piles';
+import { recordLook } from '../record/record-look';
 import { findSet } from '../results/find-set';
 import { answerQuery } from './answer-query';
 import { askQuery, presentOwnQueries } from './ask-query';
@@ -46,7 +47,11 @@ export function addQueriesRoutes(serve: Serve, context: Context): void {
     };
   });
 
-  serve(queriesRoutes.query, ({ user, params }) => presentQuery(db, params.queryId, teamMember(user, params.queryId)));
+  serve(queriesRoutes.query, ({ user, params }) => {
+    const membershipId = teamMember(user, params.queryId);
+    recordLook(db, findQuery(db, params.queryId), user, clock.now());
+    return presentQuery(db, params.queryId, membershipId);
+  });
 
   serve(queriesRoutes.answerQuery, ({ user, params, body, version, idempotencyKey }) => {
     const membershipId = teamMember(user, params.queryId);

@@ -67,7 +67,7 @@ export function addScriptsRoutes(serve: Serve, context: Context): void {
   serve(scriptsRoutes.restorePage, ({ user, params }) => restorePage(context, user, params.pageId));
 
   serve(scriptsRoutes.page, async ({ user, params, response }) => {
-    await sendFile(files, response, readablePage(db, user, params.pageId));
+    await sendFile(files, response, readablePage(db, user, params.pageId, clock.now()));
   });
 
   serve(scriptsRoutes.submitSheet, ({ user, params, idempotencyKey }) => {

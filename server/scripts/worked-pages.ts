@@ -11,7 +11,8 @@ import { workedPageFile } from '../files/worked-page-file';
 import { conflict, notFound } from '../http/errors';
 import { newId } from '../http/new-id';
 import { marksAreGiven } from '../marking/find-pile';
-import { isReleased } from '../results/find-set';
+import { recordLook } from '../record/record-look';
+import { isReleased, isReleasedTo } from '../results/find-set';
 import { demandOpen, ownAnswer, ownPage, type OwnAnswer } from './own-answer';
 import { pagesOf, type PageRow } from './saved-answers';
 
@@ -140,11 +141,11 @@ function placeOf(tx: Queryable, answerId: string) {
 
 /**
  * The file of a page, for the student whose it is, and for those who mark the course once it was handed in. Its name carries
- * the script's code, never a student's name.
+ * the script's code, never a student's name. Once marks are out, that somebody of the team looks is recorded.
  *
  * @throws RequestError 404 for everybody else
  */
-export function readablePage(tx: Queryable, person: SignedIn, pageId: string): SentFile {
+export function readablePage(tx: Queryable, person: SignedIn, pageId: string, now: number): SentFile {
   const row = tx
     .select({ page: pages, answer: answers, script: scripts, set: sets, userId: memberships.userId })
     .from(pages)
@@ -159,6 +160,7 @@ export function readablePage(tx: Queryable, person: SignedIn, pageId: string): S
   const own = userId === person.id && person.memberships.has(set.courseId);
   const handedIn = answer.state !== null && (marksAreGiven(set.stage) || isReleased(set.stage));
   if (!own && !(handedIn && can(person, 'read piles', set.courseId))) throw notFound('page');
+  if (!own && isReleasedTo(set, script)) recordLook(tx, { set, script }, person, now);
   const place = placeOf(tx, answer.id);
   const ending = page.mediaType === 'application/pdf' ? 'pdf' : page.mediaType.replace('image/', '');
   return {
