@@ -239,6 +239,39 @@ export const reviewRequests = sqliteTable(
   ],
 );
 
+/** A colleague's solution of one variant of a revision, before students meet it. */
+export const tryOuts = sqliteTable(
+  'try_outs',
+  {
+    id: id(),
+    problemId: text()
+      .notNull()
+      .references(() => problems.id),
+    revisionId: text()
+      .notNull()
+      .references(() => revisions.id),
+    byId: text()
+      .notNull()
+      .references(() => users.id),
+    givens: text({ mode: 'json' }).$type<Readonly<Record<string, GivenValue>>>().notNull(),
+    /** Texts as they are typed, by the part's id. */
+    answers: text({ mode: 'json' }).$type<Readonly<Record<string, string>>>().notNull(),
+    /** How long somebody was at it, idle times left out. */
+    activeSeconds: integer().notNull().default(0),
+    startedAt: time().notNull(),
+    savedAt: time().notNull(),
+    handedInAt: time(),
+    /** How the check judged each part, in their order; null before it was handed in. */
+    results: text({ mode: 'json' }).$type<readonly (CheckResult | null)[]>(),
+  },
+  (table) => [
+    index('try_outs_problem').on(table.problemId, table.handedInAt),
+    uniqueIndex('try_outs_open')
+      .on(table.revisionId, table.byId)
+      .where(sql`handed_in_at is null`),
+  ],
+);
+
 /** Sign-offs, wishes for changes and overrulings of revisions. Append-only. */
 export const reviewDecisions = sqliteTable(
   'review_decisions',

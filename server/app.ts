@@ -11,6 +11,7 @@ import { addDeskRoutes } from './desk/desk-routes';
 import { addAuditRoutes } from './problems/audit-routes';
 import { addProblemRoutes } from './problems/problems-routes';
 import { addReviewRoutes } from './problems/review-routes';
+import { addTryOutRoutes } from './problems/try-out-routes';
 import { addJobRoutes } from './jobs/job-routes';
 import { addRecordRoutes } from './record/record-routes';
 import { contentPolicy } from './http/content-policy';
@@ -102,6 +103,7 @@ export function createApp(context: Context, clientFolder?: string): Application 
   addProblemRoutes(serve, context);
   addAuditRoutes(serve, context);
   addReviewRoutes(serve, context);
+  addTryOutRoutes(serve, context);
   addJobRoutes(serve, context);
   addRecordRoutes(serve, context);
   addSetsRoutes(serve, context);

@@ -147,7 +147,7 @@ export function presentPaper(
 }
 
 /** Values of the names that the statement prints; what only keys use stays on the server. */
-function printedGivens(content: ProblemContent, values: GivenValues): SheetProblem['givens'] {
+export function printedGivens(content: ProblemContent, values: GivenValues): SheetProblem['givens'] {
   return Object.fromEntries(
     namedGivens(content.statement).flatMap((name) => {
       const value = values[name];
@@ -158,7 +158,7 @@ function printedGivens(content: ProblemContent, values: GivenValues): SheetProbl
 }
 
 /** The lists of counts that the statement names; those that only keys use stay on the server. */
-function printedData(content: ProblemContent, values: GivenValues): SheetProblem['data'] {
+export function printedData(content: ProblemContent, values: GivenValues): SheetProblem['data'] {
   const named = new Set(namedGivens(content.statement));
   return content.givens.flatMap(({ name, symbol }) => {
     const counts = values[name]?.counts;
@@ -191,7 +191,8 @@ function presentParts({ setProblem, revision }: ProblemOfSet, saved: readonly Sh
   });
 }
 
-function fieldOf(answer: AnswerSpecification, content: ProblemContent): SheetField {
+/** What is printed beside the field of an answer. */
+export function fieldOf(answer: AnswerSpecification, content: ProblemContent): SheetField {
   const variables = new Map(content.givens.map(({ name, symbol, spellings }) => [name, { symbol, spellings }]));
   const field = answerField(answer, variables);
   switch (field.form) {
@@ -213,7 +214,8 @@ function fieldOf(answer: AnswerSpecification, content: ProblemContent): SheetFie
   }
 }
 
-function optionsOf(part: Part): SheetPart['options'] {
+/** What the options of a choice say; none for other forms. */
+export function optionsOf(part: Part): SheetPart['options'] {
   if (part.answer.form !== 'choice') return [];
   return part.answer.options.map((option) =>
     typeof option === 'string' ? { label: option, text: '' } : { label: option.label, text: option.text },
