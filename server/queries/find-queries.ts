@@ -77,7 +77,7 @@ export function giversOf(tx: Queryable, asked: readonly Pick<typeof answers.$inf
       );
       for (let row = byId.get(standingMarkId ?? ''); row; row = byId.get(row.replacesId ?? ''))
         if (row.markerId !== null) givers.add(row.markerId);
-      return [id, givers as ReadonlySet<string>];
+      return [id, givers];
     }),
   );
 }
