@@ -20,6 +20,7 @@ const subjects = [
   'receipts',
   'queries',
   'own-data',
+  'calendar',
 ];
 
 /** What subjects stand on; each folder with those that it may use. */

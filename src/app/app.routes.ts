@@ -40,6 +40,12 @@ export const routes: Routes = [
             canActivate: [whoIs('lead', 'marker')],
             loadChildren: () => import('./problems/problems.routes'),
           },
+          {
+            path: 'sets/:setId/preview/:membershipId',
+            title: 'Preview of a sheet',
+            canActivate: [whoIs('lead')],
+            loadComponent: () => import('./sheet/sheet-preview/sheet-preview'),
+          },
           { path: 'sets', canActivate: [whoIs('lead')], loadChildren: () => import('./sets/sets.routes') },
           {
             path: 'marking',

@@ -12,11 +12,21 @@ import { AccountsApi } from '../../core/api/accounts-api';
 import { checkedBy, messageOf, showFailure, showWhatIsMissing } from '../../core/field-messages';
 import { ColourScheme, colourSchemes } from '../../core/colour-scheme';
 import { Session } from '../../core/session';
+import { CalendarSection } from '../calendar-section/calendar-section';
+import { OwnData } from '../own-data/own-data';
 
 /** A person's own account: password, sign-out everywhere, light or dark. */
 @Component({
   selector: 'app-your-account',
-  imports: [MatButtonModule, MatButtonToggleModule, MatFormFieldModule, MatInputModule, ReactiveFormsModule],
+  imports: [
+    CalendarSection,
+    MatButtonModule,
+    MatButtonToggleModule,
+    MatFormFieldModule,
+    MatInputModule,
+    OwnData,
+    ReactiveFormsModule,
+  ],
   templateUrl: './your-account.html',
   styleUrl: './your-account.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,

@@ -19,11 +19,11 @@ export class ResultsApi {
     return this.api.call(resultsRoutes.release, { params: { setId } });
   }
 
-  releaseSet(setId: string, version: number, text: string | undefined) {
+  releaseSet(setId: string, version: number, text: string | undefined, leaveOutOpen: boolean) {
     return this.api.call(resultsRoutes.releaseSet, {
       params: { setId },
       version,
-      body: text === undefined ? {} : { text },
+      body: text === undefined ? { leaveOutOpen } : { text, leaveOutOpen },
     });
   }
 

@@ -26,6 +26,14 @@ export class SetsApi {
     return this.api.call(setsRoutes.changeSet, { params: { setId }, version, body });
   }
 
+  copySet(setId: string, weeks: number) {
+    return this.api.call(setsRoutes.copySet, { params: { setId }, body: { weeks } });
+  }
+
+  previewSheet(setId: string, membershipId: string) {
+    return this.api.call(setsRoutes.previewSheet, { params: { setId, membershipId } });
+  }
+
   usableProblems(courseId: string, search: string) {
     return this.api.call(setsRoutes.usableProblems, { params: { courseId }, query: { search } });
   }

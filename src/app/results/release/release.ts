@@ -96,9 +96,9 @@ export default class ReleasePage {
     });
   }
 
-  protected send(release: Release): Promise<void> {
+  protected send(release: Release, leaveOutOpen: boolean): Promise<void> {
     return this.act(() =>
-      firstValueFrom(this.api.releaseSet(release.setId, release.version, this.wording() ?? undefined)),
+      firstValueFrom(this.api.releaseSet(release.setId, release.version, this.wording() ?? undefined, leaveOutOpen)),
     );
   }
 

@@ -50,6 +50,9 @@ const pageSize = 50;
                   @for (part of set.parts; track part.pileId) {
                     <th scope="col" class="number">{{ part.label }}, {{ part.marks }}</th>
                   }
+                  @if (set.takesLateWork) {
+                    <th scope="col" class="number">late, taken off</th>
+                  }
                   <th scope="col" class="number">total</th>
                 </tr>
               </thead>
@@ -62,6 +65,9 @@ const pageSize = 50;
                     }
                     @for (mark of row.marks; track $index) {
                       <td class="number">{{ mark ?? '–' }}</td>
+                    }
+                    @if (set.takesLateWork) {
+                      <td class="number">{{ row.late ? row.late.days + ' d, ' + row.late.marks : '–' }}</td>
                     }
                     <td class="number">
                       <b>{{ row.total }}</b>

@@ -25,14 +25,28 @@ import { EmptyState } from '../../ui/empty-state/empty-state';
 import { ErrorState } from '../../ui/error-state/error-state';
 import { LoadingBars } from '../../ui/loading-bars/loading-bars';
 import { StageLine } from '../../ui/stage-line/stage-line';
+import { lateRuleInWords } from '@shared/late-rule';
+import { CopySet } from '../copy-set/copy-set';
 import { MoveSet } from '../move-set/move-set';
+import { SetAllowances } from '../set-allowances/set-allowances';
 import { marksOf, nextActOf, presentOf, progressOf } from '../set-life';
 import { StudentProgressTable } from '../student-progress/student-progress';
 
 /** A set: where it is in its life, what is next, what it asks, and how far the students are. */
 @Component({
   selector: 'app-set-page',
-  imports: [EmptyState, ErrorState, LoadingBars, MatButtonModule, MoveSet, RouterLink, StageLine, StudentProgressTable],
+  imports: [
+    CopySet,
+    SetAllowances,
+    EmptyState,
+    ErrorState,
+    LoadingBars,
+    MatButtonModule,
+    MoveSet,
+    RouterLink,
+    StageLine,
+    StudentProgressTable,
+  ],
   templateUrl: './set-page.html',
   styleUrl: './set-page.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
@@ -49,6 +63,8 @@ export default class SetPage {
   readonly courseId = input.required<string>();
   readonly setId = input.required<string>();
   readonly move = input<string>();
+  /** Whether a copy is being thought of. */
+  readonly copy = input<string>();
   readonly state = input<StudentProgress['state']>();
   readonly search = input('', { transform: address.text });
   readonly page = input(1, { transform: address.page });
@@ -108,7 +124,11 @@ export default class SetPage {
     const left = set.closesAt - this.clock.now();
     return `${fullMomentOf(set.closesAt, this.zone())}${left > 0 ? `, in ${spanOf(left)}` : ''}`;
   });
-  protected readonly hasOpened = computed(() => !isBeforeOpening(this.set()?.stage ?? 'draft'));
+  protected readonly late = computed(() => {
+    const rule = this.set()?.lateRule;
+    if (!rule) return 'not taken';
+    return `taken until ${fullMomentOf(rule.until, this.zone())}; ${lateRuleInWords(rule)}`;
+  });
   protected readonly isMarked = computed(() =>
     ['closed', 'marking', 'moderation'].includes(this.set()?.stage ?? 'draft'),
   );
@@ -135,7 +155,11 @@ export default class SetPage {
   }
 
   protected leaveMove(): void {
-    void this.router.navigate([], { queryParams: { move: null }, queryParamsHandling: 'merge', replaceUrl: true });
+    void this.router.navigate([], {
+      queryParams: { move: null, copy: null },
+      queryParamsHandling: 'merge',
+      replaceUrl: true,
+    });
   }
 }
 

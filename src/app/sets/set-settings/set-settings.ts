@@ -16,6 +16,7 @@ import { MatCheckboxModule } from '@angular/material/checkbox';
 import { MatFormFieldModule } from '@angular/material/form-field';
 import { MatInputModule } from '@angular/material/input';
 import { MatRadioModule } from '@angular/material/radio';
+import { MatSelectModule } from '@angular/material/select';
 import { Router, RouterLink } from '@angular/router';
 import { firstValueFrom, map, of, startWith, switchMap } from 'rxjs';
 import { type SetDetail, isBeforeOpening, setDetail } from '@shared/sets';
@@ -45,6 +46,7 @@ import { fieldsOf, setForm } from './set-form';
     MatFormFieldModule,
     MatInputModule,
     MatRadioModule,
+    MatSelectModule,
     ReactiveFormsModule,
     RouterLink,
   ],
@@ -99,6 +101,8 @@ export default class SetSettings {
     ),
   );
   protected readonly coverText = computed(() => this.typed()?.coverText ?? '');
+  protected readonly takesLate = computed(() => this.typed()?.lateRule.taken ?? false);
+  protected readonly lateIn = computed(() => this.spanTo(this.typed()?.lateRule.until, 'the last comes'));
   protected readonly opensIn = computed(() => this.spanTo(this.typed()?.opensAt, 'opens'));
   protected readonly closesIn = computed(() => this.spanTo(this.typed()?.closesAt, 'closes'));
 

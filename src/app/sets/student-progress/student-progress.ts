@@ -4,7 +4,7 @@ import { MatFormFieldModule } from '@angular/material/form-field';
 import { MatInputModule } from '@angular/material/input';
 import { MatPaginatorModule } from '@angular/material/paginator';
 import { MatSelectModule } from '@angular/material/select';
-import { Router } from '@angular/router';
+import { Router, RouterLink } from '@angular/router';
 import type { SetStage } from '@shared/primitives';
 import { progressPageSize, studentProgress, type StudentProgress } from '@shared/sets';
 import { momentOf } from '@shared/times';
@@ -26,6 +26,7 @@ import { LoadingBars } from '../../ui/loading-bars/loading-bars';
     MatInputModule,
     MatPaginatorModule,
     MatSelectModule,
+    RouterLink,
   ],
   templateUrl: './student-progress.html',
   styleUrl: './student-progress.scss',
@@ -36,6 +37,7 @@ export class StudentProgressTable {
   private readonly router = inject(Router);
   private readonly session = inject(Session);
 
+  readonly courseId = input.required<string>();
   readonly setId = input.required<string>();
   /** The set's stage: when it changes, so do the students. */
   readonly stage = input.required<SetStage>();

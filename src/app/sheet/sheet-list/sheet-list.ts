@@ -48,7 +48,7 @@ export default class SheetList {
     }));
   });
 
-  private whenOf({ state, opensAt, closesAt }: SheetSummary): { words: string; date: string } {
+  private whenOf({ state, opensAt, closesAt, lateUntil }: SheetSummary): { words: string; date: string } {
     const now = this.clock.now();
     if (state === 'coming')
       return {
@@ -57,6 +57,8 @@ export default class SheetList {
       };
     const date = closesAt === null ? '' : momentOf(closesAt, this.zone());
     if (state !== 'open') return { words: 'closed', date };
+    if (closesAt !== null && closesAt <= now && lateUntil !== null)
+      return { words: `late work for ${spanOf(lateUntil - now)}`, date: momentOf(lateUntil, this.zone()) };
     return { words: closesAt === null ? 'open' : `closes in ${spanOf(closesAt - now)}`, date };
   }
 

@@ -93,11 +93,32 @@ export default class SheetView {
   private readonly now = computed(() => this.clock.now() + this.behind());
   protected readonly isOpen = computed(() => this.sheet()?.state === 'open');
   protected readonly zone = computed(() => this.sheet()?.timeZone ?? 'UTC');
-  protected readonly left = computed(() => (this.sheet()?.closesAt ?? 0) - this.now());
+  /** Whether the closing time is over, and late work is taken. */
+  protected readonly isLate = computed(() => {
+    const its = this.sheet();
+    return its?.state === 'open' && its.late !== null && its.closesAt !== null && its.closesAt <= this.now();
+  });
+  /** The closing time, or once that is over the last time for late work. */
+  private readonly endsAt = computed(
+    () => (this.isLate() ? this.sheet()?.late?.until : this.sheet()?.closesAt) ?? null,
+  );
+  protected readonly left = computed(() => (this.endsAt() ?? 0) - this.now());
   protected readonly isSoon = computed(() => this.left() < 3 * hour);
   protected readonly timeLeft = computed(() => (this.left() > 0 ? `in ${spanOf(this.left())}` : 'now'));
   protected readonly closing = computed(() => {
-    const at = this.sheet()?.closesAt;
+    const at = this.endsAt();
+    return at === null ? '' : momentOf(at, this.zone());
+  });
+  protected readonly lateUntil = computed(() => {
+    const late = this.sheet()?.late;
+    return late ? momentOf(late.until, this.zone()) : '';
+  });
+  protected readonly othersClose = computed(() => {
+    const at = this.sheet()?.allowance?.othersCloseAt;
+    return at == null ? '' : momentOf(at, this.zone());
+  });
+  protected readonly ownClosing = computed(() => {
+    const at = this.sheet()?.allowance?.closesAt;
     return at == null ? '' : momentOf(at, this.zone());
   });
   protected readonly closedOn = computed(() => {
@@ -133,7 +154,7 @@ export default class SheetView {
     });
     effect(() => {
       // The page notices the closing time by itself; the last letters are on their way before it.
-      if (this.isOpen() && this.sheet()?.closesAt != null && this.left() <= 0)
+      if (this.isOpen() && this.endsAt() !== null && this.left() <= 0)
         untracked(() => {
           this.fetched.reload();
         });
