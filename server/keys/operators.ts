@@ -1,4 +1,4 @@
-import { addStates, divideState, multiplyState, subtractStates } from '../optics/states';
+import { addStates, divideState, multiplyState, subtractStates } from '../optics/superpositions';
 import { isState } from '../optics/state';
 import { mathematics as m } from './mathematics';
 import { plainFunctions, Refusal } from './plain-functions';

@@ -1,4 +1,4 @@
-import { abs2, multiply, phase, type Complex } from '../complex';
+import { abs2, phase, type Complex } from '../complex';
 import { MethodDoesNotApply, StateVanishes } from '../method-does-not-apply';
 import type { Conditioned } from './conditions';
 import { applyUnitary, type NumberUnitary } from './displaced-numbers';

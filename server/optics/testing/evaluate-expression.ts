@@ -8,7 +8,8 @@ import { figureByMethods } from '../figure-by-methods';
 import { figureFunctions, type FigureValue } from '../figures';
 import type { ComparedValue } from '../methods';
 import { isState, type State } from '../state';
-import { addStates, divideState, multiplyState, stateFunctions, subtractStates, type StateFunction } from '../states';
+import { stateFunctions, type StateFunction } from '../states';
+import { addStates, divideState, multiplyState, subtractStates } from '../superpositions';
 import type { FigureFunction } from '../figures';
 
 const math = mathjs;
