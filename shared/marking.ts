@@ -40,6 +40,8 @@ export const mark = z.object({
   at: instant,
   replacesId: identifier.nullable(),
   reason: z.string().nullable(),
+  /** Whether it was given by applying a mark to a pattern: nobody saw this answer by itself. */
+  notSeenSingly: z.boolean(),
 });
 export type Mark = z.infer<typeof mark>;
 

@@ -23,8 +23,9 @@ export function maySee(viewer: Viewer, mark: Pick<MarkRow, 'markerId'>): boolean
 
 /** A mark as it leaves the server, for those who may see it. */
 export function presentMark(row: MarkRow): Mark {
-  const { id, markerId, criteria, total, remark, at, replacesId, reason } = row;
-  return { id, markerId, criteria: [...criteria], total, remark, at, replacesId, reason };
+  const { patternApplicationId, id, markerId, criteria, total, remark, at, replacesId, reason } = row;
+  const notSeenSingly = patternApplicationId !== null;
+  return { id, markerId, criteria: [...criteria], total, remark, at, replacesId, reason, notSeenSingly };
 }
 
 /** The answers of a pile as bars, in pattern order, and the patterns. */

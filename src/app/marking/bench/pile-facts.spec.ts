@@ -91,6 +91,25 @@ describe('facts about a pile', () => {
     expect(takeFact(buildPile([]), { name: 'pileChanged', body: { pileId, sequence: 8 } })).toBe('fetch again');
   });
 
+  it('bring rulings as they are asked for and decided', () => {
+    const ruling = {
+      id: second,
+      question: 'Is twice the key right?',
+      askedById: brandt,
+      askedAt: 1,
+      decision: null,
+      decidedById: null,
+      decidedAt: null,
+      answers: [{ answerId: first, code: 'K7QF', byId: brandt }],
+    };
+    const asked = takeFact(buildPile([]), { name: 'rulingAsked', body: { pileId, sequence: 8, ruling } });
+    expect(asked).toMatchObject({ pile: { sequence: 8, rulings: [ruling] } });
+    if (asked === 'fetch again') throw new Error('Nothing was missed.');
+    const decided = { ...ruling, decision: 'Yes.', decidedById: me, decidedAt: 2 };
+    const after = takeFact(asked.pile, { name: 'rulingDecided', body: { pileId, sequence: 9, ruling: decided } });
+    expect(after).toMatchObject({ pile: { sequence: 9, rulings: [decided] } });
+  });
+
   it('about another pile change nothing', () => {
     const pile = buildPile([buildAnswer()]);
     expect(takeFact(pile, marked({ pileId: second, sequence: 99 }))).toEqual({ pile });

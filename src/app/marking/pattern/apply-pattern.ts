@@ -3,6 +3,8 @@ import {
   ChangeDetectionStrategy,
   Component,
   type ElementRef,
+  Injector,
+  afterNextRender,
   computed,
   inject,
   input,
@@ -38,6 +40,7 @@ interface Applied {
 export class ApplyPattern {
   private readonly api = inject(PatternMarksApi);
   private readonly announcer = inject(LiveAnnouncer);
+  private readonly injector = inject(Injector);
   private readonly watch = inject(PileWatch);
   private readonly notices = inject(BenchNotices);
   private readonly hand = inject(BenchHand);
@@ -88,7 +91,13 @@ export class ApplyPattern {
       if (this.answer()?.id !== answer.id) return;
       this.preview.set(preview);
       this.key = newIdempotencyKey();
-      dialog.showModal();
+      // Once what it shows is there, so that the focus finds its first control.
+      afterNextRender(
+        () => {
+          dialog.showModal();
+        },
+        { injector: this.injector },
+      );
     } catch (error) {
       this.notices.tell({ text: sentenceOf(error) });
     } finally {

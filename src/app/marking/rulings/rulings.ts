@@ -50,6 +50,7 @@ export class Rulings {
   readonly timeZone = input('UTC');
 
   protected readonly pile = this.watch.pile;
+  private readonly pileId = computed(() => this.pile()?.id);
   protected readonly part = computed(() => {
     const pile = this.pile();
     return pile ? `${String(pile.position)} (${pile.partLabel})` : 'this part';
@@ -84,7 +85,7 @@ export class Rulings {
 
   constructor() {
     effect(() => {
-      const pileId = this.pile()?.id;
+      const pileId = this.pileId();
       if (pileId !== undefined)
         untracked(() => {
           this.seenUntil.set(rulingsSeen(pileId) ?? Date.now());
@@ -100,7 +101,7 @@ export class Rulings {
         void this.announcer.announce(`Ruling on ${untracked(this.part)}: ${decision ?? ''}`, 'polite');
     });
     inject(DestroyRef).onDestroy(() => {
-      const pileId = this.pile()?.id;
+      const pileId = this.pileId();
       const newest = this.lists().decided[0]?.decidedAt ?? null;
       if (pileId !== undefined) rememberRulingsSeen(pileId, newest ?? Date.now());
     });
