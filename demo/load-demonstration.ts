@@ -16,7 +16,7 @@ import { day, DemoClock, hour } from './demo-clock';
 import { workOnSheet, type Effort, type OpenSet } from './hand-in-scripts';
 import { addProblems, makeCourse, type DemonstrationPeople, type DemonstrationProblem } from './make-course';
 import { markPile } from './mark-pile';
-import { commentOn } from './review-problem';
+import { commentOn, tryOut } from './review-problem';
 
 type Tell = (line: string) => void;
 
@@ -138,7 +138,7 @@ async function loadSetInReview(world: World): Promise<void> {
   const { context, clock, people } = world;
   clock.moveTo(clock.daysAgo(5, '11:00'));
   const problems = await addProblems(context, people, '4-fringes-and-superpositions', 'in review');
-  reviewSome(world, problems);
+  await reviewSome(world, problems);
   await makeSet(world, {
     number: 4,
     title: 'Fringes and superpositions',
@@ -149,8 +149,8 @@ async function loadSetInReview(world: World): Promise<void> {
   });
 }
 
-/** Two markers are asked; one has signed a problem off, the other wants another changed. */
-function reviewSome({ context, clock, people }: World, problems: readonly DemonstrationProblem[]): void {
+/** Two markers are asked; one has tried a problem out and signed it off, and wants another changed. */
+async function reviewSome({ context, clock, people }: World, problems: readonly DemonstrationProblem[]): Promise<void> {
   const { db } = context;
   const [first, second] = people.markers;
   const [cat, night, fringes] = ['a-cat-behind-a-loss', 'a-night-at-the-counter', 'fringes-of-one-quantum'].map(
@@ -165,6 +165,10 @@ function reviewSome({ context, clock, people }: World, problems: readonly Demons
   ask(cat, first, second);
   ask(night, first);
   ask(fringes, first, second);
+  await tryOut(context, cat, second, clock.daysAgo(4, '09:40'), 14, ({ alpha = 0, eta = 0 }) => {
+    const lost = (1 - eta) * alpha ** 2;
+    return [lost.toPrecision(4), Math.exp(-lost).toPrecision(3)];
+  });
   const signedAt = clock.daysAgo(4, '10:20');
   decide(db, cat, { revision: 1, kind: 'signed off', words: '' }, { personId: second.id, now: signedAt });
   commentOn(context, people.lead, cat, {

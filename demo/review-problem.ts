@@ -5,6 +5,7 @@ import { newId } from '../server/http/new-id';
 import { replyTo, writeComment } from '../server/problems/review-comments';
 import { demandProblem } from '../server/problems/problem-rules';
 import { askForReview, decide } from '../server/problems/review-rules';
+import { beginTryOut, handInTryOut } from '../server/problems/try-out-rules';
 
 /** Who asks for a review, whom, and when they answer. */
 export interface DemonstrationReview {
@@ -58,4 +59,27 @@ export function commentOn(
   );
   if (reply !== undefined)
     replyTo(db, problemId, id, { text: reply, idempotencyKey: newId() }, { personId: author.id, now: at + 2 * hour });
+}
+
+/**
+ * Lets a colleague try a problem out.
+ *
+ * @param minutes how long they are at it
+ * @param solve gives their answers, part by part, for the numbers that they got
+ */
+export async function tryOut(
+  context: Context,
+  problemId: string,
+  colleague: SignedIn,
+  begunAt: number,
+  minutes: number,
+  solve: (givens: Readonly<Record<string, number>>) => readonly string[],
+): Promise<void> {
+  const personId = colleague.id;
+  const paper = await beginTryOut(context, problemId, { personId, now: begunAt });
+  const givens = Object.fromEntries(Object.entries(paper.givens).map(([name, { printed }]) => [name, Number(printed)]));
+  const solved = solve(givens);
+  const answers = Object.fromEntries(paper.parts.map(({ partId }, index) => [partId, solved[index] ?? '']));
+  const now = begunAt + minutes * 60_000;
+  await handInTryOut(context, problemId, paper.id, { answers, activeSeconds: minutes * 60 }, { personId, now });
 }

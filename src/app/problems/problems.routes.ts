@@ -16,6 +16,12 @@ const routes: Routes = [
     loadComponent: () => import('./key-language/key-language'),
   },
   {
+    path: ':problemId/try-out',
+    title: 'Try-out',
+    canDeactivate: [keepBeforeLeaving],
+    loadComponent: () => import('./try-out/try-out'),
+  },
+  {
     path: ':problemId',
     title: 'Problem',
     canDeactivate: [keepBeforeLeaving],

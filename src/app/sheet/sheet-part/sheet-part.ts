@@ -5,7 +5,7 @@ import { AnswerField, type TypedField } from '../../ui/answer-field/answer-field
 import { FormulaText } from '../../ui/formula-text/formula-text';
 import type { PrintedGivens } from '../../ui/formula-text/printed-given';
 import { WorkedText } from '../../ui/worked-text/worked-text';
-import { ChoiceField } from '../choice-field/choice-field';
+import { ChoiceField } from '../../ui/choice-field/choice-field';
 import { PageFiles } from '../page-files/page-files';
 import type { PartInHand } from '../sheet-keeper';
 

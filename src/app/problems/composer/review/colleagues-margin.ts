@@ -6,11 +6,12 @@ import { CommentForm } from './comment-form';
 import { CommentThread } from './comment-thread';
 import { OpenReview } from './open-review';
 import { SignOff } from './sign-off';
+import { TryOutList } from './try-out-list';
 
 /** The margin of the composer: what colleagues say, tied to lines, and whether the problem is signed off. */
 @Component({
   selector: 'app-colleagues-margin',
-  imports: [CommentForm, CommentThread, MatButtonModule, MatIconModule, SignOff],
+  imports: [CommentForm, CommentThread, MatButtonModule, MatIconModule, SignOff, TryOutList],
   template: `
     <div class="heading">
       <h2>Colleagues</h2>
@@ -50,6 +51,7 @@ import { SignOff } from './sign-off';
         }
       }
     }
+    <app-try-out-list [problemId]="problemId()" [courseId]="courseId()" />
     <app-sign-off [problemId]="problemId()" [courseId]="courseId()" (compare)="compare.emit($event)" />
   `,
   styleUrl: './colleagues-margin.scss',

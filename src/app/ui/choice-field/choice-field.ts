@@ -1,6 +1,6 @@
 import { ChangeDetectionStrategy, Component, computed, effect, input, model, output, untracked } from '@angular/core';
 import type { Reading } from '@shared/reading';
-import { FormulaText } from '../../ui/formula-text/formula-text';
+import { FormulaText } from '../formula-text/formula-text';
 
 let fields = 0;
 
