@@ -171,6 +171,7 @@ function addressesOf(built: ReturnType<typeof plantedSet>): string[] {
     jobId: [built.jobId],
     correctionId: [built.correctionId],
     queryId: [newId()],
+    address: ['0'.repeat(43)],
     pageId: [newId()],
     stage: setStageNames,
   };

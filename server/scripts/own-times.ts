@@ -1,6 +1,6 @@
 import { and, eq, isNull } from 'drizzle-orm';
 import type { Queryable } from '@drizzle/client';
-import { allowances, type sets } from '@drizzle/schema';
+import { allowances, memberships, type sets } from '@drizzle/schema';
 import type { SetStage } from '@shared/primitives';
 
 export type AllowanceRow = typeof allowances.$inferSelect;
@@ -49,9 +49,18 @@ export function timesUnder(set: TimedSet, allowance: AllowanceRow | null, now: n
   return { dueAt, endsAt: set.stage === 'open' ? endsAt : dueAt, allowance, isOpen };
 }
 
-/** The allowances by which students can work on a set that is closed to the others. */
+/** The allowances by which students of the course can work on a set that is closed to the others. */
 export function stillOpen(tx: Queryable, set: TimedSet, now: number): AllowanceRow[] {
-  return [...allowancesOf(tx, set.id).values()].filter((row) => timesUnder(set, row, now).isOpen);
+  const present = tx
+    .select({ id: memberships.id })
+    .from(allowances)
+    .innerJoin(memberships, eq(memberships.id, allowances.membershipId))
+    .where(and(eq(allowances.setId, set.id), eq(memberships.role, 'student'), isNull(memberships.removedAt)))
+    .all();
+  const students = new Set(present.map(({ id }) => id));
+  return [...allowancesOf(tx, set.id).values()].filter(
+    (row) => students.has(row.membershipId) && timesUnder(set, row, now).isOpen,
+  );
 }
 
 /** When a set closes to all who have no allowance: with the last late work, where it takes any. */

@@ -1,6 +1,6 @@
 import { eq } from 'drizzle-orm';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
-import { allowances, answers, letters, marks, record, scripts, submissions } from '@drizzle/schema';
+import { allowances, answers, letters, marks, memberships, record, scripts, submissions } from '@drizzle/schema';
 import type { Desk } from '@shared/desk';
 import type { SetPiles } from '@shared/marking';
 import type { Receipt, Sheet } from '@shared/scripts';
@@ -239,6 +239,18 @@ describe('release', () => {
     expect(release).toMatchObject({ ready: false, stillOpen: { students: 1, until: later, othersReady: true } });
     const { body } = await post('release', release.version, {}).expect(409);
     expect((body as { detail: string }).detail).toContain('1 student still has time');
+  });
+
+  it('does not wait for somebody who has left the course', async () => {
+    const { setId, client, student, later } = await closedSet();
+    harness.db
+      .update(memberships)
+      .set({ removedAt: harness.clock.now() })
+      .where(eq(memberships.id, student.membershipId))
+      .run();
+    const { body } = await client.lead.get(`/api/sets/${setId}/release`).expect(200);
+    expect(body).toMatchObject({ ready: true, stillOpen: null, students: 1 });
+    expect(JSON.stringify(body)).not.toContain(String(later));
   });
 
   it('or leaves out those who still have time, until a second release', async () => {

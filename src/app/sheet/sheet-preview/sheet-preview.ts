@@ -1,4 +1,4 @@
-import { ChangeDetectionStrategy, Component, computed, effect, inject, input } from '@angular/core';
+import { ChangeDetectionStrategy, Component, computed, effect, inject, input, untracked } from '@angular/core';
 import { rxResource } from '@angular/core/rxjs-interop';
 import { RouterLink } from '@angular/router';
 import { EMPTY } from 'rxjs';
@@ -119,15 +119,14 @@ export default class SheetPreview {
   protected readonly problems = computed(() => {
     const sheet = this.sheet();
     if (!sheet) return [];
-    return new SheetKeeper(
-      { ...sheet, state: 'closed' },
-      {
-        copies: new KeptCopies('preview', sheet.setId),
-        save: () => EMPTY,
-        saveInPassing: () => undefined,
-        closed: () => undefined,
-      },
-    ).problems;
+    const place = {
+      copies: new KeptCopies('preview', sheet.setId),
+      save: () => EMPTY,
+      saveInPassing: () => undefined,
+      closed: () => undefined,
+    };
+    // A keeper sets signals of its own while it is made.
+    return untracked(() => new SheetKeeper({ ...sheet, state: 'closed' }, place).problems);
   });
 
   constructor() {
