@@ -43,6 +43,8 @@ test('every page of a lead', async ({ page }) => {
     at('results'),
     at(`results/${setIds[1] ?? ''}`),
     at(`results/${setIds[2] ?? ''}/release`),
+    at('queries'),
+    at('receipts'),
     at('people'),
     at('people/import'),
     at('people/course'),
@@ -58,7 +60,7 @@ test('every page of a marker', async ({ page }) => {
   await page.context().clearCookies();
   await signIn(page, people.marker);
   const at = (path: string) => `/courses/${courseId}/${path}`;
-  await walk(page, [at('desk'), at('problems'), at('marking'), at(`marking/${pileId}`)]);
+  await walk(page, [at('desk'), at('problems'), at('marking'), at(`marking/${pileId}`), at('queries'), at('receipts')]);
 });
 
 test('every page of a student', async ({ page }) => {

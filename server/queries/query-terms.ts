@@ -62,7 +62,7 @@ export function changeClosing(
   tx: Queryable,
   setId: string,
   closesAt: number | null,
-  by: { readonly user: SignedIn; readonly version: number; readonly now: number },
+  by: { readonly user: Pick<SignedIn, 'id' | 'name'>; readonly version: number; readonly now: number },
 ): QuerySet {
   const { set } = findSet(tx, setId);
   if (set.version !== by.version)

@@ -48,6 +48,7 @@ export default class QueryPage {
   protected readonly history = computed(() =>
     [...(this.query()?.marks ?? [])].reverse().map((mark) => ({
       ...mark,
+      what: mark.replacesId === null ? `${mark.kind} mark by` : 'changed by',
       who: mark.marker ?? 'the check',
       when: this.moment(mark.at),
     })),
