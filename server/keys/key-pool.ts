@@ -2,10 +2,9 @@ import { availableParallelism } from 'node:os';
 import { MessageChannel } from 'node:worker_threads';
 import { Piscina } from 'piscina';
 import type { KeyOutcome, KeyRequest } from './key-task';
+import { longestEvaluation as longest, tooLong } from './limits';
 import { workerFile } from './worker-file';
 
-/** Longest time for one evaluation, in milliseconds. */
-const longest = 2_000;
 /** A batch may take as long as one runaway key and this much for each of the others. */
 const forEach = 10;
 const batchSize = 64;
@@ -19,9 +18,6 @@ export interface KeyPool {
   close(): Promise<void>;
 }
 
-const tooLong: KeyOutcome = {
-  fault: { message: 'This key takes longer than two seconds; simplify it, or use smaller numbers.' },
-};
 const tooLarge: KeyOutcome = {
   fault: { message: 'This key needs more memory than it may have; use smaller numbers.' },
 };

@@ -2,7 +2,9 @@ import { createInterface } from 'node:readline';
 import { z } from 'zod';
 import { defaultConvention } from '../optics/convention';
 import { KeyEvaluator } from './key-task';
+import { longestEvaluation, tooLong } from './limits';
 import type { GivenValue } from './value';
+import { withinTime } from './within-time';
 
 const line = z.object({
   expression: z.string(),
@@ -47,5 +49,35 @@ function withoutGaps<T extends object>(parts: T): { [K in keyof T]?: Exclude<T[K
   return Object.fromEntries(Object.entries(parts).filter(([, value]) => value !== undefined)) as never;
 }
 
-for await (const text of createInterface({ input: process.stdin, crlfDelay: Infinity }))
-  if (text.trim() !== '') process.stdout.write(`${answer(text)}\n`);
+/** A watch is set for all lines that begin within so many milliseconds: one for each would take longer than most keys. */
+const together = 50;
+
+/** Answers lines in their order; one that runs away says so, and the next are answered. */
+function answerAll(lines: readonly string[]): string {
+  const answers: string[] = [];
+  while (answers.length < lines.length) {
+    const inTime = withinTime(longestEvaluation + together, () => {
+      const began = performance.now();
+      do answers.push(answer(lines[answers.length] ?? ''));
+      while (answers.length < lines.length && performance.now() - began < together);
+    });
+    if (!inTime) answers.push(JSON.stringify({ error: tooLong.fault.message }));
+  }
+  return answers.map((each) => `${each}\n`).join('');
+}
+
+let waiting: string[] = [];
+
+function answerWaiting(): void {
+  const lines = waiting;
+  waiting = [];
+  if (lines.length > 0) process.stdout.write(answerAll(lines));
+}
+
+createInterface({ input: process.stdin, crlfDelay: Infinity })
+  .on('line', (text) => {
+    if (text.trim() === '') return;
+    if (waiting.length === 0) setImmediate(answerWaiting);
+    waiting.push(text);
+  })
+  .on('close', answerWaiting);
