@@ -299,7 +299,7 @@ function demandUnchanged(
     if (!hasChanged) return { from: line - 1, to: line };
   } else if (anchor.kind === 'part') {
     const lines = partLines(anchor.partId, draft);
-    if (lines && lines.text === instead) return lines;
+    if (lines !== null && lines.text === instead) return lines;
   }
   throw conflict(
     'The text has changed since this wording was suggested, so it is not put in its place. Copy what you need of it.',
