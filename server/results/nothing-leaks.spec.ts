@@ -1,6 +1,17 @@
 import { eq } from 'drizzle-orm';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
-import { audits, correctionChanges, corrections, jobs, marks, revisions, setProblems, sets } from '@drizzle/schema';
+import {
+  audits,
+  correctionChanges,
+  corrections,
+  jobs,
+  marks,
+  revisions,
+  rulingAnswers,
+  rulings,
+  setProblems,
+  sets,
+} from '@drizzle/schema';
 import type { Held } from '@shared/marking';
 import { setStageNames, type SetStage } from '@shared/primitives';
 import type { ProblemContent } from '@shared/problems';
@@ -29,6 +40,8 @@ const planted = {
   correctionReason: 'planted reason of a correction',
   correctionNote: 'planted note to students',
   auditFinding: 'planted finding of an audit',
+  question: 'planted question about a ruling',
+  decision: 'planted decision of a ruling',
 } as const;
 
 const secrets = Object.values(planted);
@@ -91,7 +104,28 @@ function plantedSet(stage: SetStage) {
     values: [plantedCheck('4.1'), plantedCheck(planted.otherAnswer)],
   });
   const marker = harness.makeMember(courseId, 'marker', { name: planted.marker });
+  plantRuling(built.pileId, built.handedIn[0]?.answerId ?? '', marker.membershipId);
   return { ...built, marker, ...plantedCorrection(built) };
+}
+
+/** A ruling on the part, about the answer of a student who looks around. */
+function plantRuling(pileId: string, answerId: string, byId: string): void {
+  const { db, clock } = harness;
+  const [rulingId, at] = [newId(), clock.now()];
+  db.insert(rulings)
+    .values({
+      id: rulingId,
+      pileId,
+      question: planted.question,
+      askedById: byId,
+      askedAt: at,
+      decision: planted.decision,
+      decidedById: byId,
+      decidedAt: at,
+      idempotencyKey: newId(),
+    })
+    .run();
+  db.insert(rulingAnswers).values({ id: newId(), rulingId, answerId, byId, at }).run();
 }
 
 /** A correction that was made of the set's problem, an audit of it, and the job behind both. */

@@ -31,6 +31,10 @@ const noResidual = undefinedBecause(
   'The markers differ by a constant or not at all, so there is no residual to go by.',
 );
 
+const tooContrary = undefinedBecause(
+  'The markers are too contrary, or their answers too few, for an interval to mean anything.',
+);
+
 type Crossed = readonly (readonly number[])[];
 
 /** The mean squares of marks that each marker gave to each answer. @throws RangeError where a row has another length */
@@ -63,7 +67,8 @@ export function meanSquares(marks: Crossed): MeanSquares {
 /**
  * ICC(2,1): markers are a sample of those who might mark; a severe marker counts as disagreement (absolute agreement).
  * (MSR − MSE) / (MSR + (k − 1)·MSE + k·(MSC − MSE)/n). P. E. Shrout, J. L. Fleiss, Psychol. Bull. 86 (1979) 420–428; the
- * interval by Satterthwaite's degrees of freedom as there.
+ * interval by Satterthwaite's degrees of freedom as there; with less than one degree, which negative coefficients of few
+ * answers can lead to, it would not even hold the coefficient, and is undefined.
  *
  * @param marks a row an answer, a column a marker; every marker marked every answer
  */
@@ -78,7 +83,7 @@ export function intraclassAbsolute(marks: Crossed): Intraclass {
   const f = columns / residual;
   const a = n * (1 + (k - 1) * r) - k * r;
   const degrees = ((k - 1) * (n - 1) * (k * r * f + a) ** 2) / ((n - 1) * k ** 2 * r ** 2 * f ** 2 + a ** 2);
-  if (!(degrees > 0)) return { single, average, interval: noFraction };
+  if (!(degrees >= 1)) return { single, average, interval: tooContrary };
   const low = quantileOfF(0.975, n - 1, degrees);
   const high = quantileOfF(0.975, degrees, n - 1);
   const rest = k * columns + (k * n - k - n) * residual;

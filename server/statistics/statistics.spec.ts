@@ -135,7 +135,17 @@ describe('intraclass correlation', () => {
           expect(interval.high).toBeGreaterThanOrEqual(icc - 1e-9);
         }
       }),
+      { numRuns: 1000 },
     );
+  });
+
+  it('has no interval where less than one degree of freedom is left', () => {
+    const { single, interval } = intraclassAbsolute([
+      [6, 1],
+      [3, 3],
+    ]);
+    expect(value(single)).toBeCloseTo(-12 / 13, 12);
+    expect(reason(interval)).toMatch(/too contrary/);
   });
 
   it('is undefined where every mark is the same, or nothing is crossed', () => {
