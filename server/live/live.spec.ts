@@ -2,12 +2,13 @@ import { createServer, type Server } from 'node:http';
 import type { AddressInfo } from 'node:net';
 import { io, type Socket } from 'socket.io-client';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
-import { holds } from '@drizzle/schema';
+import { holds, problems } from '@drizzle/schema';
 import { livePath, type ClientEvents, type Presence, type ServerEvents, type Watching } from '@shared/live';
 import { newId } from '../http/new-id';
 import { buildPile } from '../marking/testing/build-pile';
 import { createHarness, type Harness } from '../testing/harness';
-import { pileMarksRoom, pileRoom } from './rooms';
+import { buildDraft } from '../testing/build-draft';
+import { pileMarksRoom, pileRoom, problemRoom } from './rooms';
 
 type Page = Socket<ServerEvents, ClientEvents>;
 
@@ -143,5 +144,31 @@ describe('the live connection', () => {
     page.emit('watchPile', { pileId: 'x' } as never, () => undefined);
     await gone;
     expect((await open(harness.makeMember(courseId, 'marker'))).connected).toBe(true);
+  });
+});
+
+describe('watching a problem', () => {
+  it('lets in those who may read it, and tells them of its review', async () => {
+    const lead = harness.makeMember(courseId, 'lead');
+    const problemId = newId();
+    const draft = buildDraft();
+    const at = harness.clock.now();
+    const row = {
+      id: problemId,
+      authorId: lead.id,
+      status: 'in review',
+      draft,
+      draftSavedAt: at,
+      createdAt: at,
+    } as const;
+    harness.db.insert(problems).values(row).run();
+    const watchProblem = (page: Page) =>
+      new Promise<Watching>((resolve) => page.emit('watchProblem', { problemId }, resolve));
+    const [reader, stranger] = [await open(lead), await open(harness.makeMember(courseId, 'marker'))];
+    expect((await watchProblem(reader)).ok).toBe(true);
+    expect((await watchProblem(stranger)).ok).toBe(false);
+    const told = new Promise((resolve) => reader.once('reviewChanged', resolve));
+    harness.context.live.emit([problemRoom(problemId)], 'reviewChanged', { problemId });
+    expect(await told).toEqual({ problemId });
   });
 });
