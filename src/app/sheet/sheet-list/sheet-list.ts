@@ -70,6 +70,10 @@ export default class SheetList {
       return submission.by === 'closing' ? `${count}, handed in when it closed.` : `${count}, submitted.`;
     }
     if (!submission) return `${count}, not submitted.`;
+    if (submission.by === 'closing')
+      return changedSince
+        ? `${count}, changed since it was handed in at the closing time.`
+        : `${count}, handed in at the closing time.`;
     return changedSince ? `${count}, changed since you submitted.` : `${count}, submitted.`;
   }
 }

@@ -35,7 +35,7 @@ import { SheetPart } from '../sheet-part/sheet-part';
             their answers are not shown.
           </p>
           @if (its?.coverText) {
-            <app-formula-text [text]="its?.coverText ?? ''" />
+            <app-formula-text class="read" [text]="its?.coverText ?? ''" />
           }
         </header>
         @for (each of problems(); track each.problem.setProblemId) {
@@ -43,7 +43,7 @@ import { SheetPart } from '../sheet-part/sheet-part';
             <p class="caption quiet">Problem {{ each.problem.position }}, {{ each.problem.marks }} marks</p>
             <h2>{{ each.problem.title }}</h2>
             @if (each.problem.stem) {
-              <app-formula-text [text]="each.problem.stem" [givens]="each.problem.givens" />
+              <app-formula-text class="read" [text]="each.problem.stem" [givens]="each.problem.givens" />
             }
             @for (data of each.problem.data; track data.name) {
               <app-counts-table [name]="data.name" [symbol]="data.symbol" [counts]="data.counts" />
@@ -82,6 +82,19 @@ import { SheetPart } from '../sheet-part/sheet-part';
 
     section {
       padding-top: 24px;
+    }
+
+    h1 {
+      font: 600 26px/34px var(--read);
+    }
+
+    h2 {
+      margin: 2px 0 10px;
+      font: 600 22px/28px var(--read);
+    }
+
+    .read {
+      display: block;
     }
 
     @media (max-width: 600px) {
