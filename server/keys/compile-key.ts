@@ -71,6 +71,9 @@ export function compileKey(expression: string, options: CompileOptions): Compile
     );
   if (source.depth > deepestNesting)
     throw new KeyError(`Brackets are nested more than ${String(deepestNesting)} deep.`, null);
+  const reserved = options.names.find((name) => reservedNames.has(name));
+  if (reserved !== undefined)
+    throw new KeyError(`“${reserved}” is a constant of the language; no given can have this name.`, null);
   const compiler = new Compiler(source, new Set(options.names));
   const step = compiler.compile(parse(expression, source));
   const convention = options.convention ?? defaultConvention;
@@ -170,7 +173,7 @@ class Compiler {
 
   private symbol(name: string): Step {
     const place = this.place(name);
-    if (this.names.has(name) && !reservedNames.has(name)) {
+    if (this.names.has(name)) {
       this.uses.add(name);
       return ({ values }) => {
         const value = values.get(name);

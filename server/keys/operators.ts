@@ -2,7 +2,7 @@ import { addStates, divideState, multiplyState, subtractStates } from '../optics
 import { isState } from '../optics/state';
 import { mathematics as m } from './mathematics';
 import { plainFunctions, Refusal } from './plain-functions';
-import { isComplex, kindOf, type Value } from './value';
+import { isComplex, isUnit, kindOf, type Value } from './value';
 
 type Operator = (left: Value, right: Value) => Value;
 type UnaryOperator = (operand: Value) => Value;
@@ -51,7 +51,13 @@ export const binaryOperators: Readonly<Record<string, Operator>> = {
   largerEq: (left, right) => refuseStates(from(m.largerEq), '>=', left, right),
   equal: (left, right) => refuseStates(from(m.equal), '==', left, right),
   unequal: (left, right) => refuseStates(from(m.unequal), '!=', left, right),
-  to: (left, right) => refuseStates(from(m.to), 'to', left, right),
+  to: (left, right) => {
+    // Values are given in SI whatever they are converted to; what is left to do is to compare dimensions.
+    if (!isUnit(left) || !isUnit(right))
+      throw new Refusal('`to` stands between a quantity and a unit, such as 3 MHz to Hz');
+    if (!left.equalBase(right)) throw new Refusal('`to`: the units of both sides do not match');
+    return left;
+  },
   and: (left, right) => truth(left, 'and') && truth(right, 'and'),
   or: (left, right) => truth(left, 'or') || truth(right, 'or'),
 };
@@ -71,9 +77,13 @@ export const unaryOperators: Readonly<Record<string, UnaryOperator>> = {
   not: (operand) => !truth(operand, 'not'),
 };
 
+const needsSameUnits: ReadonlySet<string> = new Set(['+', '-', '<', '<=', '>', '>=', '==', '!=']);
+
 function refuseStates(act: Operator, sign: string, left: Value, right: Value): Value {
   if (isState(left) || isState(right))
     throw new Refusal(`\`${sign}\` is not defined between ${kindOf(left)} and ${kindOf(right)}`);
+  if (isUnit(left) !== isUnit(right) && needsSameUnits.has(sign))
+    throw new Refusal(`\`${sign}\` needs the same units on both sides, got ${kindOf(left)} and ${kindOf(right)}`);
   return act(left, right);
 }
 

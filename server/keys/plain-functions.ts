@@ -35,7 +35,19 @@ function combinations(n: Value, k: Value): Value {
   if (typeof n !== 'number' || typeof k !== 'number' || !Number.isInteger(n) || !Number.isInteger(k) || k < 0 || k > n)
     throw new Refusal('takes whole numbers n and k with 0 ≤ k ≤ n');
   if (Math.min(k, n - k) > 10_000) throw new Refusal('takes k or n − k of at most 10,000');
-  return m.combinations(n, k);
+  const ways = Number(binomialCoefficient(BigInt(n), BigInt(Math.min(k, n - k))));
+  if (!Number.isFinite(ways)) throw new Refusal('of these is beyond the range of numbers');
+  return ways;
+}
+
+/** More than any number can hold. */
+const beyondNumbers = 1n << 1100n;
+
+/** n!/(k!(n − k)!), to the last digit; not followed further where it is beyond all numbers. */
+function binomialCoefficient(n: bigint, k: bigint): bigint {
+  let ways = 1n;
+  for (let taken = 1n; taken <= k && ways < beyondNumbers; taken++) ways = (ways * (n - k + taken)) / taken;
+  return ways;
 }
 
 /** How many places `round` keeps: not more than numbers have. */
