@@ -4,7 +4,11 @@ import * as z from 'zod';
 export const identifier = z.uuid();
 
 /** UTC milliseconds. */
-export const instant = z.number().int();
+export const instant = z
+  .number()
+  .int()
+  .min(0, 'Give a time after 1970.')
+  .max(7_258_118_400_000, 'Give a time before 2200.');
 
 /** The version of an editable thing, counted from 1; it travels as `ETag` and `If-Match` too. */
 export const versionNumber = z.number().int().min(1);
@@ -39,7 +43,7 @@ export const convention = z.object({
   vacuumVariance: z.union([z.literal(0.25), z.literal(0.5), z.literal(1)]),
   squeezingSign: z.union([z.literal(1), z.literal(-1)]),
   /** Radians: π/2 or 0. */
-  splitterPhase: z.number(),
+  splitterPhase: z.union([z.literal(0), z.literal(Math.PI / 2)]),
 });
 export type Convention = z.infer<typeof convention>;
 

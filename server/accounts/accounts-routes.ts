@@ -8,7 +8,7 @@ import { newId } from '../http/new-id';
 import type { Serve } from '../http/serve';
 import { enter } from '../record/enter';
 import { isCommonPassword } from './common-passwords';
-import { countFailure, forgetFailures, refuseWhileLocked } from './guesses';
+import { countGuess, forgiveGuess } from './guesses';
 import { sendReset } from '../mail/invitations';
 import { hashPassword, passwordFits } from './secrets';
 import { presentSession } from './present-session';
@@ -31,14 +31,12 @@ export function addAccountRoutes(serve: Serve, context: Context, sessions: Sessi
 
   serve.open(accountRoutes.signIn, async ({ body, request, response }) => {
     const address = request.ip ?? '';
-    refuseWhileLocked(db, body.email, address, clock.now());
+    countGuess(db, body.email, address, clock.now());
     const found = db.select().from(users).where(eq(users.email, body.email)).get();
     const fits = await passwordFits(found?.passwordHash ?? null, body.password);
-    if (!found || !fits) {
-      countFailure(db, body.email, address, clock.now());
+    if (!found || !fits)
       throw notSignedIn('E-mail and password do not belong together. Look at both, or set a new password.');
-    }
-    forgetFailures(db, body.email);
+    forgiveGuess(db, body.email, address);
     enter(db, {
       at: clock.now(),
       actorId: found.id,
@@ -67,8 +65,7 @@ export function addAccountRoutes(serve: Serve, context: Context, sessions: Sessi
   serve.open(accountRoutes.forgotPassword, ({ body, request }) => {
     // Asking is counted like a guess, so that nobody can be buried in letters; the answer never tells.
     const subject = `reset:${body.email}`;
-    refuseWhileLocked(db, subject, request.ip ?? '', clock.now());
-    countFailure(db, subject, request.ip ?? '', clock.now());
+    countGuess(db, subject, request.ip ?? '', clock.now());
     const found = db.select().from(users).where(eq(users.email, body.email)).get();
     if (found) sendReset(db, found, clock.now());
     return {};
@@ -120,11 +117,10 @@ export function addAccountRoutes(serve: Serve, context: Context, sessions: Sessi
   serve(accountRoutes.changePassword, async ({ user, body, request }) => {
     const mine = db.select().from(users).where(eq(users.id, user.id)).get();
     const address = request.ip ?? '';
-    refuseWhileLocked(db, mine?.email ?? '', address, clock.now());
-    if (!(await passwordFits(mine?.passwordHash ?? null, body.current))) {
-      countFailure(db, mine?.email ?? '', address, clock.now());
+    countGuess(db, mine?.email ?? '', address, clock.now());
+    if (!(await passwordFits(mine?.passwordHash ?? null, body.current)))
       throw invalidField(['current'], 'This is not your present password.');
-    }
+    forgiveGuess(db, mine?.email ?? '', address);
     refuseCommon(body.password);
     const passwordHash = await hashPassword(body.password);
     const ended = db.transaction(

@@ -1,5 +1,5 @@
-import { inArray, lt } from 'drizzle-orm';
-import type { Queryable } from '@drizzle/client';
+import { eq, inArray, lt, sql } from 'drizzle-orm';
+import type { Database, Queryable } from '@drizzle/client';
 import { guesses } from '@drizzle/schema';
 import { tooManyGuesses } from '../http/errors';
 import { hashSecret } from './secrets';
@@ -18,44 +18,48 @@ function subjectsOf(account: string, address: string) {
   return { account: hashSecret(`account:${account}`), address: hashSecret(`address:${address}`) };
 }
 
-/** @throws RequestError 429 while the account or the address is locked */
-export function refuseWhileLocked(tx: Queryable, account: string, address: string, now: number): void {
-  const subjects = subjectsOf(account, address);
-  const rows = tx
-    .select()
-    .from(guesses)
-    .where(inArray(guesses.subject, Object.values(subjects)))
-    .all();
-  const until = Math.max(0, ...rows.map((row) => row.lockedUntil ?? 0));
-  if (until > now) throw tooManyGuesses(Math.ceil((until - now) / 1000));
+/**
+ * Counts a guess by account and by address before it is looked at, so that guesses at the same moment are counted too, and
+ * locks after too many. A right one is taken back with `forgiveGuess`.
+ *
+ * @throws RequestError 429 while the account or the address is locked
+ */
+export function countGuess(db: Database, account: string, address: string, now: number): void {
+  db.transaction(
+    (tx) => {
+      const subjects = subjectsOf(account, address);
+      const rows = tx
+        .select()
+        .from(guesses)
+        .where(inArray(guesses.subject, Object.values(subjects)))
+        .all();
+      const until = Math.max(0, ...rows.map((row) => row.lockedUntil ?? 0));
+      if (until > now) throw tooManyGuesses(Math.ceil((until - now) / 1000));
+      for (const kind of kinds) {
+        const limit = limits[kind];
+        const subject = subjects[kind];
+        const row = rows.find((each) => each.subject === subject);
+        const fresh = !row || row.since < now - limit.window;
+        const failures = fresh ? 1 : row.failures + 1;
+        const lockedUntil = failures >= limit.failures ? now + limit.lock : null;
+        const values = { failures: lockedUntil ? 0 : failures, since: fresh ? now : row.since, lockedUntil };
+        tx.insert(guesses)
+          .values({ subject, ...values })
+          .onConflictDoUpdate({ target: guesses.subject, set: values })
+          .run();
+      }
+    },
+    { behavior: 'immediate' },
+  );
 }
 
-/** Counts a failed guess by account and by address, and locks where there were too many. */
-export function countFailure(tx: Queryable, account: string, address: string, now: number): void {
+/** After a right password: the account's guesses are forgotten, and the address has one fewer. */
+export function forgiveGuess(tx: Queryable, account: string, address: string): void {
   const subjects = subjectsOf(account, address);
-  for (const kind of kinds) {
-    const limit = limits[kind];
-    const subject = subjects[kind];
-    const row = tx
-      .select()
-      .from(guesses)
-      .where(inArray(guesses.subject, [subject]))
-      .get();
-    const fresh = !row || row.since < now - limit.window;
-    const failures = fresh ? 1 : row.failures + 1;
-    const lockedUntil = failures >= limit.failures ? now + limit.lock : null;
-    const values = { failures: lockedUntil ? 0 : failures, since: fresh ? now : row.since, lockedUntil };
-    tx.insert(guesses)
-      .values({ subject, ...values })
-      .onConflictDoUpdate({ target: guesses.subject, set: values })
-      .run();
-  }
-}
-
-/** Forgets the failures of an account after a right password. */
-export function forgetFailures(tx: Queryable, account: string): void {
-  tx.delete(guesses)
-    .where(inArray(guesses.subject, [hashSecret(`account:${account}`)]))
+  tx.delete(guesses).where(eq(guesses.subject, subjects.account)).run();
+  tx.update(guesses)
+    .set({ failures: sql`max(0, ${guesses.failures} - 1)` })
+    .where(eq(guesses.subject, subjects.address))
     .run();
 }
 

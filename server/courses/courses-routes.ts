@@ -5,13 +5,13 @@ import { courses, memberships } from '@drizzle/schema';
 import { can, demand, type SignedIn } from '../access/policy';
 import { linkWith, makeToken } from '../accounts/tokens';
 import type { Context } from '../context';
-import { conflict, invalidInput, notFound, stale } from '../http/errors';
+import { conflict, invalidInput, notAllowed, notFound, stale } from '../http/errors';
 import { newId } from '../http/new-id';
 import type { Serve } from '../http/serve';
 import { invite } from '../mail/invitations';
 import { enter } from '../record/enter';
 import { conventionOf } from './convention';
-import { benchTokens, findMember, joinCourse, listMembers, presentMember } from './members';
+import { benchTokens, findMember, joinCourse, listMembers, mayHandOverLink, presentMember } from './members';
 import { readRoster } from './roster';
 
 /** Courses and their people. */
@@ -173,6 +173,10 @@ export function addCourseRoutes(serve: Serve, context: Context): void {
       throw conflict(`${row.user.name} has a password already and can set a new one from the sign-in page.`);
     const course = findCourse(db, params.courseId);
     const byMail = config.smtpUrl !== undefined;
+    if (!byMail && !mayHandOverLink(db, user, row.user))
+      throw notAllowed(
+        `${row.user.name} belongs to another course too, or looks after this installation. An administrator can hand over the link.`,
+      );
     enterCourse(
       db,
       user,

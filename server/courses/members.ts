@@ -3,6 +3,7 @@ import type { Queryable } from '@drizzle/client';
 import { memberships, users } from '@drizzle/schema';
 import type { Member } from '@shared/courses';
 import type { Role } from '@shared/primitives';
+import type { SignedIn } from '../access/policy';
 import { conflict, notFound } from '../http/errors';
 import { newId } from '../http/new-id';
 
@@ -132,4 +133,23 @@ export function presentMember(row: {
     hue: row.membership.hue,
     hasPassword: row.user.passwordHash !== null,
   };
+}
+
+/**
+ * Whether somebody may be given the link with which another person sets their first password: who has it can become that
+ * person, in every course. A lead may for people who are in no course but theirs, and never for an administrator.
+ */
+export function mayHandOverLink(
+  tx: Queryable,
+  by: SignedIn,
+  account: Pick<typeof users.$inferSelect, 'id' | 'isAdministrator'>,
+): boolean {
+  if (by.isAdministrator) return true;
+  if (account.isAdministrator) return false;
+  const places = tx
+    .select({ courseId: memberships.courseId })
+    .from(memberships)
+    .where(eq(memberships.userId, account.id))
+    .all();
+  return places.every(({ courseId }) => by.memberships.get(courseId)?.role === 'lead');
 }

@@ -17,7 +17,11 @@ const newsLasts = 14 * 24 * 3_600_000;
 /** The desk of one person in one course. */
 export function presentDesk(tx: Queryable, member: Membership, now: number): Desk {
   const weighed = weighedSets(tx, member.courseId);
-  const needs = [...needsFor[member.role](tx, member, weighed, now), ...reviewNeeds(tx, member), ...queryNeeds(tx, member)];
+  const needs = [
+    ...needsFor[member.role](tx, member, weighed, now),
+    ...reviewNeeds(tx, member),
+    ...queryNeeds(tx, member),
+  ];
   // What has no date needs somebody now; the others by their date.
   const inOrder = [...needs].sort((a, b) => (a.due ?? 0) - (b.due ?? 0));
   const shown = member.role === 'student' ? weighed.filter(({ row }) => isStudents(row.stage)) : weighed;
@@ -224,8 +228,15 @@ function presentSet(tx: Queryable, { row, reached }: WeighedSet, member: Members
   // A student's line is their own: open as long as it is open to them, released once it is to them.
   const { isOpen, dueAt } = ownTimes(tx, row, member.id, now);
   const script = scriptOf(tx, row.id, member.id);
-  const stage = isOpen ? 'open' : isReleasedTo(row, script) && row.stage !== 'archived' ? 'released' : row.stage;
-  const own = reached.filter((each) => !isOpen || setStageNames.indexOf(each.stage) <= setStageNames.indexOf('open'));
+  // How far the team is with marking is not theirs to know.
+  const behindTheScenes = ['draft', 'review', 'marking', 'moderation'];
+  const closed = behindTheScenes.includes(row.stage) ? 'closed' : row.stage;
+  const stage = isOpen ? 'open' : isReleasedTo(row, script) && row.stage !== 'archived' ? 'released' : closed;
+  const own = reached.filter(
+    (each) =>
+      !behindTheScenes.includes(each.stage) &&
+      (!isOpen || setStageNames.indexOf(each.stage) <= setStageNames.indexOf('open')),
+  );
   return {
     setId,
     number,

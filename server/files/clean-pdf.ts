@@ -1,5 +1,4 @@
 import { PDFArray, PDFDict, PDFDocument, PDFName, PDFStream, type PDFObject } from 'pdf-lib';
-import { wrongMediaType } from '../http/errors';
 import type { CleanFile } from './clean-file';
 
 /** Names in a PDF that make it do something, or carry other files. */
@@ -15,23 +14,30 @@ const actingNames = [
   'ImportData',
 ];
 
+/** A PDF as it can be kept, or why it cannot. */
+export type CleanedPdf = CleanFile | { readonly refused: string };
+
+export const brokenPdf = 'The PDF is broken and cannot be opened. Export or print it again, and add that.';
+
 /**
- * A PDF that opens, with a sensible number of pages and nothing that acts, without the names of its maker and program.
- *
- * @throws RequestError 415 where it is encrypted, broken, too long, or carries scripts or other files
+ * A PDF that opens, with a sensible number of pages and nothing that acts, without the names of its maker and program; or
+ * a sentence where it is encrypted, broken, too long, or carries scripts or other files. A small file can unfold into one
+ * that takes minutes: `cleanPdfApart` bounds it.
  */
-export async function cleanPdf(upload: Uint8Array, mostPages: number): Promise<CleanFile> {
+export async function cleanPdf(upload: Uint8Array, mostPages: number): Promise<CleanedPdf> {
   const document = await open(upload);
+  if (typeof document === 'string') return { refused: document };
   if (carriesScripts(document))
-    throw wrongMediaType(
-      'The PDF carries a script, a form or another file, which is not taken. Print it to a new PDF, and add that.',
-    );
+    return {
+      refused:
+        'The PDF carries a script, a form or another file, which is not taken. Print it to a new PDF, and add that.',
+    };
   const pageCount = document.getPageCount();
-  if (pageCount === 0) throw wrongMediaType('The PDF has no pages.');
+  if (pageCount === 0) return { refused: 'The PDF has no pages.' };
   if (pageCount > mostPages)
-    throw wrongMediaType(
-      `The PDF has ${String(pageCount)} pages; at most ${String(mostPages)} are taken. Leave out what is not needed.`,
-    );
+    return {
+      refused: `The PDF has ${String(pageCount)} pages; at most ${String(mostPages)} are taken. Leave out what is not needed.`,
+    };
   document.context.trailerInfo.Info = undefined;
   document.catalog.delete(PDFName.of('Metadata'));
   document.catalog.delete(PDFName.of('OpenAction'));
@@ -40,25 +46,22 @@ export async function cleanPdf(upload: Uint8Array, mostPages: number): Promise<C
     return { bytes: await document.save({ addDefaultPage: false }), mediaType: 'application/pdf', pageCount };
   } catch {
     // Whatever stands in it that cannot be written again.
-    throw wrongMediaType(broken);
+    return { refused: brokenPdf };
   }
 }
 
-const broken = 'The PDF is broken and cannot be opened. Export or print it again, and add that.';
-
-async function open(upload: Uint8Array): Promise<PDFDocument> {
+/** The document, or why it cannot be opened. */
+async function open(upload: Uint8Array): Promise<PDFDocument | string> {
   try {
     const document = await PDFDocument.load(upload, { updateMetadata: false, throwOnInvalidObject: true });
     // A file without a page tree loads, but falls apart here.
     document.getPageCount();
     return document;
   } catch (error) {
-    throw wrongMediaType(
-      // Its class does not survive the library's translation to older JavaScript; its words do.
-      error instanceof Error && error.message.includes('is encrypted')
-        ? 'The PDF is protected by a password. Save it without one, and add that.'
-        : broken,
-    );
+    // Its class does not survive the library's translation to older JavaScript; its words do.
+    return error instanceof Error && error.message.includes('is encrypted')
+      ? 'The PDF is protected by a password. Save it without one, and add that.'
+      : brokenPdf;
   }
 }
 

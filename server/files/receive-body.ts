@@ -14,6 +14,8 @@ export async function receiveBody(request: Request, limit: number): Promise<Buff
     request.resume();
     throw refusal();
   }
+  // What called itself JSON was read as such already.
+  if (request.readableEnded) throw invalidField(['file'], 'Send the file itself, with its own media type.');
   const pieces: Buffer[] = [];
   let size = 0;
   await new Promise<void>((resolve, reject) => {

@@ -2,7 +2,7 @@ import { fileTypeFromBuffer } from 'file-type';
 import { mostPages } from '@shared/scripts';
 import { wrongMediaType } from '../http/errors';
 import { cleanImage } from './clean-image';
-import { cleanPdf } from './clean-pdf';
+import { cleanPdfApart } from './clean-pdf-apart';
 import type { CleanFile } from './clean-file';
 
 /**
@@ -15,7 +15,7 @@ export async function workedPageFile(upload: Buffer): Promise<CleanFile> {
   const kind = (await fileTypeFromBuffer(upload))?.mime ?? '';
   switch (kind) {
     case 'application/pdf':
-      return cleanPdf(upload, mostPages);
+      return cleanPdfApart(upload, mostPages);
     case 'image/jpeg':
     case 'image/png':
     case 'image/webp':

@@ -138,7 +138,7 @@ function g2Estimate(counts: Value | undefined): number {
   const odd = list.find((each) => !Number.isInteger(each) || each < 0);
   if (odd !== undefined) throw new Refusal(`counts must be whole numbers from 0, got ${String(odd)}`);
   const mean = list.reduce((sum, each) => sum + each, 0) / list.length;
-  if (!(mean > 0)) throw new Refusal('of counts that are all 0 is undefined');
+  if (!(mean > 0)) throw new Refusal('is not defined for counts that are all 0');
   return list.reduce((sum, each) => sum + each * (each - 1), 0) / list.length / mean ** 2;
 }
 

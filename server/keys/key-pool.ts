@@ -28,7 +28,7 @@ export function createKeyPool({ size = availableParallelism() }: { readonly size
   let closed = false;
 
   const pool = (): Promise<Piscina> =>
-    (starting ??= workerFile().then(
+    (starting ??= workerFile('key-worker', import.meta.url).then(
       (filename) =>
         new Piscina({
           filename,

@@ -3,13 +3,18 @@ import { existsSync, mkdirSync, renameSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 
-/** The built worker beside the built server. Tests and tools that run from source build it into a cache first. */
-export async function workerFile(): Promise<string> {
-  const built = fileURLToPath(new URL('./key-worker.mjs', import.meta.url));
+/**
+ * The built worker beside the built server. Tests and tools that run from source build it into a cache first.
+ *
+ * @param name of the source without its ending, for example `key-worker`
+ * @param beside address of the module that lies beside it
+ */
+export async function workerFile(name: string, beside: string): Promise<string> {
+  const built = fileURLToPath(new URL(`./${name}.mjs`, beside));
   if (existsSync(built)) return built;
   const { build } = await import('esbuild');
   const { outputFiles } = await build({
-    entryPoints: [fileURLToPath(new URL('./key-worker.ts', import.meta.url))],
+    entryPoints: [fileURLToPath(new URL(`./${name}.ts`, beside))],
     bundle: true,
     packages: 'external',
     platform: 'node',
@@ -20,7 +25,7 @@ export async function workerFile(): Promise<string> {
   const code = outputFiles[0]?.contents ?? new Uint8Array();
   // Below node_modules, so that the worker finds the packages; named by content, so that no run sees another's code.
   const folder = join(process.cwd(), 'node_modules', '.cache', 'halfsilver');
-  const file = join(folder, `key-worker-${createHash('sha256').update(code).digest('hex').slice(0, 16)}.mjs`);
+  const file = join(folder, `${name}-${createHash('sha256').update(code).digest('hex').slice(0, 16)}.mjs`);
   if (existsSync(file)) return file;
   mkdirSync(folder, { recursive: true });
   const half = `${file}.${String(process.pid)}`;

@@ -3,9 +3,9 @@ import type { Queryable } from '@drizzle/client';
 import { answers, checks, courses, marks, scripts, sets, submissions } from '@drizzle/schema';
 import { isComputed } from '@shared/answer-forms';
 import type { CheckResult } from '@shared/checks';
-import { partMarks } from '@shared/problems';
+import { partMarks, type ProblemContent } from '@shared/problems';
 import type { Feedback, FeedbackPart, FeedbackSummary } from '@shared/results';
-import { splitStatement } from '@shared/statement';
+import { namedGivens, splitStatement } from '@shared/statement';
 import { correctionsFor } from '../corrections/corrections-in-feedback';
 import { notFound } from '../http/errors';
 import { bandOf, handedInFor, printGivens, variantOf, workedPages } from '../marking/bench-answer';
@@ -69,7 +69,7 @@ export function presentFeedback(tx: Queryable, setId: string, membershipId: stri
       position,
       title: first?.content.title ?? '',
       stem: splitStatement(first?.content.statement ?? '').stem,
-      givens: printGivens(first?.content.givens ?? [], values),
+      givens: printGivens(first ? printedOn(first.content) : [], values),
       total: sumOf(parts.map((part) => part.total)),
       outOf: sumOf(parts.map((part) => part.outOf)),
       parts,
@@ -187,4 +187,10 @@ function standingMark(
     .where(and(eq(answers.scriptId, scriptId), eq(answers.pileId, found.pile.id)))
     .get();
   return row;
+}
+
+/** The givens that the statement names: those that only keys use may be the key. */
+function printedOn({ givens, statement }: ProblemContent): ProblemContent['givens'] {
+  const named = new Set(namedGivens(statement));
+  return givens.filter(({ name }) => named.has(name));
 }

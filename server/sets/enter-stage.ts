@@ -40,10 +40,10 @@ export function enterStage(
   });
 }
 
-/** Tells the course that a set entered a stage; call it after commit. Before it opens only the team is told. */
+/** Tells the course that a set entered a stage; call it after commit. Of review, marking and moderation only the team is told. */
 export function tellStage(context: Context, set: Pick<SetRow, 'id' | 'courseId'>, stage: SetStage): void {
   const { courseId } = set;
-  const hidden = stage === 'draft' || stage === 'review';
+  const hidden = ['draft', 'review', 'marking', 'moderation'].includes(stage);
   const rooms = hidden ? [teamRoom(courseId)] : [teamRoom(courseId), studentsRoom(courseId)];
   context.live.emit(rooms, 'stageChanged', { courseId, setId: set.id, stage });
 }

@@ -73,13 +73,11 @@ function buildOneMode(state: State, resolution: Resolution): NumberState {
       checkUnitaryWork(inner, levels);
       return transform(inner, squeezer(state.r, state.direction, inner.levels, levels), outside);
     }
-    case 'mixture':
-      return mix(
-        state.states
-          .map((part, index) => ({ part, probability: state.probabilities[index] ?? 0 }))
-          .filter(({ probability }) => probability > 0)
-          .map(({ part, probability }) => ({ state: simplest(numberState(part, resolution)), probability })),
-      );
+    case 'mixture': {
+      const parts = likelyParts(state);
+      const built = equallyWide(numberState, parts, resolution);
+      return mix(built.map((part, index) => ({ state: simplest(part), probability: parts[index]!.probability })));
+    }
     case 'phaseAveraged':
       return diagonalOf(numberState(state.state, resolution));
     case 'dephased':
@@ -111,14 +109,37 @@ function buildOneMode(state: State, resolution: Resolution): NumberState {
     }
     case 'superposition':
       return conditioned(resolution, (finer) => {
-        const parts = state.terms
-          .filter((term) => abs2(term.amplitude) > 0)
-          .map((term) => ({ amplitude: term.amplitude, ket: asKet(numberState(term.state, finer)) }));
-        return superpose(parts);
+        const terms = state.terms.filter((term) => abs2(term.amplitude) > 0);
+        const built = equallyWide(numberState, terms, finer);
+        return superpose(terms.map(({ amplitude }, index) => ({ amplitude, ket: asKet(built[index]!) })));
       });
     default:
       throw new MethodDoesNotApply('a state of two modes is not one of one');
   }
+}
+
+/** The states of a mixture that it has. */
+function likelyParts(mixture: Extract<State, { readonly kind: 'mixture' }>) {
+  return mixture.states
+    .map((state, index) => ({ state, probability: mixture.probabilities[index] ?? 0 }))
+    .filter(({ probability }) => probability > 0);
+}
+
+/**
+ * Builds states that meet in one sum, each as wide as the widest: where one ends and another still has amplitude, what
+ * was left out of the first would show in proportion to its amplitude, not to its weight.
+ */
+function equallyWide<Built extends { readonly levels: number; readonly outside: number }>(
+  build: (state: State, resolution: Resolution) => Built,
+  parts: readonly { readonly state: State }[],
+  resolution: Resolution,
+): readonly Built[] {
+  const built = parts.map(({ state }) => build(state, resolution));
+  const widest = Math.max(...built.map(({ levels }) => levels));
+  const wider = { ...resolution, least: Math.max(resolution.least, widest) };
+  return built.map((each, index) =>
+    each.levels < widest && each.outside > 0 ? build(parts[index]!.state, wider) : each,
+  );
 }
 
 type Moved = Extract<State, { readonly kind: 'photonAdded' | 'photonSubtracted' }>;
@@ -159,10 +180,7 @@ export function numberDiagonal(state: State, resolution: Resolution): NumberDiag
       return diagonalOf(made);
     }
     case 'mixture': {
-      const parts = state.states
-        .map((part, index) => ({ part, probability: state.probabilities[index] ?? 0 }))
-        .filter(({ probability }) => probability > 0)
-        .map(({ part, probability }) => ({ diagonal: numberDiagonal(part, resolution), probability }));
+      const parts = likelyParts(state).map((part) => ({ ...part, diagonal: numberDiagonal(part.state, resolution) }));
       const levels = Math.max(...parts.map(({ diagonal }) => diagonal.levels));
       const p = new Float64Array(levels);
       let outside = 0;
@@ -248,10 +266,11 @@ function buildJoint(given: State, resolution: Resolution): JointState {
       return { ...two, kets: splitKets(two.kets, 0.5, complex(-1)) };
     }
     case 'mixture': {
-      const parts = state.states
-        .map((part, index) => ({ part, probability: state.probabilities[index] ?? 0 }))
-        .filter(({ probability }) => probability > 0)
-        .map(({ part, probability }) => ({ inner: ensembleOf(part, resolution), probability }));
+      const likely = likelyParts(state);
+      const parts = equallyWide(ensembleOf, likely, resolution).map((inner, index) => ({
+        inner,
+        probability: likely[index]!.probability,
+      }));
       return {
         kind: 'ensemble',
         kets: parts.flatMap(({ inner, probability }) =>
@@ -273,9 +292,11 @@ type JointSuperposition = Extract<State, { readonly kind: 'superposition' }>;
 
 function superposed(state: JointSuperposition, resolution: Resolution): Ensemble {
   const attempt = (finer: Resolution) => {
-    const parts = state.terms
-      .filter((term) => abs2(term.amplitude) > 0)
-      .map((term) => ({ inner: ensembleOf(term.state, finer), amplitude: term.amplitude }));
+    const terms = state.terms.filter((term) => abs2(term.amplitude) > 0);
+    const parts = equallyWide(ensembleOf, terms, finer).map((inner, index) => ({
+      inner,
+      amplitude: terms[index]!.amplitude,
+    }));
     const kets = parts.map(({ inner }) => {
       const [only, ...others] = inner.kets;
       if (only === undefined || others.length > 0) throw new MethodDoesNotApply('not a ket in the number basis');

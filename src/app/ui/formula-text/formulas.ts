@@ -53,6 +53,8 @@ function typeset(source: string, display: boolean): SetFormula {
     });
     return { node };
   } catch (error) {
+    if (error instanceof RangeError)
+      return { node: asWritten(node, source), problem: 'The formula is nested too deeply.' };
     if (!(error instanceof ParseError)) throw error;
     return { node: asWritten(node, source), problem: error.rawMessage };
   }
