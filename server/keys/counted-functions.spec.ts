@@ -99,7 +99,7 @@ describe('estimates from a student’s own counts', () => {
   it.each([
     ['variance([1])', 'at least two'],
     ['variance(3)', 'takes a list of numbers'],
-    ['g2([0, 0])', 'undefined'],
+    ['g2([0, 0])', 'not defined'],
     ['g2([0.5, 1])', 'whole numbers from 0'],
     ['g2([-1, 1])', 'whole numbers from 0'],
     ['variance([i, 1])', 'real numbers'],
