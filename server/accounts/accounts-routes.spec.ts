@@ -69,6 +69,18 @@ describe('accounts', () => {
     expect((await client.post('/api/session').send({ email: person.email, password })).status).toBe(201);
   });
 
+  it('stop guesses that come at the same moment, and keep the lock', async () => {
+    const person = harness.makePerson({ passwordHash });
+    const client = await harness.agent(null);
+    const guesses = Array.from({ length: 20 }, (_, guess) =>
+      client.post('/api/session').send({ email: person.email, password: `guess number ${String(guess)}` }),
+    );
+    const answered = (await Promise.all(guesses)).map(({ status }) => status);
+    expect(answered.filter((status) => status === 401)).toHaveLength(8);
+    expect(answered.filter((status) => status === 429)).toHaveLength(12);
+    expect((await client.post('/api/session').send({ email: person.email, password })).status).toBe(429);
+  });
+
   it('send a link for a forgotten password without telling whether there is an account, and keep no secret', async () => {
     const person = harness.makePerson({ passwordHash });
     const client = await harness.agent(null);

@@ -166,4 +166,20 @@ describe('courses', () => {
     const answer = await client.post(`${path}/people/${String(added.body.membershipId)}/invitation`);
     expect(answer.body.link).toMatch(/\/welcome#.{20,}/);
   });
+
+  it('hand no link over that would open another course, or the installation', async () => {
+    const { client, path } = await courseWithLead();
+    const invite = async (email: string) => {
+      const added = await client.post(`${path}/people`).send({ name: 'Ola Ny', email, role: 'student' });
+      return client.post(`${path}/people/${String(added.body.membershipId)}/invitation`);
+    };
+    const elsewhere = harness.makeMember(harness.makeCourse().id, 'lead', { passwordHash: null });
+    const administrator = harness.makePerson({ passwordHash: null, isAdministrator: true });
+    for (const { email } of [elsewhere, administrator]) {
+      const refused = await invite(email);
+      expect(refused.status).toBe(403);
+      expect(refused.body.detail).toMatch(/administrator/i);
+      expect(JSON.stringify(refused.body)).not.toContain('/welcome#');
+    }
+  });
 });

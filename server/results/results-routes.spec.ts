@@ -146,6 +146,15 @@ describe('release', () => {
 });
 
 describe('feedback', () => {
+  it('prints the givens that the statement names, and none that only keys use', async () => {
+    const { content, check } = withSlip();
+    const silent = { ...content, statement: 'A pulse passes a loss.\n\n(a) How many are left?' };
+    const { built } = await releasedSet([check], { content: silent });
+    const student = await harness.agent(built.handedIn[0]?.student ?? null);
+    const { body } = await student.get(`/api/sets/${built.setId}/feedback`).expect(200);
+    expect((body as Feedback).problems[0]?.givens).toEqual([]);
+  });
+
   const slips = [
     { name: 'amplitude for intensity', expression: 'nbar', feedback: 'The loss acts on the number.', fraction: 0.5 },
   ];

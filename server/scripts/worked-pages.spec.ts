@@ -1,3 +1,4 @@
+import { deflateSync } from 'node:zlib';
 import { createHash } from 'node:crypto';
 import { PDFDocument, PDFName, PDFString } from 'pdf-lib';
 import sharp from 'sharp';
@@ -124,6 +125,7 @@ describe('a worked page', () => {
       'protected by a password',
     ],
     ['too long a PDF', () => pdf(21), 'has 21 pages'],
+    ['a small PDF that unfolds without end', unfoldingPdf, 'The PDF is broken'],
   ])('is refused as %s, with what to do', async (_, make, sentence) => {
     const { client, answerOf } = await openSheet();
     const refused = await add(client, answerOf('c'), await make()).expect(415);
@@ -199,3 +201,19 @@ describe('a worked page', () => {
     ).toBe(false);
   });
 });
+
+/** A few kilobytes that two rounds of inflation make 400 MB of. */
+function unfoldingPdf(): Promise<Buffer> {
+  const once = deflateSync(Buffer.alloc(400 * 1024 * 1024), { level: 9 });
+  const stream = deflateSync(once, { level: 9 });
+  const head = Buffer.from(
+    [
+      '%PDF-1.7',
+      '1 0 obj\n<< /Type /Catalog /Pages 2 0 R >>\nendobj',
+      '2 0 obj\n<< /Type /Pages /Kids [] /Count 0 >>\nendobj',
+      `3 0 obj\n<< /Type /ObjStm /N 1 /First 4 /Filter [/FlateDecode /FlateDecode] /Length ${String(stream.length)} >>\nstream\n`,
+    ].join('\n'),
+  );
+  const tail = Buffer.from('\nendstream\nendobj\ntrailer\n<< /Root 1 0 R >>\n%%EOF\n');
+  return Promise.resolve(Buffer.concat([head, stream, tail]));
+}
