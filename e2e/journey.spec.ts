@@ -267,6 +267,7 @@ async function markWhatIsLeft(page: Page, piles: string): Promise<void> {
   await page.getByRole('link', { name: /\(a\)/ }).first().click();
   for (let marked = 0; marked < 4; marked += 1) {
     await expectMarked(page, marked);
+    await expect(page.getByRole('article', { name: /in hand, held by you/ })).toBeVisible();
     await page.keyboard.press('Control+Enter');
   }
   await expectMarked(page, 4);

@@ -5,7 +5,10 @@ import { signIn } from './sign-in';
 
 /** How many answers are marked, as the bench says. */
 async function marked(page: Page): Promise<number> {
-  const words = await page.getByRole('status').filter({ hasText: /of \d+ marked/ }).innerText();
+  const words = await page
+    .getByRole('status')
+    .filter({ hasText: /of \d+ marked/ })
+    .innerText();
   return Number(/^\d+/.exec(words)?.[0]);
 }
 

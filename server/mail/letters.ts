@@ -3,7 +3,14 @@ import { letters } from '@drizzle/schema';
 import { newId } from '../http/new-id';
 
 /** The kinds of letter. The first two carry a secret link, which is made when the letter leaves. */
-export const letterKinds = ['invitation', 'password reset', 'receipt', 'released', 'allowance', 'query answered'] as const;
+export const letterKinds = [
+  'invitation',
+  'password reset',
+  'receipt',
+  'released',
+  'allowance',
+  'query answered',
+] as const;
 export type LetterKind = (typeof letterKinds)[number];
 
 /** A letter to be sent. `{link}` in the text of the secret kinds stands for the link. */
