@@ -60,6 +60,11 @@ describe('the key language', () => {
     expect((result.value as number) / value).toBeCloseTo(1, 9);
   });
 
+  it('takes a mean photon number that nobody gave for no billionth of a bar', () => {
+    expect(() => evaluate('thermal(nbar)')).toThrow(/“nbar” is no given/);
+    expect(evaluate('3 mbar').value).toBe(300);
+  });
+
   it('lets units cancel, and takes givens with units', () => {
     expect(evaluate('kappa*t', { kappa: '20 s^-1', t: '15 ms' })).toMatchObject({ value: 0.3, method: 'algebra' });
   });
