@@ -49,6 +49,10 @@ export const test = base.extend<{ consoleWatch: ConsoleWatch }>({
  * @param within only this part of it, a CSS selector
  */
 export async function expectAccessible(page: Page, within?: string): Promise<void> {
+  if (!within) {
+    await expect(page.getByRole('heading', { level: 1 }).first()).toBeVisible();
+    await expect(page.locator('[aria-busy="true"]')).toHaveCount(0);
+  }
   const builder = new AxeBuilder({ page });
   const { violations } = await (within ? builder.include(within) : builder).analyze();
   expect(
