@@ -24,9 +24,7 @@ try {
   const lead = await open();
   const { courseId, setIds, pileId, problemId } = await findDemonstration(lead);
   const course = `/courses/${courseId}`;
-  await take(lead, 'problem', `${course}/problems/${problemId}`, async () => {
-    await lead.getByRole('button', { name: /^\(b\)/ }).click();
-  });
+  await take(lead, 'problem', `${course}/problems/${problemId}?at=b`);
   const marker = await open();
   await signIn(marker, people.marker);
   await take(marker, 'bench', `${course}/marking/${pileId}`);
@@ -39,11 +37,10 @@ try {
   await demonstration.stop();
 }
 
-/** A picture of a page once it stands still, after something was done on it. */
-async function take(page: Page, name: string, address: string, act?: () => Promise<void>): Promise<void> {
+/** A picture of a page once it stands still. */
+async function take(page: Page, name: string, address: string): Promise<void> {
   await page.goto(address);
   await page.getByRole('heading', { level: 1 }).waitFor();
-  await act?.();
   await page.waitForLoadState('networkidle');
   await page.waitForTimeout(1_500);
   const path = join('docs', 'pictures', `${name}.png`);
